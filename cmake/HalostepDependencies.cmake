@@ -1,0 +1,21 @@
+# Third-party libraries; what each is for stands in docs/dependencies.md.
+find_package(OpenBabel3 REQUIRED)
+find_package(SQLiteCpp REQUIRED)
+find_package(Eigen3 3.4 REQUIRED NO_MODULE)
+find_package(nlohmann_json REQUIRED)
+find_package(fmt REQUIRED)
+find_package(CLI11 REQUIRED)
+find_package(PkgConfig REQUIRED)
+pkg_check_modules(nettle REQUIRED IMPORTED_TARGET nettle)
+
+if(HALOSTEP_BUILD_TESTS)
+  find_package(GTest REQUIRED)
+  # Another Python first on PATH would lack the Debian modules the tests import.
+  if(NOT DEFINED Python3_EXECUTABLE AND EXISTS /usr/bin/python3)
+    set(Python3_EXECUTABLE /usr/bin/python3)
+  endif()
+  find_package(Python3 REQUIRED COMPONENTS Interpreter)
+endif()
+if(HALOSTEP_BUILD_BENCH)
+  find_package(benchmark REQUIRED)
+endif()
