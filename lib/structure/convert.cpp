@@ -1,0 +1,170 @@
+#include "convert.hpp"
+
+#include <openbabel/atom.h>
+#include <openbabel/bond.h>
+#include <openbabel/generic.h>
+#include <openbabel/mol.h>
+#include <openbabel/obiter.h>
+#include <openbabel/stereo/cistrans.h>
+#include <openbabel/stereo/stereo.h>
+#include <openbabel/stereo/tetrahedral.h>
+
+#include <algorithm>
+#include <fmt/format.h>
+
+#include "valence.hpp"
+
+namespace halostep {
+namespace {
+
+using OpenBabel::OBAtom;
+using OpenBabel::OBBond;
+using OpenBabel::OBStereo;
+
+// Ordinary hydrogens become counts; of H2 and of a lone H one atom stays.
+bool folded(OBAtom& a) {
+  if (a.GetAtomicNum() != 1 || a.GetIsotope() != 0 || a.GetFormalCharge() != 0 || a.GetExplicitDegree() != 1) return false;
+  OBAtom* other = nullptr;
+  FOR_NBORS_OF_ATOM(n, &a) other = &*n;
+  if (other == nullptr || other->GetBond(&a)->GetBondOrder() != 1) return false;
+  return other->GetAtomicNum() != 1 || other->GetIsotope() != 0 || a.GetIdx() > other->GetIdx();
+}
+
+// Electrons without a partner: what is missing to the next allowed valence.
+int unpaired_electrons(const Atom& a, int valence) {
+  const int* allowed = allowed_valences(a.element, a.charge);
+  if (allowed == nullptr) return 0;
+  for (const int* p = allowed; *p != 0; ++p) {
+    if (*p >= valence) return *p - valence;
+  }
+  return 0;
+}
+
+void read_stereo(OpenBabel::OBMol& mol, const std::vector<int>& to, const std::vector<Bond>& bonds,
+                 std::vector<TetrahedralStereo>& tetrahedral, std::vector<DoubleBondStereo>& doubles) {
+  const auto atom_of = [&](unsigned long id) {
+    if (id == OBStereo::ImplicitRef) return -1;
+    const auto* a = mol.GetAtomById(id);
+    return a == nullptr ? -1 : to[a->GetIdx() - 1];
+  };
+  for (auto* d : mol.GetAllData(OpenBabel::OBGenericDataType::StereoData)) {
+    const auto type = static_cast<OpenBabel::OBStereoBase*>(d)->GetType();
+    if (type == OBStereo::Tetrahedral) {
+      auto* ts = static_cast<OpenBabel::OBTetrahedralStereo*>(d);
+      const auto c = ts->GetConfig(OBStereo::Clockwise, OBStereo::ViewFrom);
+      if (!ts->IsValid() || !c.specified || c.winding == OBStereo::UnknownWinding || c.refs.size() != 3) continue;
+      TetrahedralStereo t;
+      t.centre = atom_of(c.center);
+      t.neighbours[0] = atom_of(c.from);
+      for (std::size_t k = 0; k < 3; ++k) t.neighbours[k + 1] = atom_of(c.refs[k]);
+      t.clockwise = true;
+      if (t.centre >= 0) tetrahedral.push_back(t);
+    } else if (type == OBStereo::CisTrans) {
+      auto* cs = static_cast<OpenBabel::OBCisTransStereo*>(d);
+      const auto c = cs->GetConfig(OBStereo::ShapeU);
+      if (!cs->IsValid() || !c.specified || c.refs.size() != 4) continue;
+      // ShapeU: refs run begin, begin, end, end around the bond, so 0 and 3 lie on one side, 1 and 2 on the other.
+      const int a = atom_of(c.begin), b = atom_of(c.end);
+      const int ra[2] = {atom_of(c.refs[0]), atom_of(c.refs[1])}, rb[2] = {atom_of(c.refs[3]), atom_of(c.refs[2])};
+      const int ia = ra[0] >= 0 ? 0 : 1, ib = rb[0] >= 0 ? 0 : 1;
+      if (ra[ia] < 0 || rb[ib] < 0) continue;
+      for (std::size_t k = 0; k < bonds.size(); ++k) {
+        const bool forward = bonds[k].a == a && bonds[k].b == b;
+        if (forward) doubles.push_back({static_cast<int>(k), ra[ia], rb[ib], ia == ib});
+        else if (bonds[k].a == b && bonds[k].b == a) doubles.push_back({static_cast<int>(k), rb[ib], ra[ia], ia == ib});
+      }
+    }
+  }
+}
+
+// N(=O)=O written with five bonds becomes the charge-separated nitro group.
+void normalise_nitro(std::vector<Atom>& atoms, std::vector<Bond>& bonds) {
+  for (std::size_t i = 0; i < atoms.size(); ++i) {
+    if (atoms[i].element != element::N || atoms[i].charge != 0) continue;
+    std::vector<std::size_t> oxo;
+    int others = 0;
+    for (std::size_t k = 0; k < bonds.size(); ++k) {
+      const auto& b = bonds[k];
+      if (b.a != static_cast<int>(i) && b.b != static_cast<int>(i)) continue;
+      const auto& o = atoms[static_cast<std::size_t>(b.a == static_cast<int>(i) ? b.b : b.a)];
+      if (b.order == BondOrder::dbl && o.element == element::O && o.charge == 0) oxo.push_back(k);
+      else ++others;
+    }
+    if (oxo.size() != 2 || others != 1) continue;
+    auto& b = bonds[oxo[1]];
+    b.order = BondOrder::single;
+    atoms[i].charge = 1;
+    atoms[static_cast<std::size_t>(b.a == static_cast<int>(i) ? b.b : b.a)].charge = -1;
+  }
+}
+
+bool nonmetal(int z) {
+  static constexpr int kKnown[] = {1, 5, 6, 7, 8, 9, 14, 15, 16, 17, 32, 33, 34, 35, 53};
+  return std::find(std::begin(kKnown), std::end(kKnown), z) != std::end(kKnown);
+}
+
+}  // namespace
+
+Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
+  const auto n = mol.NumAtoms();
+  std::vector<Atom> atoms;
+  std::vector<Bond> bonds;
+  std::vector<int> to(n, -1), source;
+  atoms.reserve(n);
+  bonds.reserve(mol.NumBonds());
+  std::vector<int> valence;
+  for (unsigned i = 1; i <= n; ++i) {
+    auto& ob = *mol.GetAtom(static_cast<int>(i));
+    if (folded(ob)) continue;
+    Atom a;
+    a.element = static_cast<std::uint8_t>(ob.GetAtomicNum());
+    a.charge = static_cast<std::int8_t>(ob.GetFormalCharge());
+    a.isotope = static_cast<std::uint16_t>(ob.GetIsotope());
+    a.aromatic = ob.IsAromatic();
+    a.hydrogens = static_cast<std::uint8_t>(ob.GetImplicitHCount());
+    to[i - 1] = static_cast<int>(atoms.size());
+    source.push_back(static_cast<int>(i) - 1);
+    valence.push_back(static_cast<int>(ob.GetExplicitValence() + ob.GetImplicitHCount()));
+    atoms.push_back(a);
+  }
+  for (unsigned k = 0; k < mol.NumBonds(); ++k) {
+    auto& ob = *mol.GetBond(static_cast<int>(k));
+    const int a = to[ob.GetBeginAtomIdx() - 1], b = to[ob.GetEndAtomIdx() - 1];
+    if (a < 0 || b < 0) {
+      if (a >= 0 || b >= 0) ++atoms[static_cast<std::size_t>(std::max(a, b))].hydrogens;
+      continue;
+    }
+    const auto order = ob.IsAromatic() ? BondOrder::aromatic : static_cast<BondOrder>(std::clamp(static_cast<int>(ob.GetBondOrder()), 1, 3));
+    bonds.push_back({a, b, order, false});
+  }
+  for (std::size_t i = 0; i < atoms.size(); ++i) {
+    const auto& a = atoms[i];
+    atoms[i].unpaired = static_cast<std::uint8_t>(std::clamp(unpaired_electrons(a, valence[i]), 0, 4));
+  }
+  std::vector<TetrahedralStereo> tetrahedral;
+  std::vector<DoubleBondStereo> doubles;
+  read_stereo(mol, to, bonds, tetrahedral, doubles);
+  normalise_nitro(atoms, bonds);
+  if (source_atom != nullptr) *source_atom = std::move(source);
+  return Molecule::from_graph(std::move(atoms), std::move(bonds), std::move(tetrahedral), std::move(doubles));
+}
+
+std::optional<Error> check_mode(const Molecule& m, ParseMode mode) {
+  const auto atom = [](int i) { return fmt::format("atom {}", i + 1); };
+  if (m.fragment_count() > 1) return Error{ErrorClass::fragments, fmt::format("{} separate parts where one molecule is meant", m.fragment_count()), {}};
+  for (int i = 0; i < m.atom_count() && mode == ParseMode::substrate; ++i) {
+    const int z = m.atom(i).element;
+    if (nonmetal(z)) continue;
+    const bool noble = z == 2 || z == 10 || z == 18 || z == 36 || z == 54 || z == 86;
+    return Error{noble ? ErrorClass::domain : ErrorClass::metal, fmt::format("{} is {}: outside the domain", element_symbol(z), noble ? "a noble gas" : "a metal"), atom(i)};
+  }
+  if (m.charge() != 0) return Error{ErrorClass::ion, fmt::format("an ion of charge {:+d} is outside the domain", m.charge()), {}};
+  if (mode == ParseMode::substrate) {
+    for (int i = 0; i < m.atom_count(); ++i) {
+      if (m.atom(i).unpaired > 0) return Error{ErrorClass::radical, "a radical is no substrate; it may stand in a reaction", atom(i)};
+    }
+  }
+  return std::nullopt;
+}
+
+}  // namespace halostep

@@ -1,0 +1,32 @@
+// The one Open Babel parser of the process. Hold parser_lock() while using it.
+#pragma once
+#include <openbabel/obconversion.h>
+
+#include <mutex>
+#include <sstream>
+#include <string>
+
+namespace OpenBabel {
+class OBMol;
+}
+
+namespace halostep {
+
+class Parser {
+ public:
+  Parser();
+  bool read_smiles(OpenBabel::OBMol& m, const std::string& text);
+  bool read_mol(OpenBabel::OBMol& m, const std::string& block);
+  /// Warnings of the last read.
+  [[nodiscard]] std::string log() const { return log_.str(); }
+
+ private:
+  OpenBabel::OBConversion smiles_, mol_;
+  bool mol_ready_ = false;
+  std::ostringstream log_;
+};
+
+std::mutex& parser_lock();
+Parser& parser();
+
+}  // namespace halostep
