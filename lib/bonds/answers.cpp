@@ -1,0 +1,250 @@
+#include "answers.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+
+#include "halostep/structure.hpp"
+
+namespace halostep {
+namespace {
+
+constexpr const char* kHalogenAtoms[] = {"[F]", "[Cl]", "[Br]", "[I]"};
+constexpr int kHalogenNumbers[] = {9, 17, 35, 53};
+
+int halogen_index(int z) {
+  const auto* p = std::find(std::begin(kHalogenNumbers), std::end(kHalogenNumbers), z);
+  return p == std::end(kHalogenNumbers) ? -1 : static_cast<int>(p - std::begin(kHalogenNumbers));
+}
+
+Error domain(std::string message) { return {ErrorClass::domain, std::move(message), {}}; }
+
+}  // namespace
+
+std::vector<int> BondBook::entry_sources(int entry) const {
+  std::vector<int> s;
+  for (const int row : table_.bonds[static_cast<std::size_t>(entry)].rows) {
+    const auto& r = table_.bond_rows[static_cast<std::size_t>(row)];
+    if (!r.superseded && std::find(s.begin(), s.end(), r.source) == s.end()) s.push_back(r.source);
+  }
+  return s;
+}
+
+std::vector<int> BondBook::sources(const Analysis& a, const HydrogenSite& s, const BondValue& v) const {
+  if (v.entry >= 0) return entry_sources(v.entry);
+  return evidence_.hydrogen(site_features(a.plain(), a.info(), a.to_plain(s.atom)).features);
+}
+
+std::vector<int> BondBook::halide_sources(const Analysis& a, const HydrogenSite& s, int x, const BondValue& v) const {
+  if (v.entry >= 0) return entry_sources(v.entry);
+  return evidence_.exchange(x, exchange_features(a.plain(), a.info(), a.to_plain(s.atom)));
+}
+
+BondValue BondBook::hydrogen(const Analysis& a, const HydrogenSite& s, bool typed_only) const {
+  BondValue v;
+  const int atom = a.to_plain(s.atom);
+  if (!typed_only && model_.known(a.key())) {
+    v.entry = model_.measured(a.key(), canonical_smiles(a.plain().without_hydrogen(atom), false), "[H]");
+    if (v.entry >= 0) {
+      v.route = Route::measured;
+      v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
+      return v;
+    }
+  }
+  auto t = model_.typed(site_features(a.plain(), a.info(), atom));
+  v.extrapolated = t.extrapolated;
+  v.refusal = std::move(t.refusal);
+  if (v.refusal.empty()) v.d = t.d;
+  return v;
+}
+
+Quantity BondBook::exchange(const Analysis& a, const HydrogenSite& s, int x) const {
+  return model_.exchange(x, exchange_features(a.plain(), a.info(), a.to_plain(s.atom)));
+}
+
+BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, bool typed_only) const {
+  BondValue v;
+  // Only molecules of the table's size can be in it; larger ones skip the text of the halide.
+  if (!typed_only && parent.route == Route::measured) {
+    const int atom = a.to_plain(s.atom);
+    const auto rx = a.plain().with_substituent(atom, kHalogenNumbers[x]);
+    const auto key = canonical_smiles(rx, false);
+    if (model_.known(key)) {
+      v.entry = model_.measured(key, canonical_smiles(a.plain().without_hydrogen(atom), false), kHalogenAtoms[x]);
+      if (v.entry >= 0) {
+        v.route = Route::measured;
+        v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
+        return v;
+      }
+    }
+  }
+  if (!parent.d || model_.exchange_model(x).empty()) {
+    v.refusal = parent.d ? "the table holds no exchange model for this halogen" : parent.refusal;
+    return v;
+  }
+  const auto d = exchange(a, s, x);
+  v.d = Quantity{parent.d->value + d.value, std::hypot(parent.d->u, d.u)};
+  v.extrapolated = parent.extrapolated;
+  return v;
+}
+
+void BondBook::explain_entry(int entry, BondAnswer& out) const {
+  const auto& e = table_.bonds[static_cast<std::size_t>(entry)];
+  out.sources = entry_sources(entry);
+  double total = 0;
+  for (const int row : e.rows) {
+    const auto& r = table_.bond_rows[static_cast<std::size_t>(row)];
+    if (!r.superseded) total += 1.0 / (r.u * r.u);
+  }
+  for (const int row : e.rows) {
+    const auto& r = table_.bond_rows[static_cast<std::size_t>(row)];
+    if (r.superseded) continue;
+    const auto& src = table_.sources[static_cast<std::size_t>(r.source)];
+    out.contributions.push_back({fmt::format("{}: {}, {}", src.id, r.method, r.provenance == "memory" ? "from memory" : "read"),
+                                 1.0 / (r.u * r.u) / total, {r.d298, r.u}, 1});
+  }
+}
+
+void BondBook::explain_typed(const LinearModel& m, const std::vector<std::string_view>& names,
+                             const std::vector<FeatureCount>& f, BondAnswer& out) const {
+  const std::size_t n = m.value.size();
+  for (const auto& c : f) {
+    const auto i = static_cast<std::size_t>(c.feature);
+    out.contributions.push_back({std::string(names[i]), c.count,
+                                 {c.count * m.value[i], std::abs(c.count) * std::sqrt(m.covariance[i * n + i])}, m.support[i]});
+  }
+}
+
+BondAnswer BondBook::hydrogen_answer(const Analysis& a, const HydrogenSite& s, const BondOptions& o) const {
+  BondAnswer b;
+  const auto& m = a.original();
+  b.atom = s.atom;
+  b.atoms = s.atoms;
+  b.h_count = s.h_count;
+  b.bond_count = s.h_count;
+  auto v = hydrogen(a, s, o.typed);
+  b.d298 = v.d;
+  b.route = v.route;
+  b.extrapolated = v.extrapolated;
+  if (!v.d) b.why = domain(v.refusal);
+  if (!o.details) return b;
+  b.bond = fmt::format("{}-H", element_symbol(m.atom(s.atom).element));
+  b.radical = canonical_smiles(m.without_hydrogen(s.atom));
+  b.type = site_type(a.plain(), a.info(), a.to_plain(s.atom));
+  if (v.entry >= 0) explain_entry(v.entry, b);
+  else if (v.d) {
+    const auto f = site_features(a.plain(), a.info(), a.to_plain(s.atom)).features;
+    explain_typed(model_.bonds(), feature_names(), f, b);
+    b.sources = evidence_.hydrogen(f);
+  }
+  return b;
+}
+
+BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const BondOptions& o) const {
+  BondAnswer b;
+  const auto& m = a.original();
+  b.atom = h.centre;
+  b.partner = h.partner;
+  b.atoms = {h.centre};
+  b.bond_count = h.count;
+  b.bond = fmt::format("{}-{}", element_symbol(m.atom(h.centre).element), element_symbol(m.atom(h.partner).element));
+  const auto halves = m.broken(h.bond);
+  const bool first = m.bond(h.bond).a == h.centre;
+  b.radical = canonical_smiles(first ? halves.first : halves.second);
+  const int x = m.atom(h.centre).element == element::C ? halogen_index(m.atom(h.partner).element) : -1;
+  b.type = x >= 0 ? fmt::format("{}, {}", b.bond, h.count == 1 ? "one" : fmt::format("{} equivalent", h.count)) : fmt::format("{}, weak bond", b.bond);
+  if (!o.typed && model_.known(a.key())) {
+    const int pa = a.to_plain(h.centre), pb = a.to_plain(h.partner);
+    const int bond = a.plain().bond_between(pa, pb);
+    const auto plain = a.plain().broken(bond);
+    const bool plain_first = a.plain().bond(bond).a == pa;
+    const int e = model_.measured(a.key(), canonical_smiles(plain_first ? plain.first : plain.second, false),
+                                  canonical_smiles(plain_first ? plain.second : plain.first, false));
+    if (e >= 0) {
+      b.route = Route::measured;
+      b.d298 = table_.bonds[static_cast<std::size_t>(e)].d298;
+      explain_entry(e, b);
+      return b;
+    }
+  }
+  if (x < 0) {
+    b.why = domain("the table has no value for this bond and it is not typed");
+    return b;
+  }
+  // R-X from R-H of the parent: the radical with a hydrogen instead of the halogen.
+  std::vector<Atom> atoms;
+  std::vector<Bond> bonds;
+  const int gone = a.to_plain(h.partner);
+  const auto& p = a.plain();
+  for (int i = 0; i < p.atom_count(); ++i) {
+    if (i != gone) atoms.push_back(p.atom(i));
+  }
+  const int c = a.to_plain(h.centre) - (a.to_plain(h.centre) > gone);
+  ++atoms[static_cast<std::size_t>(c)].hydrogens;
+  for (int i = 0; i < p.bond_count(); ++i) {
+    Bond q = p.bond(i);
+    if (q.a == gone || q.b == gone) continue;
+    q.a -= q.a > gone;
+    q.b -= q.b > gone;
+    bonds.push_back(q);
+  }
+  const auto parent = Molecule::from_graph(std::move(atoms), std::move(bonds));
+  if (!parent.ok()) {
+    b.why = parent.error();
+    return b;
+  }
+  const Analysis pa(parent.value());
+  HydrogenSite site{c, 1, {c}};
+  const auto value = hydrogen(pa, site, o.typed);
+  const auto rx = halide(pa, site, x, value, true);
+  b.d298 = rx.d;
+  b.extrapolated = rx.extrapolated;
+  if (!rx.d) {
+    b.why = domain(rx.refusal);
+    return b;
+  }
+  if (!o.details) return b;
+  b.contributions.push_back({fmt::format("C-H of the parent, {}", route_name(value.route)), 1.0, *value.d, 1});
+  b.sources = sources(pa, site, value);
+  const auto f = exchange_features(pa.plain(), pa.info(), c);
+  explain_typed(model_.exchange_model(x), exchange_feature_names(), f, b);
+  for (const int q : evidence_.exchange(x, f)) {
+    if (std::find(b.sources.begin(), b.sources.end(), q) == b.sources.end()) b.sources.push_back(q);
+  }
+  return b;
+}
+
+void BondBook::deuterium(const Analysis& a, std::vector<BondAnswer>& out) const {
+  const auto& m = a.original();
+  std::vector<int> seen;
+  for (int i = 0; i < m.atom_count(); ++i) {
+    if (m.atom(i).element != element::H || m.degree(i) != 1) continue;
+    const int c = a.classes()[static_cast<std::size_t>(i)];
+    if (std::find(seen.begin(), seen.end(), c) != seen.end()) continue;
+    seen.push_back(c);
+    BondAnswer b;
+    b.atom = m.neighbours(i)[0].atom;
+    b.partner = i;
+    b.atoms = {b.atom};
+    b.bond_count = static_cast<int>(std::count(a.classes().begin(), a.classes().end(), c));
+    const char* label = m.atom(i).isotope == 3 ? "T" : "D";
+    b.bond = fmt::format("{}-{}", element_symbol(m.atom(b.atom).element), label);
+    b.type = "isotope";
+    b.radical = canonical_smiles(m.neighbours(i)[0].atom == m.bond(m.neighbours(i)[0].bond).a ? m.broken(m.neighbours(i)[0].bond).first
+                                                                                             : m.broken(m.neighbours(i)[0].bond).second);
+    b.why = Error{ErrorClass::isotope, fmt::format("no data for bonds to {}", label), fmt::format("atom {}", i + 1)};
+    out.push_back(std::move(b));
+  }
+}
+
+std::vector<BondAnswer> BondBook::all(const Analysis& a, const BondOptions& o) const {
+  std::vector<BondAnswer> out;
+  out.reserve(a.sites().size() + a.heavy_bonds().size());
+  for (const auto& s : a.sites()) out.push_back(hydrogen_answer(a, s, o));
+  if (a.deuterium_count() > 0) deuterium(a, out);
+  for (const auto& h : a.heavy_bonds()) out.push_back(heavy_answer(a, h, o));
+  return out;
+}
+
+}  // namespace halostep

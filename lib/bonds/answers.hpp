@@ -1,0 +1,51 @@
+// Answers about the bonds of one molecule.
+#pragma once
+#include <vector>
+
+#include "analysis.hpp"
+#include "bond_model.hpp"
+#include "evidence.hpp"
+#include "halostep/engine.hpp"
+
+namespace halostep {
+
+/// A value for a bond with everything the steps need, before any text is made.
+struct BondValue {
+  std::optional<Quantity> d;
+  Route route = Route::typed;
+  bool extrapolated = false;
+  int entry = -1;                 // measured: index into Table::bonds
+  std::string refusal;
+};
+
+class BondBook {
+ public:
+  BondBook(const Table& table, const BondModel& model) : table_(table), model_(model), evidence_(table) {}
+
+  /// D of X-H at one site.
+  [[nodiscard]] BondValue hydrogen(const Analysis& a, const HydrogenSite& s, bool typed_only) const;
+  /// D of R-X once X sits at the site (the halide formed), from the table or from D(R-H) and the exchange model.
+  [[nodiscard]] BondValue halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, bool typed_only) const;
+  /// Uncertainty of D(R-H) - D(R-X) where both come from one parent value: the exchange's own u.
+  [[nodiscard]] Quantity exchange(const Analysis& a, const HydrogenSite& s, int x) const;
+  /// All bonds of the molecule, in order of atoms: X-H first, then bonds between heavy atoms.
+  [[nodiscard]] std::vector<BondAnswer> all(const Analysis& a, const BondOptions& o) const;
+  /// Sources behind a value of hydrogen() or halide(): its rows, or those of the most similar bonds.
+  [[nodiscard]] std::vector<int> sources(const Analysis& a, const HydrogenSite& s, const BondValue& v) const;
+  [[nodiscard]] std::vector<int> halide_sources(const Analysis& a, const HydrogenSite& s, int x, const BondValue& v) const;
+  /// Sources of an entry's current rows.
+  [[nodiscard]] std::vector<int> entry_sources(int entry) const;
+
+ private:
+  [[nodiscard]] BondAnswer hydrogen_answer(const Analysis& a, const HydrogenSite& s, const BondOptions& o) const;
+  [[nodiscard]] BondAnswer heavy_answer(const Analysis& a, const HeavyBond& h, const BondOptions& o) const;
+  void deuterium(const Analysis& a, std::vector<BondAnswer>& out) const;
+  void explain_entry(int entry, BondAnswer& out) const;
+  void explain_typed(const LinearModel& m, const std::vector<std::string_view>& names,
+                     const std::vector<FeatureCount>& f, BondAnswer& out) const;
+  const Table& table_;
+  const BondModel& model_;
+  Evidence evidence_;
+};
+
+}  // namespace halostep

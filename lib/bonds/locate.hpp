@@ -1,0 +1,26 @@
+// Which atom of a molecule lost the hydrogen; keys that do not see resonance.
+#pragma once
+#include <string>
+#include <vector>
+
+#include "halostep/molecule.hpp"
+
+namespace halostep {
+
+/// Canonical text of the skeleton: all bonds single, hydrogens kept, place of the free valence and bond
+/// orders ignored. Equal for the resonance forms of one radical.
+std::string skeleton_key(const Molecule& m);
+
+/// Representative atom (first of its class) whose loss of one H gives `radical`, directly or, failing that, up to
+/// resonance; -1 when there is none. `classes` are the symmetry classes of `m`.
+int find_site(const Molecule& m, const std::vector<int>& classes, const Molecule& radical);
+
+/// Representative atoms that carry ordinary hydrogen, one per class, in order, and the H of the whole class.
+struct HydrogenSite {
+  int atom = 0;
+  int h_count = 0;
+  std::vector<int> atoms;
+};
+std::vector<HydrogenSite> hydrogen_sites(const Molecule& m, const std::vector<int>& classes);
+
+}  // namespace halostep
