@@ -1,0 +1,44 @@
+// Enthalpy, entropy and equilibrium of the steps of a chain and of single elementary steps.
+#pragma once
+#include <span>
+#include <vector>
+
+#include "../bonds/answers.hpp"
+#include "halostep/engine.hpp"
+#include "thermo.hpp"
+
+namespace halostep {
+
+/// Constants of one halogen, from the table.
+struct HalogenData {
+  std::optional<Quantity> d_xx, d_hx;        // D(X-X), D(H-X)
+  int entry_xx = -1, entry_hx = -1;          // rows of Table::bonds
+  const SpeciesEntry *atom = nullptr, *molecule = nullptr, *hydride = nullptr;
+};
+
+class StepBook {
+ public:
+  StepBook(const Table& table, const BondModel& model, const BondBook& bonds, const ThermoBook& thermo);
+  [[nodiscard]] const HalogenData& halogen(int x) const { return halogens_[static_cast<std::size_t>(x)]; }
+  /// Step enthalpy of abstraction at a site, D(R-H) - D(H-X); empty with `why` when a bond is missing.
+  [[nodiscard]] std::vector<StepAnswer> chain(const Analysis& a, std::span<const Halogen> halogens, double temperature,
+                                              const BondOptions& o) const;
+  /// One step written as reaction SMILES.
+  [[nodiscard]] Result<StepAnswer> reaction(std::string_view text, double temperature) const;
+
+ private:
+  struct SiteData;
+  void initiation(int x, double t, bool details, std::vector<StepAnswer>& out) const;
+  void site_steps(const Analysis& a, const SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
+  void terminations(const SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
+  const Table& table_;
+  const BondModel& model_;
+  const BondBook& bonds_;
+  const ThermoBook& thermo_;
+  std::vector<HalogenData> halogens_;
+};
+
+/// Fills ds, dg and log10_k of a step from its entropy sum, or says why not.
+void finish(StepAnswer& s, const ThermoSum& sum, double temperature);
+
+}  // namespace halostep
