@@ -1,0 +1,54 @@
+// Rate model of X + R-H -> HX + R, one per carrier atom. Equations and sources in docs/model.md.
+#pragma once
+#include <span>
+#include <string>
+#include <vector>
+
+#include "site.hpp"
+
+namespace halostep {
+
+/// Layout of the parameter vector of a kinetic model.
+namespace kp {
+inline constexpr int ln_a = 0;                            // ln of the per-H factor at 298 K, alkyl (cm3 molecule-1 s-1)
+inline constexpr int a_class = 1;                         // + class - 1: offset of ln A
+inline constexpr int tightness = a_class + kAClasses - 1; // ln A falls by tightness * position
+inline constexpr int exponent = tightness + 1;            // T exponent
+inline constexpr int shift = exponent + 1;                // kJ/mol, intercept of the effective step enthalpy
+inline constexpr int shift_class = shift + 1;             // + class - 1
+inline constexpr int width = shift_class + kAClasses - 1; // kJ/mol, half width of the bend
+inline constexpr int alkyl = width + 1;                   // kJ/mol per carbon on the centre
+inline constexpr int polar_alpha = alkyl + 1;             // + group: kJ/mol, group on the centre
+inline constexpr int polar_beyond = polar_alpha + kPolarGroups;  // + group: kJ/mol, group one bond further
+inline constexpr int decay = polar_beyond + kPolarGroups; // factor per further bond
+inline constexpr int ln_limit = decay + 1;                // ln of the encounter limit at one heavy atom
+inline constexpr int limit_power = ln_limit + 1;          // its growth with the number of heavy atoms
+inline constexpr int total = limit_power + 1;
+}  // namespace kp
+
+/// Names of the parameters, in order.
+std::vector<std::string> kinetic_parameter_names();
+
+/// Rate of one H, at T.
+struct SiteRate {
+  double ln_k = 0;       // ln of k per H before the encounter limit
+  double ln_a = 0;       // its pre-exponential part at T
+  double barrier = 0;    // threshold energy, kJ/mol
+  double position = 0;   // d barrier / d (effective step enthalpy): 0 reactant-like, 1 product-like
+  double effective = 0;  // dh + shift + polar, kJ/mol
+  double polar = 0;      // polar energy, kJ/mol
+};
+
+struct KineticForm {
+  bool polar_outside = false;  // add the polar energy to the barrier, not to the step enthalpy (F)
+};
+
+/// Polar energy of a site, kJ/mol.
+double polar_energy(std::span<const double> p, const RateSite& s);
+SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature);
+/// Encounter limit for a molecule with that many heavy atoms, cm3 molecule-1 s-1.
+double encounter_limit(std::span<const double> p, int heavy_atoms);
+/// Total rate under the limit: (sum^-q + limit^-q)^(-1/q), q = 3.
+double limited_total(double sum, double limit);
+
+}  // namespace halostep

@@ -1,0 +1,64 @@
+#include "rates.hpp"
+
+#include <algorithm>
+#include <cmath>
+
+#include "../bonds/bond_model.hpp"
+
+namespace halostep {
+namespace {
+
+constexpr const char* kNames[] = {"kinetics.F", "kinetics.Cl", "kinetics.Br", "kinetics.I"};
+constexpr const char* kLines[] = {"line.F", "line.Cl", "line.Br", "line.I"};
+
+}  // namespace
+
+RateBook::RateBook(const Table& table) : models_(4) {
+  for (std::size_t x = 0; x < 4; ++x) {
+    const auto* m = find_model(table.models, kNames[x]);
+    if (m == nullptr || m->values.size() != static_cast<std::size_t>(kp::total)) continue;
+    auto& c = models_[x];
+    c.p = m->values;
+    c.covariance = m->covariance;
+    c.support = m->support;
+    for (const auto& [name, v] : m->settings) {
+      if (name == "scatter") c.scatter = v;
+      if (name == "polar outside") c.form.polar_outside = v > 0.5;
+      if (name == "T low") c.t_low = v;
+      if (name == "T high") c.t_high = v;
+    }
+    if (const auto* line = find_model(table.models, kLines[x]); line != nullptr && line->values.size() == 2) {
+      c.intercept = {line->values[0], std::sqrt(line->covariance[0])};
+      c.slope = {line->values[1], std::sqrt(line->covariance[3])};
+    }
+  }
+}
+
+double RateBook::covariance(int x, const RateGradient& g, const RateGradient& h) const {
+  const auto& c = models_[static_cast<std::size_t>(x)];
+  const std::size_t n = c.p.size();
+  double sum = 0;
+  for (const auto& a : g.parameters) {
+    const double* row = c.covariance.data() + static_cast<std::size_t>(a.parameter) * n;
+    double inner = 0;
+    for (const auto& b : h.parameters) inner += b.value * row[b.parameter];
+    sum += a.value * inner;
+  }
+  return sum;
+}
+
+const char* RateBook::thin(int x, const RateSite& s) const {
+  const auto& c = models_[static_cast<std::size_t>(x)];
+  const auto few = [&](int i) { return c.support[static_cast<std::size_t>(i)] < 2; };
+  if (const int k = static_cast<int>(s.a_class); k > 0 && few(kp::a_class + k - 1)) return "no measured rate for this class of C-H";
+  for (int g = 0; g < kPolarGroups; ++g) {
+    const auto& n = s.count[static_cast<std::size_t>(g)];
+    if ((n[0] && few(kp::polar_alpha + g)) ||
+        (std::any_of(n.begin() + 1, n.end(), [](int q) { return q > 0; }) && few(kp::polar_beyond + g))) {
+      return "a substituent without measured rates for this halogen";
+    }
+  }
+  return nullptr;
+}
+
+}  // namespace halostep

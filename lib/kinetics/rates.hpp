@@ -1,0 +1,41 @@
+// Rates of X + R-H at the sites of a molecule: the fitted model with its covariance.
+#pragma once
+#include <optional>
+#include <vector>
+
+#include "halostep/quantity.hpp"
+#include "halostep/tables.hpp"
+#include "gradient.hpp"
+#include "model.hpp"
+
+namespace halostep {
+
+struct CarrierModel {
+  std::vector<double> p;           // parameters
+  std::vector<double> covariance;  // row-major
+  std::vector<int> support;
+  KineticForm form;
+  double scatter = 0;              // of ln k
+  double t_low = 0, t_high = 0;    // range of the evidence, K
+  Quantity slope;                  // straight Evans-Polanyi line through the alkanes
+  Quantity intercept;
+};
+
+/// Models of F, Cl, Br, I in that order; an entry is empty where the table has none.
+class RateBook {
+ public:
+  explicit RateBook(const Table& table);
+  [[nodiscard]] const CarrierModel* carrier(int x) const {
+    const auto& m = models_[static_cast<std::size_t>(x)];
+    return m.p.empty() ? nullptr : &m;
+  }
+  /// g' C h over the parameters' covariance.
+  [[nodiscard]] double covariance(int x, const RateGradient& g, const RateGradient& h) const;
+  /// Why the structure is outside the evidence of the model, or nullptr.
+  [[nodiscard]] const char* thin(int x, const RateSite& s) const;
+
+ private:
+  std::vector<CarrierModel> models_;
+};
+
+}  // namespace halostep
