@@ -1,0 +1,34 @@
+// The C-H sites of one molecule with what rates and shares need; worked out once for all halogens.
+#pragma once
+#include <string>
+#include <vector>
+
+#include "bonds/answers.hpp"
+#include "kinetics/rates.hpp"
+
+namespace halostep {
+
+/// One kind of C-H: sites that share D, its evidence and the rate model's view share their errors too.
+struct SiteKind {
+  Quantity d;                          // D(R-H), kJ/mol
+  double own_u2 = 0;                   // part of u(d)^2 no other kind shares
+  std::vector<FeatureCount> features;  // typed route: shares the fitted corrections with other kinds
+  RateSite rate;
+  int entry = -1;                      // measured route: index into Table::bonds
+};
+
+struct CarbonSite {
+  const HydrogenSite* site = nullptr;
+  int kind = -1;                       // index into CarbonSites::kinds; -1: outside, see `refusal`
+  bool extrapolated = false;           // D rests on thin evidence
+  std::string refusal;
+};
+
+struct CarbonSites {
+  std::vector<SiteKind> kinds;
+  std::vector<CarbonSite> sites;       // in order of Analysis::sites(), carbon only
+};
+
+CarbonSites carbon_sites(const Analysis& a, const BondBook& bonds, const BondModel& model, bool typed_only);
+
+}  // namespace halostep

@@ -1,0 +1,149 @@
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <array>
+
+#include "halostep/structure.hpp"
+#include "outcome/engine_impl.hpp"
+
+namespace halostep {
+namespace {
+
+constexpr const char* kNames[] = {"F", "Cl", "Br", "I"};
+constexpr int kNumbers[] = {9, 17, 35, 53};
+
+BondModel make_model(const Table& t) {
+  std::array<const FittedModel*, 4> exchange{};
+  for (std::size_t x = 0; x < 4; ++x) exchange[x] = find_model(t.models, std::string("exchange.") + kNames[x]);
+  return BondModel(t, find_model(t.models, "bonds"), exchange);
+}
+
+}  // namespace
+
+const char* halogen_name(Halogen x) noexcept { return kNames[static_cast<std::size_t>(x)]; }
+int halogen_element(Halogen x) noexcept { return kNumbers[static_cast<std::size_t>(x)]; }
+
+Result<Halogen> parse_halogen(std::string_view text) {
+  for (const auto x : kAllHalogens) {
+    if (text == halogen_name(x)) return x;
+  }
+  return Error{ErrorClass::usage, fmt::format("unknown halogen '{}'; known: F, Cl, Br, I", text), {}};
+}
+
+const char* route_name(Route r) noexcept {
+  switch (r) {
+    case Route::measured: return "measured";
+    case Route::adjusted: return "adjusted";
+    case Route::typed: return "typed";
+  }
+  return "typed";
+}
+
+const char* step_kind_name(StepKind k) noexcept {
+  switch (k) {
+    case StepKind::initiation: return "initiation";
+    case StepKind::abstraction: return "abstraction";
+    case StepKind::transfer: return "transfer";
+    case StepKind::net: return "net";
+    case StepKind::termination: return "termination";
+    case StepKind::elementary: return "elementary";
+  }
+  return "elementary";
+}
+
+Engine::Impl::Impl(Table t)
+    : table(std::move(t)), model(make_model(table)), bonds(table, model), thermo(table), steps(table, model, bonds, thermo),
+      rates(table), rate_evidence(table) {}
+
+Result<std::vector<BondAnswer>> Engine::Impl::bond_answers(const Analysis& a, const BondOptions& o) const {
+  auto list = bonds.all(a, o);
+  if (list.empty()) return Error{ErrorClass::domain, "no X-H, C-X or weak bond in this structure", {}};
+  if (std::none_of(list.begin(), list.end(), [](const BondAnswer& b) { return b.d298.has_value(); })) {
+    // A structure refused only for its isotopes says so.
+    return list.front().why ? *list.front().why : Error{ErrorClass::domain, "no bond of this structure could be answered", {}};
+  }
+  return list;
+}
+
+std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
+                                                   double temperature, const BondOptions& o) const {
+  auto list = steps.chain(a, halogens, temperature, o);
+  std::size_t site = 0;
+  int x = -1;
+  std::optional<KindRates> r;
+  for (auto& s : list) {
+    if (s.kind != StepKind::abstraction) continue;
+    if (const int now = static_cast<int>(*s.halogen); now != x) {
+      x = now;
+      site = 0;
+      r.reset();
+      if (carrier(x) != nullptr) r = kind_rates(c, rates, model, x, *steps.halogen(x).d_hx, a.heavy_atoms(), temperature, false);
+    }
+    if (!r) {
+      s.why_ea = "the table holds no rate model for this halogen";
+    } else if (c.sites[site].kind < 0) {
+      if (o.details) s.why_ea = c.sites[site].refusal;
+    } else {
+      s.ea = site_ea(c, *r, *carrier(x), site, temperature);
+      s.k_cm3_s = site_k(c, *r, site);
+    }
+    ++site;
+  }
+  return list;
+}
+
+Result<Engine> Engine::open(const std::string& table_path) {
+  auto t = open_table(table_path);
+  if (!t.ok()) return t.error();
+  return from_table(std::move(t).value());
+}
+
+Result<Engine> Engine::from_table(Table table) { return Engine(std::make_unique<const Impl>(std::move(table))); }
+
+Engine::Engine(std::unique_ptr<const Impl> impl) : impl_(std::move(impl)) {}
+Engine::Engine(Engine&&) noexcept = default;
+Engine& Engine::operator=(Engine&&) noexcept = default;
+Engine::~Engine() = default;
+
+const Table& Engine::table() const noexcept { return impl_->table; }
+
+Result<std::vector<BondAnswer>> Engine::bonds(const Molecule& m, const BondOptions& o) const {
+  return impl_->bond_answers(Analysis(m), o);
+}
+
+Result<std::vector<StepAnswer>> Engine::steps(const Molecule& m, std::span<const Halogen> halogens, double temperature,
+                                              const BondOptions& o) const {
+  const Analysis a(m);
+  const auto c = carbon_sites(a, impl_->bonds, impl_->model, o.typed);
+  if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
+  return impl_->step_answers(a, c, halogens, temperature, o);
+}
+
+Result<StepAnswer> Engine::reaction(std::string_view text, double temperature) const {
+  auto s = impl_->steps.reaction(text, temperature);
+  if (s.ok()) impl_->add_rate(s.value(), text);
+  return s;
+}
+
+Result<std::vector<HalogenOutcome>> Engine::outcome(const Molecule& m, std::span<const Halogen> halogens, double temperature,
+                                                    const OutcomeOptions& o) const {
+  const Analysis a(m);
+  return impl_->outcome_answers(a, carbon_sites(a, impl_->bonds, impl_->model, o.typed), halogens, temperature, o.details);
+}
+
+Result<Study> Engine::study(const Molecule& m, std::span<const Halogen> halogens, double temperature,
+                            const BondOptions& o) const {
+  const Analysis a(m);
+  Study s;
+  auto bonds = impl_->bond_answers(a, o);
+  if (!bonds.ok()) return bonds.error();
+  s.bonds = std::move(bonds).value();
+  const auto c = carbon_sites(a, impl_->bonds, impl_->model, o.typed);
+  if (c.sites.empty()) return s;
+  s.steps = impl_->step_answers(a, c, halogens, temperature, o);
+  auto outcome = impl_->outcome_answers(a, c, halogens, temperature, o.details);
+  if (outcome.ok()) s.halogens = std::move(outcome).value();
+  return s;
+}
+
+}  // namespace halostep

@@ -1,0 +1,37 @@
+// What an Engine holds.
+#pragma once
+#include "bonds/answers.hpp"
+#include "halostep/engine.hpp"
+#include "kinetics/rates.hpp"
+#include "outcome/carbon_sites.hpp"
+#include "outcome/rate_answers.hpp"
+#include "outcome/rate_evidence.hpp"
+#include "steps/steps.hpp"
+#include "steps/thermo.hpp"
+
+namespace halostep {
+
+struct Engine::Impl {
+  explicit Impl(Table t);
+
+  /// Rate model and D(H-X), or nothing where the table lacks one of them.
+  [[nodiscard]] const CarrierModel* carrier(int x) const { return steps.halogen(x).d_hx ? rates.carrier(x) : nullptr; }
+  [[nodiscard]] Result<std::vector<BondAnswer>> bond_answers(const Analysis& a, const BondOptions& o) const;
+  [[nodiscard]] std::vector<StepAnswer> step_answers(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
+                                                     double temperature, const BondOptions& o) const;
+  [[nodiscard]] Result<std::vector<HalogenOutcome>> outcome_answers(const Analysis& a, const CarbonSites& c,
+                                                                    std::span<const Halogen> halogens, double temperature,
+                                                                    bool details) const;
+  /// Adds Ea and k to a reaction X + RH or R + HX.
+  void add_rate(StepAnswer& s, std::string_view text) const;
+
+  Table table;
+  BondModel model;
+  BondBook bonds;
+  ThermoBook thermo;
+  StepBook steps;
+  RateBook rates;
+  RateEvidence rate_evidence;
+};
+
+}  // namespace halostep

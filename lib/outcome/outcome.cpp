@@ -1,0 +1,110 @@
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+
+#include "halostep/structure.hpp"
+#include "outcome/engine_impl.hpp"
+#include "outcome/notes.hpp"
+
+namespace halostep {
+namespace {
+
+// Why a rate lies outside the evidence, or an empty text.
+std::string outside(const CarbonSite& s, const CarrierModel& m, const char* thin, double temperature) {
+  if (temperature < m.t_low || temperature > m.t_high) {
+    return fmt::format("{:.0f} K is outside the {:.0f} to {:.0f} K of the measured rates", temperature, m.t_low, m.t_high);
+  }
+  if (thin != nullptr) return thin;
+  if (s.extrapolated) return "the bond strength rests on thin evidence";
+  return {};
+}
+
+// The site that takes most, against each other one.
+void compare_sites(const CarbonSites& c, const KindRates& r, const CarrierModel& m, const std::vector<std::size_t>& answered,
+                   double temperature, HalogenOutcome& h) {
+  std::size_t top = 0;
+  for (std::size_t i = 1; i < answered.size(); ++i) {
+    if (h.sites[i].share > h.sites[top].share) top = i;
+  }
+  for (std::size_t i = 0; i < answered.size(); ++i) {
+    if (i == top) continue;
+    auto s = selectivity(c, r, m, answered[top], answered[i], temperature);
+    s.a = static_cast<int>(top);
+    s.b = static_cast<int>(i);
+    h.selectivity.push_back(s);
+  }
+}
+
+}  // namespace
+
+Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis& a, const CarbonSites& c,
+                                                                  std::span<const Halogen> halogens, double temperature,
+                                                                  bool details) const {
+  if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
+  if (c.kinds.empty()) return Error{ErrorClass::domain, fmt::format("no C-H site inside the domain: {}", c.sites.front().refusal), {}};
+  std::vector<HalogenOutcome> out;
+  std::vector<AClass> classes;
+  for (const auto& k : c.kinds) classes.push_back(k.rate.a_class);
+  std::string left_out;
+  for (const auto& s : c.sites) {
+    if (s.kind >= 0 || !details) continue;
+    left_out = fmt::format("the C-H at {} is outside the domain ({}); the shares leave it out",
+                           canonical_smiles(a.original().without_hydrogen(s.site->atom)), s.refusal);
+    break;
+  }
+  for (const auto halogen : halogens) {
+    const int x = static_cast<int>(halogen);
+    const auto* m = carrier(x);
+    if (m == nullptr) return Error{ErrorClass::no_data, fmt::format("the table holds no rate model for {}", halogen_name(halogen)), {}};
+    const auto& d_hx = *steps.halogen(x).d_hx;
+    const auto r = kind_rates(c, rates, model, x, d_hx, a.heavy_atoms(), temperature, true);
+    const auto share = shares(c, r);
+    HalogenOutcome h;
+    h.halogen = halogen;
+    h.temperature = temperature;
+    h.slope = m->slope;
+    h.k_total = r.total * r.damping;
+    std::vector<std::size_t> answered;
+    for (std::size_t i = 0; i < c.sites.size(); ++i) {
+      const auto& s = c.sites[i];
+      if (s.kind < 0) continue;
+      const auto k = static_cast<std::size_t>(s.kind);
+      answered.push_back(i);
+      SiteOutcome o;
+      o.atom = s.site->atom;
+      o.h_count = s.site->h_count;
+      o.dh = {c.kinds[k].d.value - d_hx.value, std::hypot(c.kinds[k].d.u, d_hx.u)};
+      o.k_cm3_s = site_k(c, r, i);
+      o.u_log10_k = std::sqrt(std::max(0.0, r.covariance[k * c.kinds.size() + k] + r.own[k])) / std::log(10.0);
+      o.ea = site_ea(c, r, *m, i, temperature);
+      o.a_cm3_s = o.k_cm3_s * std::exp(o.ea / (kGasConstant * temperature));
+      o.ts_position = r.at[k].position;
+      o.share = share[i].share;
+      o.share_low = share[i].low;
+      o.share_high = share[i].high;
+      const char* thin = rates.thin(x, c.kinds[k].rate);
+      o.extrapolated = thin != nullptr || s.extrapolated || temperature < m->t_low || temperature > m->t_high;
+      if (details) {
+        o.atoms = s.site->atoms;
+        o.radical = canonical_smiles(a.original().without_hydrogen(s.site->atom));
+        o.type = site_type(a.plain(), a.info(), a.to_plain(s.site->atom));
+        if (o.extrapolated) o.why_extrapolated = outside(s, *m, thin, temperature);
+      }
+      h.sites.push_back(std::move(o));
+    }
+    compare_sites(c, r, *m, answered, temperature, h);
+    if (details) {
+      h.notes = competing_channels(a, halogen);
+      if (!left_out.empty()) h.notes.insert(h.notes.begin(), left_out);
+      h.sources = rate_evidence.sources(x, a.key(), classes);
+      for (const int s : bonds.entry_sources(steps.halogen(x).entry_hx)) {
+        if (std::find(h.sources.begin(), h.sources.end(), s) == h.sources.end()) h.sources.push_back(s);
+      }
+    }
+    out.push_back(std::move(h));
+  }
+  return out;
+}
+
+}  // namespace halostep

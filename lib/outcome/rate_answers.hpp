@@ -1,0 +1,40 @@
+// Rates, shares and selectivity of the C-H sites of one molecule for one halogen. Equations: docs/model.md.
+#pragma once
+#include <vector>
+
+#include "halostep/engine.hpp"
+#include "outcome/carbon_sites.hpp"
+
+namespace halostep {
+
+/// Rates of all kinds of a molecule at one temperature.
+struct KindRates {
+  std::vector<SiteRate> at;            // per kind, one H, before the encounter limit
+  std::vector<RateGradient> gradient;  // per kind
+  std::vector<double> covariance;      // kinds x kinds: of ln k per H, with the shared part of D; row-major
+  std::vector<double> own;             // per kind: variance of ln k nothing else shares
+  double total = 0;                    // sum over all sites, before the limit, cm3 molecule-1 s-1
+  double damping = 1;                  // what the encounter limit leaves of every rate, 0..1
+  double ea_shift = 0;                 // what the limit adds to every activation energy, kJ/mol
+};
+
+/// D(H-X) of the halogen; false `with_errors` leaves covariance and own empty.
+KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondModel& model, int x, const Quantity& d_hx,
+                     int heavy_atoms, double temperature, bool with_errors);
+
+/// k of all H of a site, cm3 molecule-1 s-1.
+double site_k(const CarbonSites& s, const KindRates& r, std::size_t site);
+/// Arrhenius activation energy of a site at T, kJ/mol: R T^2 d ln k / dT, the limit included.
+double site_ea(const CarbonSites& s, const KindRates& r, const CarrierModel& m, std::size_t site, double temperature);
+
+/// Share of each site (0 for sites outside) with its 95 % range, on the logit scale so that it stays within 0 and 1.
+struct Share {
+  double share = 0, low = 0, high = 0;
+};
+std::vector<Share> shares(const CarbonSites& s, const KindRates& r);
+
+/// ln(k_a / k_b) taken apart; all parts are dimensionless and add up.
+Selectivity selectivity(const CarbonSites& s, const KindRates& r, const CarrierModel& m, std::size_t a, std::size_t b,
+                        double temperature);
+
+}  // namespace halostep

@@ -1,0 +1,77 @@
+// Barrier and rate coefficient of X + RH -> HX + R and of its reverse.
+#include <algorithm>
+#include <cmath>
+
+#include "halostep/structure.hpp"
+#include "outcome/engine_impl.hpp"
+
+namespace halostep {
+namespace {
+
+int halogen_of(const Molecule& m, int hydrogens, int unpaired) {
+  if (m.atom_count() != 1 || m.atom(0).hydrogens != hydrogens || m.atom(0).unpaired != unpaired) return -1;
+  for (const auto x : kAllHalogens) {
+    if (m.atom(0).element == halogen_element(x)) return static_cast<int>(x);
+  }
+  return -1;
+}
+
+struct Abstraction {
+  int x = -1;
+  const Molecule *parent = nullptr, *radical = nullptr;
+};
+
+// Left and right of X + RH >> HX + R, in any order of the species.
+Abstraction as_abstraction(const std::vector<Molecule>& left, const std::vector<Molecule>& right) {
+  Abstraction a;
+  if (left.size() != 2 || right.size() != 2) return a;
+  for (std::size_t i = 0; i < 2; ++i) {
+    for (std::size_t k = 0; k < 2; ++k) {
+      const int x = halogen_of(left[i], 0, 1);
+      if (x >= 0 && x == halogen_of(right[k], 1, 0)) a = {x, &left[1 - i], &right[1 - k]};
+    }
+  }
+  return a;
+}
+
+}  // namespace
+
+void Engine::Impl::add_rate(StepAnswer& s, std::string_view text) const {
+  const auto parsed = parse_reaction(text);
+  if (!parsed.ok()) return;
+  auto f = as_abstraction(parsed.value().left, parsed.value().right);
+  const bool reverse = f.x < 0;
+  if (reverse) f = as_abstraction(parsed.value().right, parsed.value().left);
+  s.why_ea = "the rate model covers X + RH and its reverse only";
+  if (f.x < 0) return;
+  const Analysis a(*f.parent);
+  const int atom = find_site(a.original(), a.classes(), *f.radical);
+  const auto c = carbon_sites(a, bonds, model, false);
+  const auto site = std::find_if(c.sites.begin(), c.sites.end(), [&](const CarbonSite& q) { return q.site->atom == atom; });
+  if (carrier(f.x) == nullptr || site == c.sites.end()) return;
+  if (site->kind < 0) {
+    s.why_ea = site->refusal;
+    return;
+  }
+  const double t = s.temperature;
+  const auto r = kind_rates(c, rates, model, f.x, *steps.halogen(f.x).d_hx, a.heavy_atoms(), t, false);
+  const auto i = static_cast<std::size_t>(site - c.sites.begin());
+  double ea = site_ea(c, r, *carrier(f.x), i, t), k = site_k(c, r, i);
+  s.why_ea.clear();
+  // Detailed balance; two species on either side, so Kc = Kp and dU = dH.
+  if (reverse) {
+    if (!s.log10_k || !s.ds || !s.dg) {
+      s.why_ea = "the reverse of an abstraction needs its equilibrium constant; " + s.why_ds;
+      return;
+    }
+    ea += *s.dg + t * *s.ds / 1000.0;
+    k *= std::pow(10.0, *s.log10_k);
+  }
+  s.ea = ea;
+  s.k_cm3_s = k;
+  for (const int q : rate_evidence.sources(f.x, a.key(), {c.kinds[static_cast<std::size_t>(site->kind)].rate.a_class})) {
+    if (std::find(s.sources.begin(), s.sources.end(), q) == s.sources.end()) s.sources.push_back(q);
+  }
+}
+
+}  // namespace halostep
