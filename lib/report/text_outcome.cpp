@@ -1,0 +1,169 @@
+// Rates, shares and the comparison for people and as CSV.
+#include <fmt/format.h>
+
+#include "phrases.hpp"
+
+namespace halostep {
+
+namespace {
+
+std::string percent_range(double low, double high) { return percent(low) + " to " + percent(high); }
+
+std::string sites_text(const HalogenOutcome& outcome, EnergyUnit unit) {
+  const std::string name = energy_unit_name(unit);
+  Grid grid;
+  grid.indent = "    ";
+  grid.columns = {{"radical formed", false}, {"H", true},          {"type", false},
+                  {"dH298 " + name, true},   {"u " + name, true},  {"Ea " + name, true},
+                  {"k cm3/s", true},         {"u(log10 k)", true}, {"TS", true},
+                  {"share %", true},         {"95 % range", true}, {"", false}};
+  for (const auto& s : outcome.sites) {
+    std::vector<std::string> row{s.radical, std::to_string(s.h_count), s.type};
+    add_quantity(row, s.dh, unit);
+    row.push_back(energy_cell(s.ea, unit));
+    row.push_back(format_scientific(s.k_cm3_s, 3));
+    row.push_back(format_fixed(s.u_log10_k, 2));
+    row.push_back(format_fixed(s.ts_position, 2));
+    row.push_back(percent(s.share));
+    row.push_back(percent_range(s.share_low, s.share_high));
+    row.push_back(s.extrapolated ? "extrapolated" : "");
+    grid.rows.push_back(std::move(row));
+  }
+  return aligned(grid);
+}
+
+std::string selectivity_text(const HalogenOutcome& outcome) {
+  if (outcome.selectivity.empty()) return {};
+  Grid grid;
+  grid.indent = "    ";
+  grid.columns = {{"ln(k/k) of", false}, {"against", false},  {"total", true},
+                  {"enthalpy", true},    {"curvature", true}, {"polar", true},
+                  {"number of H", true}, {"A factor", true},  {"encounter", true}};
+  for (const auto& s : outcome.selectivity) {
+    grid.rows.push_back({outcome.sites[static_cast<std::size_t>(s.a)].radical,
+                         outcome.sites[static_cast<std::size_t>(s.b)].radical, format_fixed(s.ln_ratio, 2),
+                         format_fixed(s.enthalpy, 2), format_fixed(s.curvature, 2), format_fixed(s.polar, 2),
+                         format_fixed(s.statistical, 2), format_fixed(s.a_factor, 2), format_fixed(s.encounter, 2)});
+  }
+  return aligned(grid);
+}
+
+std::string notes_text(const HalogenOutcome& outcome) {
+  std::string out;
+  for (const auto& note : outcome.notes) out += wrapped("note: " + note, 118, "    ");
+  std::set<std::string> said;
+  for (const auto& s : outcome.sites) {
+    if (s.extrapolated && said.insert(s.why_extrapolated).second) {
+      out += wrapped("extrapolated: " + s.why_extrapolated, 118, "    ");
+    }
+  }
+  return out;
+}
+
+std::string halogen_text(const HalogenOutcome& outcome, EnergyUnit unit) {
+  std::string out = fmt::format("  {}. at {} K: k total {} cm3/s; Evans-Polanyi slope over the alkanes {} (u {})\n",
+                                halogen_name(outcome.halogen), format_fixed(outcome.temperature, 2),
+                                format_scientific(outcome.k_total, 3), format_fixed(outcome.slope.value, 2),
+                                format_fixed(outcome.slope.u, 2));
+  return out + sites_text(outcome, unit) + selectivity_text(outcome) + notes_text(outcome);
+}
+
+std::string comparison_text(const Comparison& c, EnergyUnit unit) {
+  const std::string name = energy_unit_name(unit);
+  Grid grid;
+  grid.indent = "    ";
+  grid.columns = {{"", false},
+                  {"X", false},
+                  {"T K", true},
+                  {"share %", true},
+                  {"95 % range", true},
+                  {"k cm3/s", true},
+                  {"abstraction " + name, true},
+                  {"net " + name, true},
+                  {"verdict", false}};
+  for (std::size_t i = 0; i < c.rows.size(); ++i) {
+    const auto& r = c.rows[i];
+    grid.rows.push_back({static_cast<int>(i) == c.best ? ">" : "", halogen_name(r.halogen),
+                         format_fixed(r.temperature, 2), percent(r.share), percent_range(r.share_low, r.share_high),
+                         format_scientific(r.k_cm3_s, 3),
+                         energy_cell(r.dh_abstraction ? std::optional(r.dh_abstraction->value) : std::nullopt, unit),
+                         energy_cell(r.dh_net ? std::optional(r.dh_net->value) : std::nullopt, unit), r.verdict});
+  }
+  return fmt::format("  wanted site {} ({} H, chosen by {})\n", c.wanted, c.h_count, c.chosen_by) + aligned(grid) +
+         wrapped("best choice: " + c.why, 118, "    ");
+}
+
+std::string record_text(const OutcomeRecord& record, const TextOptions& options) {
+  std::string out = head_text(record.head);
+  if (record.comparison) out += comparison_text(*record.comparison, options.unit);
+  if (!record.comparison || options.evidence) {
+    for (const auto& outcome : record.halogens) out += halogen_text(outcome, options.unit) + '\n';
+  }
+  if (out.size() < 2 || out[out.size() - 2] != '\n') out += '\n';
+  return out;
+}
+
+/// Sites of one record, or the comparison's rows; one cell list per line.
+std::vector<std::vector<std::string>> outcome_rows(const OutcomeRecord& record, EnergyUnit unit) {
+  std::vector<std::vector<std::string>> rows;
+  for (const auto& outcome : record.halogens) {
+    for (const auto& s : outcome.sites) {
+      std::string best;
+      if (record.comparison && record.comparison->best >= 0) {
+        const auto& b = record.comparison->rows[static_cast<std::size_t>(record.comparison->best)];
+        const bool same = b.halogen == outcome.halogen && b.temperature == outcome.temperature;
+        best = same && s.radical == record.comparison->wanted ? "true" : "false";
+      }
+      rows.push_back({halogen_name(outcome.halogen), csv_number(outcome.temperature), s.radical,
+                      std::to_string(s.h_count), s.type, csv_energy(s.dh.value, unit), csv_energy(s.dh.u, unit),
+                      csv_number(s.k_cm3_s), csv_number(s.u_log10_k), csv_energy(s.ea, unit), csv_number(s.ts_position),
+                      csv_number(s.share), csv_number(s.share_low), csv_number(s.share_high),
+                      s.extrapolated ? "true" : "false", best});
+    }
+  }
+  if (rows.empty()) rows.emplace_back(16);
+  return rows;
+}
+
+}  // namespace
+
+std::string outcome_text(const Table& table, std::span<const OutcomeRecord> records, const TextOptions& options) {
+  std::string out;
+  std::set<int> cited;
+  bool answered = false;
+  for (const auto& record : records) {
+    out += record_text(record, options);
+    answered = answered || !record.halogens.empty();
+    for (const auto& outcome : record.halogens) cited.insert(outcome.sources.begin(), outcome.sources.end());
+  }
+  if (!answered) return out + table_line(table);
+  out += legend(
+      {"H: equivalent hydrogens. dH298: enthalpy of X. + RH -> HX + R., gas, 298.15 K; u: standard uncertainty. "
+       "Ea: Arrhenius activation energy at T (may be negative). k: rate coefficient of all H of the site.",
+       "TS: position of the transition state, 0 like the reactants, 1 like the products. share: of the C-H sites; "
+       "first attack only, no conversion, inert medium. The second table splits ln(k/k) into the parts it is the "
+       "sum of.",
+       "slow: below 1 s-1 at 1 mol/L. extrapolated: temperature or structure outside the evidence."});
+  return out + source_list(table, cited) + caution_text() + '\n' + table_line(table);
+}
+
+std::string outcome_csv(const Table&, std::span<const OutcomeRecord> records, EnergyUnit unit) {
+  Grid grid;
+  grid.columns = head_columns();
+  const std::string suffix = unit_suffix(unit);
+  add_columns(grid.columns,
+              {"halogen", "temperature_k", "radical", "h_count", "type", "dh_" + suffix, "u_dh_" + suffix, "k_cm3_s",
+               "u_log10_k", "ea_" + suffix, "ts_position", "share", "share_low", "share_high", "extrapolated", "best"});
+  for (auto& column : error_columns()) grid.columns.push_back(column);
+  for (const auto& record : records) {
+    for (auto& cells : outcome_rows(record, unit)) {
+      std::vector<std::string> row = head_cells(record.head);
+      row.insert(row.end(), cells.begin(), cells.end());
+      for (auto& cell : error_cells(record.head.error)) row.push_back(std::move(cell));
+      grid.rows.push_back(std::move(row));
+    }
+  }
+  return csv(grid);
+}
+
+}  // namespace halostep
