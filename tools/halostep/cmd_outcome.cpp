@@ -1,0 +1,140 @@
+// halostep outcome: rates and shares of the C-H sites, and the comparison for one wanted site.
+#include <memory>
+
+#include "common.hpp"
+
+namespace halostep::command {
+
+namespace {
+
+struct Wanted {
+  int atom = -1;
+  std::string chosen_by;
+};
+
+/// The site whose radical is the one asked for.
+Result<int> site_of_radical(const Molecule& m, std::span<const SiteOutcome> sites, const std::string& text) {
+  const auto radical = parse_smiles(text, ParseMode::species);
+  if (!radical.ok()) return radical.error();
+  const auto hash = structure_hash(radical.value());
+  for (const auto& site : sites) {
+    if (structure_hash(m.without_hydrogen(site.atom)) == hash) return site.atom;
+  }
+  return Error{ErrorClass::domain, "no C-H site of the substrate gives the radical " + text, "--site"};
+}
+
+/// The site where a halogen in place of H gives the product asked for.
+Result<int> site_of_product(const Molecule& m, std::span<const SiteOutcome> sites, const std::string& text) {
+  const auto product = parse_smiles(text);
+  if (!product.ok()) return product.error();
+  const auto hash = structure_hash(product.value());
+  for (const auto& site : sites) {
+    for (const Halogen x : kAllHalogens) {
+      if (structure_hash(m.with_substituent(site.atom, halogen_element(x))) == hash) return site.atom;
+    }
+  }
+  return Error{ErrorClass::domain, "no C-H site of the substrate gives " + text + " by taking up one halogen",
+               "--product"};
+}
+
+int weakest_site(std::span<const SiteOutcome> sites) {
+  const auto lower = [](const SiteOutcome& a, const SiteOutcome& b) { return a.dh.value < b.dh.value; };
+  return std::min_element(sites.begin(), sites.end(), lower)->atom;
+}
+
+Result<Wanted> wanted_site(const Molecule& m, const HalogenOutcome& outcome, const Options& options) {
+  if (!options.site.empty()) {
+    const auto atom = site_of_radical(m, outcome.sites, options.site);
+    if (!atom.ok()) return atom.error();
+    return Wanted{atom.value(), "site"};
+  }
+  if (!options.product.empty()) {
+    const auto atom = site_of_product(m, outcome.sites, options.product);
+    if (!atom.ok()) return atom.error();
+    return Wanted{atom.value(), "product"};
+  }
+  return Wanted{weakest_site(outcome.sites), "weakest C-H"};
+}
+
+std::optional<Error> compare(const Engine& engine, const Molecule& m, const Options& options, const Settings& settings,
+                             OutcomeRecord& record) {
+  if (record.halogens.empty() || record.halogens.front().sites.empty()) return std::nullopt;
+  const auto wanted = wanted_site(m, record.halogens.front(), options);
+  if (!wanted.ok()) return wanted.error();
+  // The net enthalpy is the same at every temperature.
+  const auto steps = engine.steps(m, settings.halogens, settings.temperatures.front(), {options.typed, true});
+  if (!steps.ok()) return steps.error();
+  auto comparison = compare_site(record.halogens, steps.value(), wanted.value().atom, wanted.value().chosen_by);
+  if (!comparison.ok()) return comparison.error();
+  record.comparison = std::move(comparison).value();
+  return std::nullopt;
+}
+
+void answer(const Engine& engine, const Options& options, const Settings& settings, const Input& input,
+            OutcomeRecord& record) {
+  for (const double t : settings.temperatures) {
+    auto halogens = engine.outcome(*input.molecule, settings.halogens, t, {options.typed, true});
+    if (!halogens.ok()) {
+      record.head.error = halogens.error();
+      return;
+    }
+    for (auto& h : halogens.value()) record.halogens.push_back(std::move(h));
+  }
+  if (!options.compare) return;
+  record.head.error = compare(engine, *input.molecule, options, settings, record);
+  if (record.head.error) record.halogens.clear();
+}
+
+int run(const CLI::App& app, const Options& options) {
+  const auto settings = check(options);
+  if (!settings.ok()) return complain(settings.error()), kUsage;
+  auto inputs = read_inputs(app, options, false);
+  if (!inputs.ok()) return complain(inputs.error()), kUsage;
+  const auto engine = open_engine(options);
+  if (!engine) return kTableFault;
+
+  Tally tally;
+  const auto& s = settings.value();
+  std::vector<OutcomeRecord> records;
+  for (auto& input : inputs.value()) {
+    OutcomeRecord record{std::move(input.head), {}, {}};
+    if (!record.head.error) answer(*engine, options, s, input, record);
+    if (record.head.error) {
+      record.head.error = refuse(input, *record.head.error);
+      tally.refused(*record.head.error);
+    } else {
+      tally.answered();
+    }
+    records.push_back(std::move(record));
+  }
+  const auto& table = engine->table();
+  switch (s.format) {
+    case Format::json: return write_out(outcome_json(table, records), tally.exit_code());
+    case Format::csv: return write_out(outcome_csv(table, records, s.text.unit), tally.exit_code());
+    case Format::text: break;
+  }
+  return write_out(outcome_text(table, records, s.text), tally.exit_code());
+}
+
+}  // namespace
+
+void add_outcome(CLI::App& app, int& exit_code) {
+  auto options = std::make_shared<Options>();
+  CLI::App* sub = app.add_subcommand("outcome", "rate, share and selectivity of every C-H site for each halogen");
+  add_common(*sub, *options);
+  add_input(*sub, *options);
+  add_halogens(*sub, *options);
+  add_temperatures(*sub, *options);
+  auto* compare_flag = sub->add_flag("--compare", options->compare,
+                                     "one wanted site against halogens and temperatures, and the best choice");
+  auto* site = sub->add_option("--site", options->site, "the wanted site: SMILES of its radical")->needs(compare_flag);
+  auto* product = sub->add_option("--product", options->product, "the wanted product: SMILES of a monohalide");
+  product->needs(compare_flag)->excludes(site);
+  set_usage(*sub, "halostep outcome [options] SMILES... | --file FILE | -");
+  sub->footer(
+      "Example: halostep outcome 'CC(C)C' --halogen Br --temperature 127C\n"
+      "Example: halostep outcome 'CC(C)C' --compare --product 'CC(C)(C)Br' --temperature 25C --temperature 127C");
+  sub->callback([sub, options, &exit_code] { exit_code = run(*sub, *options); });
+}
+
+}  // namespace halostep::command

@@ -1,0 +1,17 @@
+// The commands of halostep-tables. Each returns the exit code: 0 when all is well, 1 on any fault. Faults go to
+// stderr, one a line, as file:line: reason.
+#pragma once
+#include <string>
+
+namespace halostep {
+
+/// Checks all files and prints the counts.
+int check_command(const std::string& dir);
+/// Checks, repeats the fit, compares it with fitted.json and writes the table to `out`.
+int compile_command(const std::string& dir, const std::string& out);
+/// Checks, fits and writes fitted.json.
+int refit_command(const std::string& dir);
+/// Checks, then calls crossval() of tables/fit.hpp.
+int crossval_command(const std::string& dir);
+
+}  // namespace halostep

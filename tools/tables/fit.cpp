@@ -1,0 +1,113 @@
+#include "tables/fit.hpp"
+
+#include <algorithm>
+#include <array>
+#include <cmath>
+
+#include "adjust/ridge.hpp"
+#include "tables/fit_bonds.hpp"
+#include "tables/fit_kinetics.hpp"
+
+namespace halostep {
+namespace {
+
+constexpr const char* kNames[] = {"F", "Cl", "Br", "I"};
+
+BondModel bond_model(const Table& t, const std::vector<FittedModel>& done) {
+  const std::array<const FittedModel*, 4> none{};
+  return BondModel(t, find_model(done, "bonds"), none);
+}
+
+// Range of temperature the fitted rates speak for.
+void add_range(FittedModel& m, const Table& t, const std::vector<RateSample>& samples, int carrier) {
+  double low = 1e9, high = 0;
+  for (const auto& s : samples) {
+    if (s.carrier != carrier) continue;
+    low = std::min(low, s.temperature);
+    high = std::max(high, s.temperature);
+    if (s.relative) continue;
+    const auto& r = t.rates[static_cast<std::size_t>(s.row)];
+    if (r.t_min) low = std::min(low, *r.t_min);
+    if (r.t_max) high = std::max(high, *r.t_max);
+  }
+  m.settings.emplace_back("T low", low);
+  m.settings.emplace_back("T high", high);
+}
+
+bool alkane(const RateSample& s) {
+  return !s.sites.empty() && std::all_of(s.sites.begin(), s.sites.end(), [](const RatedSite& r) {
+    if (r.site.a_class != AClass::alkyl) return false;
+    for (const auto& g : r.site.count) {
+      if (std::any_of(g.begin(), g.end(), [](int n) { return n > 0; })) return false;
+    }
+    return true;
+  });
+}
+
+// Straight line Ea = E0 + alpha dH through the alkanes' measured activation energies (Evans and Polanyi, Trans.
+// Faraday Soc. 1938, 34, 11). A row for a whole molecule stands at the mean dH of its sites, weighted by rate.
+Result<FittedModel> fit_line(const Table& t, const std::vector<RateSample>& samples, int carrier, const FittedModel& rates) {
+  std::vector<double> dh, ea;
+  int last = -1;
+  KineticForm form;
+  for (const auto& [name, v] : rates.settings) {
+    if (name == "polar outside") form.polar_outside = v > 0.5;
+  }
+  for (const auto& s : samples) {
+    if (s.carrier != carrier || s.relative || s.row == last || !alkane(s)) continue;
+    const auto& row = t.rates[static_cast<std::size_t>(s.row)];
+    if (!row.ea || !row.a) continue;
+    last = s.row;
+    double sum = 0, mean = 0;
+    for (const auto& q : s.sites) {
+      const double k = q.h_count * std::exp(site_rate(rates.values, form, q.site, q.dh, s.temperature).ln_k);
+      sum += k;
+      mean += k * q.dh;
+    }
+    dh.push_back(mean / sum);
+    ea.push_back(*row.ea + row.n * kGasConstant * s.temperature);
+  }
+  RidgeProblem p;
+  const auto n = static_cast<Eigen::Index>(dh.size());
+  p.x = Eigen::MatrixXd::Ones(n, 2);
+  p.x.col(1) = Eigen::Map<Eigen::VectorXd>(dh.data(), n);
+  p.y = Eigen::Map<Eigen::VectorXd>(ea.data(), n);
+  p.u = Eigen::VectorXd::Constant(n, 1.5);
+  p.prior = Eigen::Vector2d(100.0, 2.0);
+  auto s = solve_ridge(p);
+  if (!s.ok()) return s.error();
+  return pack_model(std::string("line.") + kNames[carrier], {"E0", "alpha"}, s.value().b, s.value().covariance,
+                    {static_cast<int>(n), static_cast<int>(n)}, {{"scatter", s.value().scatter}, {"rows", static_cast<double>(n)}});
+}
+
+}  // namespace
+
+Result<std::vector<FittedModel>> fit_models(const Table& table) {
+  std::vector<FittedModel> out;
+  auto bonds = fit_bonds(bond_samples(table));
+  if (!bonds.ok()) return bonds.error();
+  out.push_back(std::move(bonds).value());
+  const auto halides = exchange_samples(table);
+  for (int x = 0; x < 4; ++x) {
+    auto m = fit_exchange(halides, x);
+    if (!m.ok()) return m.error();
+    out.push_back(std::move(m).value());
+  }
+  const auto samples = rate_samples(table, bond_model(table, out));
+  std::vector<double> chlorine;
+  for (const int x : {1, 0, 2, 3}) {
+    auto m = fit_kinetics(samples, x, x == 1 ? nullptr : &chlorine);
+    if (!m.ok()) return m.error();
+    if (x == 1) chlorine = m.value().values;
+    add_range(m.value(), table, samples, x);
+    out.push_back(std::move(m).value());
+  }
+  for (int x = 0; x < 4; ++x) {
+    auto m = fit_line(table, samples, x, *find_model(out, std::string("kinetics.") + kNames[x]));
+    if (!m.ok()) return m.error();
+    out.push_back(std::move(m).value());
+  }
+  return out;
+}
+
+}  // namespace halostep

@@ -1,0 +1,16 @@
+// All fits of the table in their fixed order.
+#pragma once
+#include <vector>
+
+#include "halostep/tables.hpp"
+
+namespace halostep {
+
+/// bonds, exchange.F/Cl/Br/I, kinetics.Cl, kinetics.F/Br/I, line.F/Cl/Br/I; from the table's rows and entries alone.
+/// Errors: those of the solvers.
+Result<std::vector<FittedModel>> fit_models(const Table& table);
+
+/// Prints how well the models meet molecules they have not seen; exit code of the command.
+int crossval(const Table& table);
+
+}  // namespace halostep

@@ -1,0 +1,307 @@
+#include "tables/fit_kinetics.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <numeric>
+#include <optional>
+
+#include "adjust/nonlinear.hpp"
+#include "bonds/locate.hpp"
+#include "tables/fit_bonds.hpp"
+#include "halostep/structure.hpp"
+
+namespace halostep {
+namespace {
+
+constexpr const char* kNames[] = {"F", "Cl", "Br", "I"};
+const double kLn10 = std::log(10.0);
+
+int carrier_index(const std::string& c) {
+  for (int i = 0; i < 4; ++i) {
+    if (c == kNames[i] || c == std::string(kNames[i]) + "2") return i;
+  }
+  return -1;
+}
+
+struct Prepared {
+  Molecule m;
+  std::vector<AtomInfo> info;
+  std::vector<int> classes;
+  std::string text;
+};
+
+std::optional<Prepared> prepare(const std::string& smiles) {
+  auto m = parse_smiles(smiles, ParseMode::species);
+  if (!m.ok()) return std::nullopt;
+  Prepared p{std::move(m).value(), {}, {}, {}};
+  p.info = environment(p.m);
+  p.classes = symmetry_classes(p.m);
+  p.text = canonical_smiles(p.m, false);
+  return p;
+}
+
+class Sampler {
+ public:
+  Sampler(const Table& t, const BondModel& b) : t_(t), b_(b) {
+    for (int x = 0; x < 4; ++x) {
+      const auto hx = parse_smiles(kNames[x], ParseMode::species);
+      const int e = hx.ok() ? b.measured(canonical_smiles(hx.value(), false), std::string("[") + kNames[x] + "]", "[H]") : -1;
+      d_hx_[x] = e < 0 ? 0.0 : t.bonds[static_cast<std::size_t>(e)].d298.value;
+    }
+  }
+
+  std::optional<RatedSite> rated(const Prepared& p, const HydrogenSite& h, int carrier) const {
+    RatedSite r;
+    r.site = rate_site(p.m, p.info, h.atom);
+    r.h_count = h.h_count;
+    if (!r.site.covered) return std::nullopt;
+    const int e = b_.measured(p.text, canonical_smiles(p.m.without_hydrogen(h.atom), false), "[H]");
+    Quantity d;
+    if (e >= 0) {
+      d = t_.bonds[static_cast<std::size_t>(e)].d298;
+    } else {
+      const auto typed = b_.typed(site_features(p.m, p.info, h.atom));
+      if (!typed.refusal.empty()) return std::nullopt;
+      d = typed.d;
+    }
+    r.dh = d.value - d_hx_[carrier];
+    r.u_dh = d.u;
+    return r;
+  }
+
+  // Sites of `radical` ("total": every C-H site the model covers); empty when the row cannot be used.
+  std::vector<RatedSite> sites(const Prepared& p, const std::string& radical, int carrier) const {
+    std::vector<RatedSite> out;
+    int wanted = -1;
+    if (radical != "total") {
+      const auto r = parse_smiles(radical, ParseMode::species);
+      if (!r.ok()) return out;
+      wanted = find_site(p.m, p.classes, r.value());
+      if (wanted < 0) return out;
+    }
+    for (const auto& h : hydrogen_sites(p.m, p.classes)) {
+      if (wanted >= 0 ? h.atom != wanted : p.m.atom(h.atom).element != element::C) continue;
+      if (p.m.atom(h.atom).element != element::C) return {};
+      auto r = rated(p, h, carrier);
+      if (r) out.push_back(*r);
+      else if (wanted >= 0 || p.info[static_cast<std::size_t>(h.atom)].hybrid == Hybrid::sp3) return {};
+    }
+    return out;
+  }
+
+ private:
+  const Table& t_;
+  const BondModel& b_;
+  double d_hx_[4] = {};
+};
+
+int heavy_atoms(const Molecule& m) {
+  int n = 0;
+  for (int i = 0; i < m.atom_count(); ++i) n += m.atom(i).element > 1;
+  return n;
+}
+
+double row_ln_k(const RateRow& r, double t) {
+  if (!r.a) return std::log(*r.k298);
+  return std::log(*r.a) + r.n * std::log(t / 298.0) - *r.ea / (kGasConstant * t);
+}
+
+// ln of a rate coefficient that flow and photolysis methods reach, cm3 molecule-1 s-1.
+const double kMeasurable = std::log(1e-15);
+
+// Temperatures at which a row speaks: its own range where it has one.
+std::vector<double> row_temperatures(const RateRow& r) {
+  const bool range = r.t_min && r.t_max;
+  if (range && r.a && *r.t_max - *r.t_min < 40) return {0.5 * (*r.t_min + *r.t_max)};
+  if (!range || !r.a) {
+    // Slow rates are measured hot: without a stated range a row speaks where it first reaches what can be measured.
+    double t = kReferenceTemperature;
+    while (r.a && row_ln_k(r, t) < kMeasurable && t < 700) t += 10;
+    return {t};
+  }
+  const double lo = std::max(*r.t_min, 200.0), hi = std::min(*r.t_max, 900.0);
+  if (lo < 290 && hi > 306) return {lo, 298.15, 0.5 * (298.15 + hi), hi};
+  return {lo, 0.5 * (lo + hi), hi};
+}
+
+}  // namespace
+
+std::vector<RateSample> rate_samples(const Table& t, const BondModel& bonds) {
+  const Sampler sampler(t, bonds);
+  std::vector<RateSample> out;
+  for (std::size_t i = 0; i < t.rates.size(); ++i) {
+    const auto& r = t.rates[i];
+    if (r.superseded || !r.fitted || r.carrier.empty()) continue;
+    const int x = carrier_index(r.carrier);
+    const auto p = prepare(r.molecule);
+    if (x < 0 || !p) continue;
+    RateSample s;
+    s.carrier = x;
+    s.molecule = p->text;
+    s.sites = sampler.sites(*p, r.radical, x);
+    s.heavy = heavy_atoms(p->m);
+    s.row = static_cast<int>(i);
+    if (s.sites.empty()) continue;
+    if (!r.k298 && !r.a) {
+      if (!r.ea) continue;
+      s.ea_only = true;
+      s.ea = *r.ea;
+      s.temperature = r.t_min && r.t_max ? 0.5 * (*r.t_min + *r.t_max) : 450.0;
+      s.u = 4.0;
+      out.push_back(std::move(s));
+      continue;
+    }
+    const auto temps = row_temperatures(r);
+    for (const double temperature : temps) {
+      s.temperature = temperature;
+      s.ln_value = row_ln_k(r, temperature);
+      // Points of one row share its error: each counts as part of one observation.
+      s.u = kLn10 * std::max(r.u_log10, 0.03) * std::sqrt(static_cast<double>(temps.size()));
+      out.push_back(s);
+    }
+  }
+  for (std::size_t i = 0; i < t.relative_rates.size(); ++i) {
+    const auto& r = t.relative_rates[i];
+    const int x = carrier_index(r.reagent);
+    if (r.superseded || !r.fitted || x < 0 || !(r.ratio > 0)) continue;
+    const auto p = prepare(r.molecule), q = prepare(r.reference_molecule);
+    if (!p || !q) continue;
+    RateSample s;
+    s.carrier = x;
+    s.relative = true;
+    s.molecule = p->text;
+    s.sites = sampler.sites(*p, r.radical, x);
+    s.reference = sampler.sites(*q, r.reference_radical, x);
+    s.row = static_cast<int>(i);
+    s.temperature = r.t;
+    s.ln_value = std::log(r.ratio);
+    s.u = kLn10 * std::max(r.u_log10, 0.05);
+    if (!s.sites.empty() && !s.reference.empty()) out.push_back(std::move(s));
+  }
+  return out;
+}
+
+double model_ln(const std::vector<double>& p, const KineticForm& form, const RateSample& s) {
+  const auto sum = [&](const std::vector<RatedSite>& sites, double temperature) {
+    double k = 0;
+    for (const auto& r : sites) k += r.h_count * std::exp(site_rate(p, form, r.site, r.dh, temperature).ln_k);
+    return k;
+  };
+  const auto count = [](const std::vector<RatedSite>& sites) {
+    return std::accumulate(sites.begin(), sites.end(), 0.0, [](double n, const RatedSite& r) { return n + r.h_count; });
+  };
+  if (s.relative) return std::log(sum(s.sites, s.temperature) / count(s.sites) / (sum(s.reference, s.temperature) / count(s.reference)));
+  const double limit = encounter_limit(p, s.heavy);
+  return std::log(limited_total(sum(s.sites, s.temperature), limit));
+}
+
+KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
+  KineticStart k;
+  k.start.assign(kp::total, 0.0);
+  k.prior.assign(kp::total, 1e-6);
+  const auto set = [&](int i, double v, double sd) {
+    k.start[static_cast<std::size_t>(i)] = v;
+    k.prior[static_cast<std::size_t>(i)] = sd;
+  };
+  set(kp::decay, 0.45, 0.15);
+  set(kp::ln_limit, std::log(2e-10), 0.5);
+  set(kp::limit_power, 0.45, 0.15);
+  for (int c = 1; c < kAClasses; ++c) {
+    set(kp::a_class + c - 1, 0.0, 0.7);
+    set(kp::shift_class + c - 1, 0.0, 4.0);
+  }
+  const double scale = carrier == 1 ? 1.0 : carrier == 0 ? 0.35 : 1.0;
+  for (int g = 0; g < kPolarGroups; ++g) {
+    const auto a = static_cast<std::size_t>(kp::polar_alpha + g), b = static_cast<std::size_t>(kp::polar_beyond + g);
+    k.start[a] = cl ? scale * (*cl)[a] : 3.0;
+    k.start[b] = cl ? scale * (*cl)[b] : 5.0;
+    k.prior[a] = k.prior[b] = carrier == 1 ? 8.0 : 2.5;
+  }
+  switch (carrier) {
+    case 0:
+      set(kp::ln_a, std::log(5e-11), 1.0);
+      set(kp::tightness, 0.0, 1e-6);
+      set(kp::exponent, 0.5, 0.3);
+      set(kp::shift, 0.0, 1e-6);
+      set(kp::width, 16.0, 5.0);
+      set(kp::alkyl, 0.0, 0.5);
+      k.form.polar_outside = true;
+      break;
+    case 1:
+      set(kp::ln_a, std::log(5e-11), 1.0);
+      set(kp::tightness, 2.0, 1.5);
+      set(kp::exponent, 0.5, 0.7);
+      set(kp::shift, 4.0, 8.0);
+      set(kp::width, 4.0, 2.0);
+      set(kp::alkyl, 0.0, 2.0);
+      break;
+    default:
+      set(kp::ln_a, std::log(6e-11), 1.0);
+      set(kp::tightness, 0.0, 1e-6);
+      set(kp::exponent, 0.3, 0.5);
+      set(kp::shift, 3.0, 6.0);
+      set(kp::width, 3.0, 1.5);
+      set(kp::alkyl, -3.0, 3.0);
+  }
+  return k;
+}
+
+Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* cl) {
+  std::vector<const RateSample*> mine;
+  for (const auto& s : samples) {
+    if (s.carrier == carrier) mine.push_back(&s);
+  }
+  const auto k = kinetic_start(carrier, cl);
+  NonlinearProblem p;
+  const auto n = static_cast<Eigen::Index>(mine.size());
+  p.start = Eigen::Map<const Eigen::VectorXd>(k.start.data(), kp::total);
+  p.prior = Eigen::Map<const Eigen::VectorXd>(k.prior.data(), kp::total);
+  p.u.resize(n);
+  p.scale.resize(n);
+  for (Eigen::Index i = 0; i < n; ++i) {
+    const auto& s = *mine[static_cast<std::size_t>(i)];
+    p.u[i] = s.u;
+    p.scale[i] = 0;
+    for (const auto& r : s.sites) p.scale[i] = std::max(p.scale[i], scatter_share(r.site));
+  }
+  p.scatter_floor = 0.02;
+  p.residual = [&](const Eigen::VectorXd& b) {
+    const std::vector<double> v(b.data(), b.data() + b.size());
+    Eigen::VectorXd r(n);
+    for (Eigen::Index i = 0; i < n; ++i) {
+      const auto& s = *mine[static_cast<std::size_t>(i)];
+      if (s.ea_only) {
+        RateSample up = s, down = s;
+        up.temperature += 1;
+        down.temperature -= 1;
+        const double ea = kGasConstant * s.temperature * s.temperature * (model_ln(v, k.form, up) - model_ln(v, k.form, down)) / 2;
+        r[i] = s.ea - ea;
+      } else {
+        r[i] = s.ln_value - model_ln(v, k.form, s);
+      }
+    }
+    return r;
+  };
+  auto s = solve_nonlinear(p);
+  if (!s.ok()) return s.error();
+  std::vector<int> support(kp::total, 0);
+  for (const auto* m : mine) {
+    std::vector<bool> touched(kp::total, false);
+    for (const auto& r : m->sites) {
+      if (const int c = static_cast<int>(r.site.a_class); c > 0) touched[static_cast<std::size_t>(kp::a_class + c - 1)] = touched[static_cast<std::size_t>(kp::shift_class + c - 1)] = true;
+      else touched[kp::ln_a] = true;
+      for (int g = 0; g < kPolarGroups; ++g) {
+        const auto& c = r.site.count[static_cast<std::size_t>(g)];
+        if (c[0]) touched[static_cast<std::size_t>(kp::polar_alpha + g)] = true;
+        if (std::any_of(c.begin() + 1, c.end(), [](int q) { return q > 0; })) touched[static_cast<std::size_t>(kp::polar_beyond + g)] = true;
+      }
+    }
+    for (std::size_t i = 0; i < touched.size(); ++i) support[i] += touched[i];
+  }
+  return pack_model(std::string("kinetics.") + kNames[carrier], kinetic_parameter_names(), s.value().b, s.value().covariance,
+                    std::move(support),
+                    {{"scatter", s.value().scatter}, {"rows", static_cast<double>(n)}, {"effective parameters", s.value().effective},
+                     {"polar outside", k.form.polar_outside ? 1.0 : 0.0}});
+}
+
+}  // namespace halostep

@@ -1,0 +1,30 @@
+#include <CLI/CLI.hpp>
+#include <string>
+
+#include "tables/commands.hpp"
+
+int main(int argc, char** argv) {
+  CLI::App app("Checks the curated table of halostep, fits its models and compiles it.", "halostep-tables");
+  app.require_subcommand(1);
+  std::string dir, out;
+  int code = 0;
+  const auto command = [&](const char* name, const char* what) {
+    auto* sub = app.add_subcommand(name, what);
+    sub->add_option("DIR", dir, "directory of the curated files")->required();
+    return sub;
+  };
+  command("check", "check all files and print the counts")->callback([&] { code = halostep::check_command(dir); });
+  auto* compile = command("compile", "check, repeat the fit, compare it with fitted.json, and write the table");
+  compile->add_option("OUT", out, "the table to write")->required();
+  compile->callback([&] { code = halostep::compile_command(dir, out); });
+  command("refit", "check, fit, and write fitted.json")->callback([&] { code = halostep::refit_command(dir); });
+  command("crossval", "predict rows left out of the fit")->callback([&] { code = halostep::crossval_command(dir); });
+  app.footer("Exit code: 0 done, 1 faults found (one a line on stderr: file:line: reason), 2 wrong usage.\n"
+             "Example: halostep-tables compile bde_tables halostep.sqlite");
+  try {
+    app.parse(argc, argv);
+  } catch (const CLI::ParseError& e) {
+    return app.exit(e) == 0 ? 0 : 2;
+  }
+  return code;
+}
