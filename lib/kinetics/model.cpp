@@ -27,18 +27,36 @@ std::vector<std::string> kinetic_parameter_names() {
   set(kp::decay, "decay per bond");
   set(kp::ln_limit, "ln encounter limit");
   set(kp::limit_power, "encounter limit, power of heavy atoms");
+  set(kp::saturation, "polar saturation");
   return n;
 }
 
-double polar_energy(std::span<const double> p, const RateSite& s) {
+bool conjugates(int group) noexcept {
+  switch (static_cast<PolarGroup>(group)) {
+    case PolarGroup::carbonyl: case PolarGroup::carboxyl: case PolarGroup::carbonyl_halide: case PolarGroup::cyano:
+    case PolarGroup::nitro: case PolarGroup::aryl: case PolarGroup::unsaturated: return true;
+    default: return false;
+  }
+}
+
+double group_sum(std::span<const double> p, const RateSite& s) {
   const auto at = [&](int i) { return p[static_cast<std::size_t>(i)]; };
-  double sum = at(kp::alkyl) * s.carbons;
+  double sum = 0;
   for (int g = 0; g < kPolarGroups; ++g) {
     const auto& n = s.count[static_cast<std::size_t>(g)];
-    sum += at(kp::polar_alpha + g) * n[0];
+    if (!conjugates(g)) sum += at(kp::polar_alpha + g) * n[0];
     double field = 0, factor = 1;
     for (std::size_t d = 1; d < n.size(); ++d, factor *= at(kp::decay)) field += n[d] * factor;
     sum += at(kp::polar_beyond + g) * field;
+  }
+  return sum;
+}
+
+double polar_energy(std::span<const double> p, const RateSite& s) {
+  const double limit = p[kp::saturation];
+  double sum = p[kp::alkyl] * s.carbons - limit * std::expm1(-group_sum(p, s) / limit);
+  for (int g = 0; g < kPolarGroups; ++g) {
+    if (conjugates(g)) sum += p[static_cast<std::size_t>(kp::polar_alpha + g)] * s.count[static_cast<std::size_t>(g)][0];
   }
   return sum;
 }

@@ -23,7 +23,8 @@ inline constexpr int polar_beyond = polar_alpha + kPolarGroups;  // + group: kJ/
 inline constexpr int decay = polar_beyond + kPolarGroups; // factor per further bond
 inline constexpr int ln_limit = decay + 1;                // ln of the encounter limit at one heavy atom
 inline constexpr int limit_power = ln_limit + 1;          // its growth with the number of heavy atoms
-inline constexpr int total = limit_power + 1;
+inline constexpr int saturation = limit_power + 1;         // kJ/mol, what the groups' sum cannot exceed
+inline constexpr int total = saturation + 1;
 }  // namespace kp
 
 /// Names of the parameters, in order.
@@ -43,7 +44,13 @@ struct KineticForm {
   bool polar_outside = false;  // add the polar energy to the barrier, not to the step enthalpy (F)
 };
 
-/// Polar energy of a site, kJ/mol.
+/// Groups whose pi system takes the odd electron: at an early transition state the bond is weaker than the attack
+/// feels, so on the centre they add their own constant, outside the saturating sum.
+bool conjugates(int group) noexcept;
+/// Sum of the other groups' polar energies at a site before saturation, kJ/mol.
+double group_sum(std::span<const double> p, const RateSite& s);
+/// Polar energy of a site, kJ/mol: alkyl and conjugating groups, and the sum g of all others as S (1 - exp(-g/S)), since
+/// each further group finds the centre already poorer in electrons.
 double polar_energy(std::span<const double> p, const RateSite& s);
 SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature);
 /// Encounter limit for a molecule with that many heavy atoms, cm3 molecule-1 s-1.

@@ -28,8 +28,10 @@ RateBook::RateBook(const Table& table) : models_(4) {
       if (name == "T high") c.t_high = v;
     }
     if (const auto* line = find_model(table.models, kLines[x]); line != nullptr && line->values.size() == 2) {
-      c.intercept = {line->values[0], std::sqrt(line->covariance[0])};
-      c.slope = {line->values[1], std::sqrt(line->covariance[3])};
+      c.slope = Quantity{line->values[1], std::sqrt(line->covariance[3])};
+      c.slope_over = std::any_of(line->settings.begin(), line->settings.end(), [](const auto& s) {
+        return s.first == "hydrocarbons" && s.second > 0.5;
+      }) ? "hydrocarbons" : "alkanes";
     }
   }
 }

@@ -1,6 +1,7 @@
 // Rates of X + R-H at the sites of a molecule: the fitted model with its covariance.
 #pragma once
 #include <optional>
+#include <string>
 #include <vector>
 
 #include "halostep/quantity.hpp"
@@ -17,8 +18,8 @@ struct CarrierModel {
   KineticForm form;
   double scatter = 0;              // of ln k
   double t_low = 0, t_high = 0;    // range of the evidence, K
-  Quantity slope;                  // straight Evans-Polanyi line through the alkanes
-  Quantity intercept;
+  std::optional<Quantity> slope;   // straight Evans-Polanyi line through the measured activation energies
+  std::string slope_over;
 };
 
 /// Models of F, Cl, Br, I in that order; an entry is empty where the table has none.

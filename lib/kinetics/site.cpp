@@ -5,7 +5,7 @@
 namespace halostep {
 namespace {
 
-constexpr double kPlainShare = 0.12;
+constexpr double kPlainShare = 0.08;
 
 constexpr std::array<const char*, kAClasses> kClassNames = {"alkyl",   "alpha-O", "alpha-N/S", "benzylic", "allylic",
                                                             "acyl",    "formate", "cyclopropyl", "unsaturated"};

@@ -64,6 +64,7 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
     h.halogen = halogen;
     h.temperature = temperature;
     h.slope = m->slope;
+    h.slope_over = m->slope_over;
     h.k_total = r.total * r.damping;
     std::vector<std::size_t> answered;
     for (std::size_t i = 0; i < c.sites.size(); ++i) {

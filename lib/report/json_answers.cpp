@@ -131,8 +131,13 @@ Json json_halogen(const Table& table, const HalogenOutcome& outcome) {
   record.put("halogen", halogen_name(outcome.halogen));
   record.put_number("temperature_k", outcome.temperature, kEnergyDigits);
   record.put_number("k_total_cm3_s", outcome.k_total, kRateDigits);
-  record.put("slope",
-             {{"value", rounded(outcome.slope.value, kRateDigits)}, {"u", rounded(outcome.slope.u, kRateDigits)}});
+  if (outcome.slope) {
+    record.put("slope", {{"value", rounded(outcome.slope->value, kRateDigits)},
+                         {"u", rounded(outcome.slope->u, kRateDigits)},
+                         {"over", outcome.slope_over}});
+  } else {
+    record.put_null("slope", "fewer than three measured activation energies");
+  }
   record.put("notes", outcome.notes);
   Json sites = Json::array();
   for (const auto& site : outcome.sites) sites.push_back(json_site(site));

@@ -61,11 +61,13 @@ std::string notes_text(const HalogenOutcome& outcome) {
 }
 
 std::string halogen_text(const HalogenOutcome& outcome, EnergyUnit unit) {
-  std::string out = fmt::format("  {}. at {} K: k total {} cm3/s; Evans-Polanyi slope over the alkanes {} (u {})\n",
-                                halogen_name(outcome.halogen), format_fixed(outcome.temperature, 2),
-                                format_scientific(outcome.k_total, 3), format_fixed(outcome.slope.value, 2),
-                                format_fixed(outcome.slope.u, 2));
-  return out + sites_text(outcome, unit) + selectivity_text(outcome) + notes_text(outcome);
+  std::string out = fmt::format("  {}. at {} K: k total {} cm3/s", halogen_name(outcome.halogen),
+                                format_fixed(outcome.temperature, 2), format_scientific(outcome.k_total, 3));
+  if (outcome.slope) {
+    out += fmt::format("; Evans-Polanyi slope over the {} {} (u {})", outcome.slope_over,
+                       format_fixed(outcome.slope->value, 2), format_fixed(outcome.slope->u, 2));
+  }
+  return out + "\n" + sites_text(outcome, unit) + selectivity_text(outcome) + notes_text(outcome);
 }
 
 std::string comparison_text(const Comparison& c, EnergyUnit unit) {

@@ -1,13 +1,12 @@
-#include "mol_check_v3000.hpp"
-
 #include <fmt/format.h>
 
 #include <algorithm>
 #include <set>
-#include <string>
-#include <unordered_set>
+#include <unordered_map>
+#include <utility>
 
 #include "mol_fields.hpp"
+#include "mol_record.hpp"
 
 namespace halostep {
 namespace {
@@ -24,9 +23,21 @@ Words split(std::string_view text) {
   return out;
 }
 
+// "CHG=-1" -> CHG and -1.
+std::pair<std::string_view, std::optional<int>> named(std::string_view word) {
+  const auto equals = word.find('=');
+  if (equals == std::string_view::npos) return {word, std::nullopt};
+  return {word.substr(0, equals), integer(word.substr(equals + 1))};
+}
+
+bool is_one_of(std::string_view word, std::initializer_list<std::string_view> names) {
+  return std::find(names.begin(), names.end(), word) != names.end();
+}
+
+// Lines "M  V30 ..." of words, in blocks (BIOVIA, CTfile Formats); a line that ends with '-' goes on in the next.
 class V3000 {
  public:
-  V3000(const std::vector<std::string_view>& lines, MolCheck& out) : lines_(lines), out_(out) {}
+  V3000(const std::vector<std::string_view>& lines, MolRecord& out) : lines_(lines), out_(out) {}
   void run() {
     for (std::size_t i = 4; i < lines_.size(); ++i) {
       at_ = i;
@@ -35,12 +46,18 @@ class V3000 {
         fail(ErrorClass::syntax, "neither 'M  V30' nor 'M  END'");
         return;
       }
-      std::string text(lines_[i].substr(7));
-      while (text.ends_with('-') && i + 1 < lines_.size() && lines_[i + 1].starts_with("M  V30 ")) {
-        text.pop_back();
-        text += lines_[++i].substr(7);
+      Words words = split(lines_[i].substr(7));
+      while (!words.empty() && words.back().ends_with('-') && i + 1 < lines_.size() &&
+             lines_[i + 1].starts_with("M  V30 ")) {
+        if (words.back() != "-") {
+          fail(ErrorClass::syntax, "a word is cut by the end of the line");
+          return;
+        }
+        words.pop_back();
+        const Words more = split(lines_[++i].substr(7));
+        words.insert(words.end(), more.begin(), more.end());
       }
-      if (!line(split(text))) return;
+      if (!line(words)) return;
     }
     at_ = lines_.size() - 1;
     fail(ErrorClass::syntax, "no 'M  END' line");
@@ -51,6 +68,7 @@ class V3000 {
     out_.error = Error{cls, std::move(message), line_place(at_)};
     return false;
   }
+  bool fail(const Error& e) { return fail(e.cls, e.message); }
   bool line(const Words& w) {
     if (w.empty()) return true;
     if (w[0] == "BEGIN" || w[0] == "END") return begin_or_end(w);
@@ -61,10 +79,10 @@ class V3000 {
   }
   bool begin_or_end(const Words& w) {
     if (w.size() < 2) return fail(ErrorClass::syntax, "BEGIN or END of what?");
-    if (w[1] == "RGROUP" || w[1] == "TEMPLATE") return fail(ErrorClass::wildcard, "a query is no definite structure");
-    const bool inner = w[1] != "CTAB";
-    block_ = w[0] == "BEGIN" ? std::string(w[1]) : inner ? "CTAB" : "";
-    if (w[0] == "BEGIN" && inner && atoms_ < 0) return fail(ErrorClass::syntax, "no COUNTS line before this block");
+    if (is_one_of(w[1], {"RGROUP", "TEMPLATE"})) return fail(ErrorClass::wildcard, "a query is no definite structure");
+    const bool begin = w[0] == "BEGIN", inner = w[1] != "CTAB";
+    if (begin && inner && atoms_ == kNone) return fail(ErrorClass::syntax, "no COUNTS line before this block");
+    block_ = begin ? w[1] : inner ? "CTAB" : "";
     return true;
   }
   bool counts(const Words& w) {
@@ -72,38 +90,41 @@ class V3000 {
     if (!a || !b || *a < 0 || *b < 0)
       return fail(ErrorClass::syntax, "the COUNTS line holds no numbers of atoms and bonds");
     if (*a == 0) return fail(ErrorClass::empty, "no atoms");
-    atoms_ = *a;
-    bonds_ = *b;
+    atoms_ = static_cast<std::size_t>(*a);
+    bonds_ = static_cast<std::size_t>(*b);
     return true;
   }
-  // index type x y z aamap [CHG=] [RAD=] [MASS=] ...
+  // index type x y z aamap [CHG=] [RAD=] [MASS=] [VAL=] ...
   bool atom(const Words& w) {
-    const auto index = integer(w[0]);
-    if (!index || *index < 1) return fail(ErrorClass::syntax, "an atom line without its number");
+    const auto number = integer(w[0]);
+    if (!number || *number < 1) return fail(ErrorClass::syntax, "an atom line without its number");
+    MolAtom a;
     if (w.size() > 1) {  // an atom list has blanks in it: look at the symbol before counting fields
       if (w[1].starts_with("NOT")) return fail(ErrorClass::wildcard, "an atom list is no atom");
-      if (auto e = symbol_fault(w[1])) return fail(e->cls, e->message);
+      if (auto e = set_symbol(a, w[1])) return fail(*e);
     }
-    if (w.size() < 6 || !real(w[2]) || !real(w[3]) || !real(w[4]))
-      return fail(ErrorClass::syntax, fmt::format("atom {} is broken", *index));
-    if (!index_.insert(*index).second) return fail(ErrorClass::syntax, fmt::format("two atoms with number {}", *index));
+    const auto coordinate = [&](std::size_t k) { return k < w.size() ? real(w[k]) : std::nullopt; };
+    const auto x = coordinate(2), y = coordinate(3), z = coordinate(4);
+    if (w.size() < 6 || !x || !y || !z) return fail(ErrorClass::syntax, fmt::format("atom {} is broken", *number));
+    a.x = *x;
+    a.y = *y;
+    a.z = *z;
+    a.line = static_cast<int>(at_) + 1;
     for (std::size_t k = 6; k < w.size(); ++k) {
-      const auto equals = w[k].find('=');
-      const auto name = w[k].substr(0, equals);
-      if (name == "RBCNT" || name == "SUBST" || name == "UNSAT")
+      const auto [name, value] = named(w[k]);
+      if (is_one_of(name, {"RBCNT", "SUBST", "UNSAT"}))
         return fail(ErrorClass::wildcard, "a query is no definite structure");
-      if (name != "CHG" && name != "RAD" && name != "MASS" && name != "VAL") continue;
-      const auto value = equals == std::string_view::npos ? std::nullopt : integer(w[k].substr(equals + 1));
+      if (!is_one_of(name, {"CHG", "RAD", "MASS", "VAL"})) continue;
       if (!value) return fail(ErrorClass::syntax, fmt::format("'{}' holds no number", w[k]));
-      if (auto e = property_fault(name, *value)) return fail(e->cls, e->message);
-      // VAL=0 says nothing, -1 says none.
-      if (name == "VAL" && *value != 0)
-        out_.valence.emplace_back(static_cast<int>(out_.atom_line.size()), std::max(*value, 0));
+      if (auto e = set_property(a, name, *value)) return fail(*e);
     }
-    out_.atom_line.push_back(static_cast<int>(at_) + 1);
+    if (!index_.emplace(*number, static_cast<int>(out_.atoms.size())).second) {
+      return fail(ErrorClass::syntax, fmt::format("two atoms with number {}", *number));
+    }
+    out_.atoms.push_back(a);
     return true;
   }
-  // index type atom1 atom2 ...
+  // index type atom1 atom2 [CFG=] ...
   bool bond(const Words& w) {
     int field[4] = {};
     for (std::size_t k = 0; k < 4; ++k) {
@@ -111,39 +132,46 @@ class V3000 {
       if (!value) return fail(ErrorClass::syntax, "a bond line is broken");
       field[k] = *value;
     }
-    for (const int k : {field[2], field[3]}) {
-      if (!index_.contains(k)) return fail(ErrorClass::syntax, fmt::format("a bond to atom {}, which is not there", k));
+    const auto a = index_.find(field[2]), b = index_.find(field[3]);
+    if (a == index_.end() || b == index_.end()) {
+      return fail(ErrorClass::syntax,
+                  fmt::format("a bond to atom {}, which is not there", a == index_.end() ? field[2] : field[3]));
     }
     if (field[2] == field[3]) return fail(ErrorClass::syntax, fmt::format("a bond of atom {} to itself", field[2]));
     if (!pairs_.insert(std::minmax(field[2], field[3])).second) {
       return fail(ErrorClass::syntax, "a second bond between the same atoms");
     }
-    if (auto e = bond_fault(field[1])) return fail(e->cls, e->message);
-    if (field[1] == 2 && std::find(w.begin() + 4, w.end(), "CFG=2") != w.end()) out_.either.push_back(bonds_seen_);
-    ++bonds_seen_;
+    if (auto e = bond_fault(field[1])) return fail(*e);
+    MolBond out{a->second, b->second, field[1], Drawn::plain};
+    for (std::size_t k = 4; k < w.size(); ++k) {
+      const auto [name, value] = named(w[k]);
+      if (name == "CFG")
+        out.drawn = value == 1 ? Drawn::up : value == 2 ? Drawn::either : value == 3 ? Drawn::down : Drawn::plain;
+    }
+    out_.bonds.push_back(out);
     return true;
   }
   void finish() {
-    if (atoms_ < 0) {
+    if (atoms_ == kNone) {
       fail(ErrorClass::syntax, "no COUNTS line");
-    } else if (atoms_ != static_cast<int>(index_.size())) {
-      fail(ErrorClass::syntax, fmt::format("{} atoms where {} are announced", index_.size(), atoms_));
-    } else if (bonds_ != bonds_seen_) {
-      fail(ErrorClass::syntax, fmt::format("{} bonds where {} are announced", bonds_seen_, bonds_));
+    } else if (atoms_ != out_.atoms.size()) {
+      fail(ErrorClass::syntax, fmt::format("{} atoms where {} are announced", out_.atoms.size(), atoms_));
+    } else if (bonds_ != out_.bonds.size()) {
+      fail(ErrorClass::syntax, fmt::format("{} bonds where {} are announced", out_.bonds.size(), bonds_));
     }
   }
 
+  static constexpr std::size_t kNone = static_cast<std::size_t>(-1);
   const std::vector<std::string_view>& lines_;
-  MolCheck& out_;
-  std::size_t at_ = 0;
-  std::string block_;
-  int atoms_ = -1, bonds_ = 0, bonds_seen_ = 0;
-  std::unordered_set<int> index_;
+  MolRecord& out_;
+  std::size_t at_ = 0, atoms_ = kNone, bonds_ = 0;
+  std::string_view block_;
+  std::unordered_map<int, int> index_;  // number in the file -> index
   std::set<std::pair<int, int>> pairs_;
 };
 
 }  // namespace
 
-void check_v3000(const std::vector<std::string_view>& lines, MolCheck& out) { V3000(lines, out).run(); }
+void read_v3000(const std::vector<std::string_view>& lines, MolRecord& out) { V3000(lines, out).run(); }
 
 }  // namespace halostep

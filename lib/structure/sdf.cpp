@@ -1,6 +1,7 @@
 #include <fmt/format.h>
 #include <openbabel/atom.h>
 #include <openbabel/bond.h>
+#include <openbabel/elements.h>
 #include <openbabel/generic.h>
 #include <openbabel/mol.h>
 #include <openbabel/ring.h>
@@ -9,13 +10,14 @@
 
 #include <algorithm>
 #include <charconv>
+#include <cmath>
 #include <mutex>
 #include <streambuf>
 
 #include "convert.hpp"
 #include "halostep/structure.hpp"
-#include "mol_check.hpp"
 #include "mol_fields.hpp"
+#include "mol_record.hpp"
 #include "parser.hpp"
 
 namespace halostep {
@@ -70,62 +72,147 @@ std::vector<std::string_view> lines_of(std::string_view text) {
   return out;
 }
 
+// Where the coordinates lie: the parser finds stereo in the plane or in space, or none.
+const char* dimension(const MolRecord& record) {
+  const auto any = [&](auto&& test) { return std::any_of(record.atoms.begin(), record.atoms.end(), test); };
+  if (any([](const MolAtom& a) { return a.z != 0; })) return "3D";
+  return any([](const MolAtom& a) { return a.x != 0 || a.y != 0; }) ? "2D" : "0D";
+}
+
+std::string v2000_text(const MolRecord& record) {
+  std::string out =
+      fmt::format("{:3}{:3}  0  0  0  0  0  0  0  0999 V2000\n", record.atoms.size(), record.bonds.size());
+  std::string properties;
+  int number = 0;
+  for (const auto& a : record.atoms) {
+    ++number;
+    out += fmt::format("{:10.4f}{:10.4f}{:10.4f} {:<3} 0  0  0  0  0  0  0  0  0  0  0  0\n", a.x, a.y, a.z, a.symbol);
+    const auto put = [&](const char* name, int value) {
+      if (value != 0) properties += fmt::format("M  {}  1{:4}{:4}\n", name, number, value);
+    };
+    put("CHG", a.charge);
+    put("RAD", a.radical);
+    put("ISO", a.isotope);
+  }
+  for (const auto& b : record.bonds) {
+    const int stereo = b.type != 1                ? 0
+                       : b.drawn == Drawn::up     ? 1
+                       : b.drawn == Drawn::down   ? 6
+                       : b.drawn == Drawn::either ? 4
+                                                  : 0;
+    out += fmt::format("{:3}{:3}{:3}{:3}\n", b.a + 1, b.b + 1, b.type, stereo);
+  }
+  return out + properties;
+}
+
+std::string v3000_text(const MolRecord& record) {
+  std::string out = fmt::format(
+      "  0  0  0     0  0            999 V3000\nM  V30 BEGIN CTAB\nM  V30 COUNTS {} {} 0 0 0\nM  V30 BEGIN ATOM\n",
+      record.atoms.size(), record.bonds.size());
+  int number = 0;
+  for (const auto& a : record.atoms) {
+    out += fmt::format("M  V30 {} {} {:.4f} {:.4f} {:.4f} 0", ++number, a.symbol, a.x, a.y, a.z);
+    if (a.charge != 0) out += fmt::format(" CHG={}", a.charge);
+    if (a.radical != 0) out += fmt::format(" RAD={}", a.radical);
+    if (a.isotope != 0) out += fmt::format(" MASS={}", a.isotope);
+    out += '\n';
+  }
+  out += "M  V30 END ATOM\nM  V30 BEGIN BOND\n";
+  number = 0;
+  for (const auto& b : record.bonds) {
+    out += fmt::format("M  V30 {} {} {} {}", ++number, b.type, b.a + 1, b.b + 1);
+    if (b.type == 1 && b.drawn != Drawn::plain) out += fmt::format(" CFG={}", static_cast<int>(b.drawn));
+    out += '\n';
+  }
+  return out + "M  V30 END BOND\nM  V30 END CTAB\n";
+}
+
+// V2000 has three columns for the numbers of atoms and bonds.
+bool needs_v3000(const MolRecord& record) {
+  constexpr std::size_t kLargest = 999;
+  return record.atoms.size() > kLargest || record.bonds.size() > kLargest;
+}
+
+std::string write_record(const MolRecord& record) {
+  return fmt::format("\n{:20}{}\n\n{}M  END\n", "", dimension(record),
+                     needs_v3000(record) ? v3000_text(record) : v2000_text(record));
+}
+
 // "atom 5" of an error becomes the line it stands on.
-Error placed(Error e, const std::vector<int>& line, const std::vector<int>& source) {
+Error placed(Error e, const MolRecord& record, const std::vector<int>& source) {
   const bool of_atom = e.place.starts_with("atom ");
   std::size_t k = 0;
   if (of_atom) std::from_chars(e.place.data() + 5, e.place.data() + e.place.size(), k);
   e.place.clear();
-  if (of_atom && k >= 1 && k <= source.size())
-    e.place = fmt::format("line {}", line[static_cast<std::size_t>(source[k - 1])]);
+  if (of_atom && k >= 1 && k <= source.size()) {
+    e.place = fmt::format("line {}", record.atoms[static_cast<std::size_t>(source[k - 1])].line);
+  }
   return e;
 }
 
-// Coordinates make every double bond cis or trans: not where the file says "either", nor in small rings, where cis is
-// all there is (IUPAC 2013 Recommendations, P-93.5.1.4: rings of fewer than eight members take no descriptor; from
+// The parser takes every double bond as cis or trans where there are coordinates. Not meant so: bonds drawn "either",
+// and rings of fewer than eight members, where cis is all there is (IUPAC Recommendations 2013, P-93.5.1.4; from
 // memory).
-void drop_unmeant_stereo(OpenBabel::OBMol& mol, const std::vector<int>& either) {
+void drop_unmeant_stereo(OpenBabel::OBMol& mol, const MolRecord& record) {
   std::vector<OpenBabel::OBGenericData*> unmeant;
   for (auto* d : mol.GetAllData(OpenBabel::OBGenericDataType::StereoData)) {
     if (static_cast<OpenBabel::OBStereoBase*>(d)->GetType() != OpenBabel::OBStereo::CisTrans) continue;
     const auto c = static_cast<OpenBabel::OBCisTransStereo*>(d)->GetConfig();
-    auto* begin = mol.GetAtomById(c.begin);
-    auto* end = mol.GetAtomById(c.end);
+    auto *begin = mol.GetAtomById(c.begin), *end = mol.GetAtomById(c.end);
     auto* bond = begin == nullptr || end == nullptr ? nullptr : mol.GetBond(begin, end);
     if (bond == nullptr) continue;
-    const bool meant_either = std::find(either.begin(), either.end(), static_cast<int>(bond->GetIdx())) != either.end();
+    const bool either = record.bonds[bond->GetIdx()].drawn == Drawn::either;
     const auto* ring = bond->IsInRing() ? bond->FindSmallestRing() : nullptr;
-    if (meant_either || (ring != nullptr && ring->Size() < 8)) unmeant.push_back(d);
+    if (either || (ring != nullptr && ring->Size() < 8)) unmeant.push_back(d);
   }
   for (auto* d : unmeant) mol.DeleteData(d);
 }
 
-void set_valences(OpenBabel::OBMol& mol, const std::vector<std::pair<int, int>>& valence) {
-  for (const auto& [index, v] : valence) {
-    auto* a = mol.GetAtom(index + 1);
-    a->SetImplicitHCount(static_cast<unsigned>(std::max(0, v - static_cast<int>(a->GetExplicitValence()))));
+void set_valences(OpenBabel::OBMol& mol, const MolRecord& record) {
+  for (std::size_t k = 0; k < record.atoms.size(); ++k) {
+    const int v = record.atoms[k].valence;
+    auto* a = mol.GetAtom(static_cast<int>(k) + 1);
+    if (v >= 0) a->SetImplicitHCount(static_cast<unsigned>(std::max(0, v - static_cast<int>(a->GetExplicitValence()))));
+  }
+}
+
+// The mass difference of old files counts from the rounded atomic weight.
+void set_isotopes(MolRecord& record) {
+  for (auto& a : record.atoms) {
+    if (a.mass_difference == 0 || a.isotope != 0) continue;
+    const double weight = OpenBabel::OBElements::GetMass(static_cast<unsigned>(element_number(a.symbol)));
+    a.isotope = static_cast<int>(std::lround(weight)) + a.mass_difference;
   }
 }
 
 Result<Molecule> parse_mol(const std::string& text, ParseMode mode) {
-  const MolCheck check = check_mol(lines_of(text));
-  if (check.error) return *check.error;
+  MolRecord record = read_mol_record(lines_of(text));
+  if (record.error) return *record.error;
+  // The parser misreads these in V3000.
+  if (needs_v3000(record) &&
+      std::any_of(record.bonds.begin(), record.bonds.end(), [](const MolBond& b) { return b.type == 4; })) {
+    return Error{ErrorClass::aromaticity, "bond type 4 in a record this large: write single and double bonds", {}};
+  }
   std::vector<int> source;
   Result<Molecule> m = Error{};
   {
     const std::lock_guard guard(parser_lock());
     auto& p = parser();
     static thread_local OpenBabel::OBMol mol;
-    if (!p.read_mol(mol, text) || mol.NumAtoms() != check.atom_line.size())
+    set_isotopes(record);
+    if (!p.read_mol(mol, write_record(record)) || mol.NumAtoms() != record.atoms.size() ||
+        mol.NumBonds() != record.bonds.size()) {
       return Error{ErrorClass::syntax, "not readable as a MOL record", {}};
-    if (p.log().find("kekul") != std::string::npos)
+    }
+    if (p.log().find("kekul") != std::string::npos) {
       return Error{ErrorClass::aromaticity, "no Kekule form for the aromatic system", {}};
-    set_valences(mol, check.valence);
-    drop_unmeant_stereo(mol, check.either);
+    }
+    set_valences(mol, record);
+    drop_unmeant_stereo(mol, record);
     m = convert(mol, &source);
   }
-  if (!m.ok()) return placed(m.error(), check.atom_line, source);
-  if (auto e = check_mode(m.value(), mode)) return placed(*e, check.atom_line, source);
+  if (!m.ok()) return placed(m.error(), record, source);
+  if (auto e = check_mode(m.value(), mode)) return placed(*e, record, source);
   return m;
 }
 

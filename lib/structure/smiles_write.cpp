@@ -7,6 +7,7 @@
 #include "smiles_stereo.hpp"
 #include "smiles_tree.hpp"
 #include "symmetry.hpp"
+#include "valence.hpp"
 
 namespace halostep {
 namespace {
@@ -55,15 +56,18 @@ int implied_hydrogens(const Molecule& m, int i) {
   }
 }
 
-std::string atom_text(const Molecule& m, int i, int mark) {
+std::string atom_text(const Molecule& m, int i, int mark, bool kekule) {
   const auto& a = m.atom(i);
   std::string symbol = element_symbol(a.element);
-  if (a.aromatic) symbol[0] = static_cast<char>(symbol[0] - 'A' + 'a');
+  const bool lower = a.aromatic && !kekule;
+  if (lower) symbol[0] = static_cast<char>(symbol[0] - 'A' + 'a');
   if (a.element == element::H) {
     const std::string h = a.isotope ? fmt::format("[{}H]", a.isotope) : "[H]";
     return a.hydrogens ? h + "[H]" : h;
   }
-  if (a.isotope == 0 && a.charge == 0 && a.unpaired == 0 && mark == 0 && implied_hydrogens(m, i) == a.hydrogens) return symbol;
+  // Of an aromatic atom written in upper case the hydrogens are stated.
+  const bool implied = lower || !a.aromatic ? implied_hydrogens(m, i) == a.hydrogens : a.element == element::C && a.hydrogens <= 1;
+  if (a.isotope == 0 && a.charge == 0 && a.unpaired == 0 && mark == 0 && implied) return symbol;
   std::string s = "[";
   if (a.isotope) s += std::to_string(a.isotope);
   s += symbol;
@@ -85,6 +89,11 @@ class Writer {
       tetrahedral_.assign(at(m.atom_count()), 0);
       direction_.assign(at(m.bond_count()), 0);
     }
+    // A radical on a ring nitrogen (pyrrolyl) has no reading in lower case: readers would look for a hydrogen.
+    for (int i = 0; i < m.atom_count(); ++i) {
+      kekule_ = kekule_ || (m.atom(i).aromatic && m.atom(i).unpaired > 0 && m.atom(i).element != element::C);
+    }
+    if (kekule_) double_ = kekule_double_bonds(m, t_.order);
   }
 
   std::string run() {
@@ -100,15 +109,17 @@ class Writer {
     switch (m_.bond(b).order) {
       case BondOrder::dbl: out_ += '='; break;
       case BondOrder::triple: out_ += '#'; break;
-      case BondOrder::aromatic: break;
+      case BondOrder::aromatic:
+        if (kekule_ && double_[at(b)]) out_ += '=';
+        break;
       case BondOrder::single:
         if (direction_[at(b)]) out_ += direction_[at(b)] > 0 ? '/' : '\\';
-        else if (m_.atom(m_.bond(b).a).aromatic && m_.atom(m_.bond(b).b).aromatic) out_ += '-';
+        else if (!kekule_ && m_.atom(m_.bond(b).a).aromatic && m_.atom(m_.bond(b).b).aromatic) out_ += '-';
     }
   }
   void atom(int a) {
     if (t_.parent_bond[at(a)] >= 0) bond(t_.parent_bond[at(a)]);
-    out_ += atom_text(m_, a, tetrahedral_[at(a)]);
+    out_ += atom_text(m_, a, tetrahedral_[at(a)], kekule_);
     for (const auto& c : t_.closures[at(a)]) {
       if (c.opens) bond(c.bond);
       out_ += c.digit < 10 ? std::to_string(c.digit) : c.digit < 100 ? fmt::format("%{}", c.digit) : fmt::format("%({})", c.digit);
@@ -135,6 +146,8 @@ class Writer {
   const Molecule& m_;
   SmilesTree t_;
   std::vector<int> tetrahedral_, direction_;
+  bool kekule_ = false;
+  std::vector<bool> double_;
   std::string out_;
 };
 

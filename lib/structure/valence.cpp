@@ -81,6 +81,7 @@ Pi pi_need(const Molecule& m, int i) {
 class Matching {
  public:
   explicit Matching(std::vector<std::vector<int>> adjacent) : adj_(std::move(adjacent)), match_(adj_.size(), -1) {}
+  [[nodiscard]] int partner(int v) const { return match_[at(v)]; }
   bool perfect() {
     for (int v = 0; v < size(); ++v) {
       if (match_[at(v)] >= 0) continue;
@@ -169,32 +170,59 @@ class Matching {
   std::vector<int> match_, parent_, base_;
 };
 
+// The atoms that carry a ring double bond, in the given order, and which of them are joined by aromatic bonds.
+struct PiSystem {
+  std::vector<int> members;
+  std::vector<std::vector<int>> adjacent;
+};
+
+PiSystem pi_system(const Molecule& m, const std::vector<int>& order) {
+  PiSystem s;
+  std::vector<int> number(static_cast<std::size_t>(m.atom_count()), -1);
+  for (const int i : order) {
+    if (!m.atom(i).aromatic || pi_need(m, i) == Pi::no) continue;
+    number[static_cast<std::size_t>(i)] = static_cast<int>(s.members.size());
+    s.members.push_back(i);
+  }
+  s.adjacent.resize(s.members.size());
+  for (std::size_t k = 0; k < s.members.size(); ++k) {
+    for (const auto& n : m.neighbours(s.members[k])) {
+      const int w = number[static_cast<std::size_t>(n.atom)];
+      if (w >= 0 && m.bond(n.bond).order == BondOrder::aromatic) s.adjacent[k].push_back(w);
+    }
+    std::sort(s.adjacent[k].begin(), s.adjacent[k].end());
+  }
+  return s;
+}
+
 }  // namespace
 
 std::optional<Error> check_aromaticity(const Molecule& m, std::vector<bool>& pi) {
   pi.assign(static_cast<std::size_t>(m.atom_count()), false);
-  std::vector<int> number(static_cast<std::size_t>(m.atom_count()), -1);
-  std::vector<int> members;
+  std::vector<int> order;
   for (int i = 0; i < m.atom_count(); ++i) {
     if (!m.atom(i).aromatic) continue;
     if (!m.atom(i).in_ring) return Error{ErrorClass::aromaticity, "an aromatic atom outside a ring", "atom " + std::to_string(i + 1)};
-    if (pi_need(m, i) == Pi::no) continue;
-    number[static_cast<std::size_t>(i)] = static_cast<int>(members.size());
-    members.push_back(i);
-    pi[static_cast<std::size_t>(i)] = true;
+    order.push_back(i);
   }
-  if (members.empty()) return std::nullopt;
-  std::vector<std::vector<int>> adjacent(members.size());
-  for (std::size_t k = 0; k < members.size(); ++k) {
-    for (const auto& n : m.neighbours(members[k])) {
-      const int w = number[static_cast<std::size_t>(n.atom)];
-      if (w >= 0 && m.bond(n.bond).order == BondOrder::aromatic) adjacent[k].push_back(w);
-    }
+  auto s = pi_system(m, order);
+  for (const int i : s.members) pi[static_cast<std::size_t>(i)] = true;
+  if (s.members.empty()) return std::nullopt;
+  const int first = s.members.front();
+  if (Matching(std::move(s.adjacent)).perfect()) return std::nullopt;
+  return Error{ErrorClass::aromaticity, "no Kekule form for the aromatic system", "atom " + std::to_string(first + 1)};
+}
+
+std::vector<bool> kekule_double_bonds(const Molecule& m, const std::vector<int>& order) {
+  std::vector<bool> out(static_cast<std::size_t>(m.bond_count()), false);
+  auto s = pi_system(m, order);
+  Matching matching(std::move(s.adjacent));
+  if (!matching.perfect()) return out;
+  for (std::size_t k = 0; k < s.members.size(); ++k) {
+    const int other = s.members[static_cast<std::size_t>(matching.partner(static_cast<int>(k)))];
+    out[static_cast<std::size_t>(m.bond_between(s.members[k], other))] = true;
   }
-  if (!Matching(std::move(adjacent)).perfect()) {
-    return Error{ErrorClass::aromaticity, "no Kekule form for the aromatic system", "atom " + std::to_string(members.front() + 1)};
-  }
-  return std::nullopt;
+  return out;
 }
 
 }  // namespace halostep

@@ -15,4 +15,7 @@ std::optional<Error> check_valences(const Molecule& m);
 /// Finds a Kekule form: which aromatic atoms carry a ring double bond. Error aromaticity if there is none.
 std::optional<Error> check_aromaticity(const Molecule& m, std::vector<bool>& pi);
 
+/// Per bond: double in the Kekule form found when atoms are taken in `order`. Precondition: check_aromaticity passed.
+std::vector<bool> kekule_double_bonds(const Molecule& m, const std::vector<int>& order);
+
 }  // namespace halostep

@@ -293,6 +293,48 @@ TEST(Sdf, EveryTruncation) {
   }
 }
 
+// Beyond three columns: only V3000 has room for them.
+TEST(Sdf, MoreThan999Atoms) {
+  const auto chain = [](std::string_view first, std::string_view properties, int ring_type) {
+    constexpr int kLength = 1200;
+    std::string out =
+        "long\n\n\n  0  0  0     0  0            999 V3000\nM  V30 BEGIN CTAB\nM  V30 COUNTS 1206 1206 0 0 0\n";
+    out += fmt::format("M  V30 BEGIN ATOM\nM  V30 1 {} 0 0 0 0 {}\n", first, properties);
+    for (int i = 2; i <= kLength + 6; ++i) out += fmt::format("M  V30 {} C {} 0 0 0\n", i, i);
+    out += "M  V30 END ATOM\nM  V30 BEGIN BOND\n";
+    for (int i = 1; i <= kLength; ++i) out += fmt::format("M  V30 {} 1 {} {}\n", i, i, i + 1);
+    for (int k = 0; k < 6; ++k) {
+      const int type = ring_type == 4 ? 4 : 1 + k % 2;
+      out += fmt::format("M  V30 {} {} {} {}\n", kLength + 1 + k, type, kLength + 1 + k, kLength + 1 + (k + 1) % 6);
+    }
+    return out + "M  V30 END BOND\nM  V30 END CTAB\nM  END\n";
+  };
+  const std::string tail = std::string(1199, 'C') + "c1ccccc1";
+  EXPECT_EQ(smiles_of(chain("C", "", 1)), same_as("C" + tail));
+  EXPECT_EQ(smiles_of(chain("C", "RAD=2", 1), ParseMode::species), same_as("[CH2]" + tail));
+  EXPECT_EQ(smiles_of(chain("C", "MASS=13", 1)), same_as("[13CH3]" + tail));
+  EXPECT_EQ(smiles_of(chain("O", "VAL=2", 1)), same_as("O" + tail));
+  expect_refused(chain("N", "CHG=1", 1), ErrorClass::ion, "record 2");
+  expect_refused(chain("C", "", 4), ErrorClass::aromaticity, "record 2");
+}
+
+// Charge codes and mass differences of the atom lines (old files); "M  CHG" and "M  ISO" win over them.
+TEST(Sdf, CodesOnAtomLines) {
+  const auto coded = [](std::string_view symbol, std::string_view codes, std::string_view properties = "") {
+    return fmt::format(
+        "x\n\n\n  2  1  0  0  0  0            999 V2000\n    0.0000    0.0000    0.0000 C   0  0\n"
+        "    1.0000    0.0000    0.0000 {:<3}{}\n  1  2  1  0\n{}M  END\n",
+        symbol, codes, properties);
+  };
+  EXPECT_EQ(smiles_of(coded("C", " 0  4"), ParseMode::species), same_as("C[CH2]"));
+  EXPECT_EQ(smiles_of(coded("C", " 1  0")), same_as("C[13CH3]"));
+  EXPECT_EQ(smiles_of(coded("H", " 1  0")), same_as("[2H]C"));
+  EXPECT_EQ(smiles_of(coded("C", " 1  0", "M  ISO  1   2  14\n")), same_as("C[14CH3]"));
+  EXPECT_EQ(smiles_of(coded("C", " 0  3", "M  CHG  1   2   0\n")), same_as("CC"));
+  expect_refused(coded("O", " 0  5"), ErrorClass::ion, "record 2");
+  expect_refused(coded("O", " x  0"), ErrorClass::syntax, "record 2, line 6");
+}
+
 // Open Babel crashes when two threads parse at once; ours are locked.
 TEST(Sdf, FromSeveralThreads) {
   std::string text;

@@ -46,10 +46,10 @@ TEST(Combine, AgreeingValuesHaveNoScatter) {
 // estimator; counts (ill, well of the treated; ill, well of the others) and the published result for the logarithm of
 // the risk ratio (tau^2 0.3088, mean -0.7141, standard error 0.1787) from memory.
 TEST(Combine, PublishedExampleOfTheEstimator) {
-  constexpr double trials[][4] = {{4, 119, 11, 128},       {6, 300, 29, 274},         {3, 228, 11, 209},
-                                  {62, 13536, 248, 12619}, {33, 5036, 47, 5761},      {180, 1361, 372, 1079},
-                                  {8, 2537, 10, 619},      {505, 87886, 499, 87892},  {29, 7470, 45, 7232},
-                                  {17, 1699, 65, 1600},    {186, 50448, 141, 27197},  {5, 2493, 3, 2338},
+  constexpr double trials[][4] = {{4, 119, 11, 128},       {6, 300, 29, 274},        {3, 228, 11, 209},
+                                  {62, 13536, 248, 12619}, {33, 5036, 47, 5761},     {180, 1361, 372, 1079},
+                                  {8, 2537, 10, 619},      {505, 87886, 499, 87892}, {29, 7470, 45, 7232},
+                                  {17, 1699, 65, 1600},    {186, 50448, 141, 27197}, {5, 2493, 3, 2338},
                                   {27, 16886, 29, 17825}};
   std::vector<Quantity> values;
   for (const auto& [a, b, c, d] : trials) {

@@ -67,18 +67,20 @@ TEST_P(CsvRefuse, ToldWithLine) {
 }
 
 const auto kName = [](const auto& test) { return std::string(test.param.name); };
-INSTANTIATE_TEST_SUITE_P(
-    Csv, CsvRefuse,
-    testing::Values(Bad{"BlankLine", "a,b\n\n1,2\n", "line 2", "blank line"},
-                    Bad{"CarriageReturn", "a,b\r\n", "line 1", "carriage return"},
-                    Bad{"ByteOrderMark", "\xEF\xBB\xBF" "a,b\n", "line 1", "byte order mark"},
-                    Bad{"NotUtf8", "a,b\n\xE9,2\n", "line 2", "not UTF-8"},
-                    Bad{"CutUtf8", "a,\xE2\x80", "line 1", "not UTF-8"},
-                    Bad{"QuoteInside", "a,b\n1,x\"y\n", "line 2", "quote inside"},
-                    Bad{"TextBehindQuote", "a,b\n\"1\"x,2\n", "line 2", "after a closing quote"},
-                    Bad{"OpenQuote", "a,b\n1,\"2\n", "line 3", "not closed"},
-                    Bad{"NoLineFeed", "a,b\n1,2", "line 2", "line feed"}),
-    kName);
+INSTANTIATE_TEST_SUITE_P(Csv, CsvRefuse,
+                         testing::Values(Bad{"BlankLine", "a,b\n\n1,2\n", "line 2", "blank line"},
+                                         Bad{"CarriageReturn", "a,b\r\n", "line 1", "carriage return"},
+                                         Bad{"ByteOrderMark",
+                                             "\xEF\xBB\xBF"
+                                             "a,b\n",
+                                             "line 1", "byte order mark"},
+                                         Bad{"NotUtf8", "a,b\n\xE9,2\n", "line 2", "not UTF-8"},
+                                         Bad{"CutUtf8", "a,\xE2\x80", "line 1", "not UTF-8"},
+                                         Bad{"QuoteInside", "a,b\n1,x\"y\n", "line 2", "quote inside"},
+                                         Bad{"TextBehindQuote", "a,b\n\"1\"x,2\n", "line 2", "after a closing quote"},
+                                         Bad{"OpenQuote", "a,b\n1,\"2\n", "line 3", "not closed"},
+                                         Bad{"NoLineFeed", "a,b\n1,2", "line 2", "line feed"}),
+                         kName);
 
 }  // namespace
 }  // namespace halostep

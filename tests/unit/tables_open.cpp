@@ -23,7 +23,8 @@ class OpenTable : public testing::Test {
     Faults faults;
     table_ = test::SmallTable().read(faults).table;
     ASSERT_TRUE(faults.none());
-    table_.models.push_back({"bonds", {"base", "alkyl"}, {439.3, -8.25}, {3, 2}, {0.5, -0.25, -0.25, 1}, {{"scale", 2}}});
+    table_.models.push_back(
+        {"bonds", {"base", "alkyl"}, {439.3, -8.25}, {3, 2}, {0.5, -0.25, -0.25, 1}, {{"scale", 2}}});
     const auto error = write_table(table_, schema(), path_);
     ASSERT_FALSE(error.has_value()) << error->message;
   }

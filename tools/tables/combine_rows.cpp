@@ -74,7 +74,8 @@ std::ptrdiff_t method_rank(const SpeciesRow& r) {
   return std::find(order.begin(), order.end(), r.method) - order.begin();
 }
 
-std::optional<double> preferred(const Table& t, const std::vector<int>& rows, std::optional<double> SpeciesRow::* field) {
+std::optional<double> preferred(const Table& t, const std::vector<int>& rows,
+                                std::optional<double> SpeciesRow::*field) {
   const SpeciesRow* best = nullptr;
   for (const int i : rows) {
     const auto& r = t.species_rows[at(i)];

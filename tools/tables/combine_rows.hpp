@@ -24,8 +24,7 @@ struct SpeciesKey {
 /// among the rows and not combined; a bond without a current row gets no entry. keys[i] and places[i] belong to
 /// bond_rows[i]. A current row more than 3 combined u off the combined value of the bond's other current rows is a
 /// fault unless it has a note.
-void combine_bonds(Table& table, const std::vector<BondKey>& keys, const std::vector<RowPlace>& places,
-                   Faults& faults);
+void combine_bonds(Table& table, const std::vector<BondKey>& keys, const std::vector<RowPlace>& places, Faults& faults);
 
 /// Fills Table::species. Enthalpies are combined like bonds. S and Cp are not averaged, since one misprint would
 /// spoil them unseen: each is taken from the first current row of the best method, in the order evaluated, measured,

@@ -47,9 +47,9 @@ std::optional<std::vector<FittedModel>> proven_models(const std::string& dir, co
   }
   const auto hash = input_hash(table);
   if (file.value().input_hash != hash) {
-    faults.add(kFittedFile, 0,
-               fmt::format("fitted to rows of hash {}, the rows have {}; 'refit' renews it", file.value().input_hash,
-                           hash));
+    faults.add(
+        kFittedFile, 0,
+        fmt::format("fitted to rows of hash {}, the rows have {}; 'refit' renews it", file.value().input_hash, hash));
     return std::nullopt;
   }
   const auto fitted = fit_models(table);
@@ -70,9 +70,11 @@ void print_counts(const Curated& c) {
   const auto hydrogen = std::count_if(t.bonds.begin(), t.bonds.end(), [](const auto& b) { return b.leaving == "[H]"; });
   const auto others = static_cast<std::ptrdiff_t>(t.bonds.size()) - hydrogen;
   const auto current = [](const auto& rows, bool x_h) {
-    return std::count_if(rows.begin(), rows.end(), [&](const auto& r) { return !r.superseded && (r.leaving == "[H]") == x_h; });
+    return std::count_if(rows.begin(), rows.end(),
+                         [&](const auto& r) { return !r.superseded && (r.leaving == "[H]") == x_h; });
   };
-  const auto enthalpies = std::count_if(t.species.begin(), t.species.end(), [](const auto& s) { return s.dfh298.has_value(); });
+  const auto enthalpies =
+      std::count_if(t.species.begin(), t.species.end(), [](const auto& s) { return s.dfh298.has_value(); });
   const auto rates = std::count_if(t.rates.begin(), t.rates.end(), [](const auto& r) { return !r.superseded; });
   fmt::print("distinct X-H bonds      {:>6} from {} current rows\n", hydrogen, current(t.bond_rows, true));
   fmt::print("other bonds             {:>6} from {} current rows\n", others, current(t.bond_rows, false));

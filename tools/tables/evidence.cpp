@@ -1,6 +1,5 @@
 #include "tables/evidence.hpp"
 
-
 namespace halostep {
 namespace {
 

@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <array>
 #include <cmath>
+#include <optional>
 
 #include "adjust/ridge.hpp"
 #include "tables/fit_bonds.hpp"
@@ -34,19 +35,27 @@ void add_range(FittedModel& m, const Table& t, const std::vector<RateSample>& sa
   m.settings.emplace_back("T high", high);
 }
 
-bool alkane(const RateSample& s) {
-  return !s.sites.empty() && std::all_of(s.sites.begin(), s.sites.end(), [](const RatedSite& r) {
-    if (r.site.a_class != AClass::alkyl) return false;
-    for (const auto& g : r.site.count) {
-      if (std::any_of(g.begin(), g.end(), [](int n) { return n > 0; })) return false;
+// Alkanes, or any hydrocarbon with `pi`.
+bool hydrocarbon(const RateSample& s, bool pi) {
+  return !s.sites.empty() && std::all_of(s.sites.begin(), s.sites.end(), [&](const RatedSite& r) {
+    const bool conjugated = r.site.a_class == AClass::benzylic || r.site.a_class == AClass::allylic;
+    if (r.site.a_class != AClass::alkyl && !(pi && conjugated)) return false;
+    for (int g = 0; g < kPolarGroups; ++g) {
+      const auto& n = r.site.count[static_cast<std::size_t>(g)];
+      const bool carbon_group = g == static_cast<int>(PolarGroup::aryl) || g == static_cast<int>(PolarGroup::unsaturated);
+      if (!(pi && carbon_group) && std::any_of(n.begin(), n.end(), [](int k) { return k > 0; })) return false;
     }
     return true;
   });
 }
 
+constexpr std::size_t kLineRows = 3;
+
 // Straight line Ea = E0 + alpha dH through the alkanes' measured activation energies (Evans and Polanyi, Trans.
 // Faraday Soc. 1938, 34, 11). A row for a whole molecule stands at the mean dH of its sites, weighted by rate.
-Result<FittedModel> fit_line(const Table& t, const std::vector<RateSample>& samples, int carrier, const FittedModel& rates) {
+// Hydrocarbons with pi systems come in where the alkanes are too few; nothing is returned when still too few.
+Result<std::optional<FittedModel>> fit_line(const Table& t, const std::vector<RateSample>& samples, int carrier,
+                                            const FittedModel& rates, bool pi = false) {
   std::vector<double> dh, ea;
   int last = -1;
   KineticForm form;
@@ -54,7 +63,7 @@ Result<FittedModel> fit_line(const Table& t, const std::vector<RateSample>& samp
     if (name == "polar outside") form.polar_outside = v > 0.5;
   }
   for (const auto& s : samples) {
-    if (s.carrier != carrier || s.relative || s.row == last || !alkane(s)) continue;
+    if (s.carrier != carrier || s.relative || s.row == last || !hydrocarbon(s, pi)) continue;
     const auto& row = t.rates[static_cast<std::size_t>(s.row)];
     if (!row.ea || !row.a) continue;
     last = s.row;
@@ -67,6 +76,10 @@ Result<FittedModel> fit_line(const Table& t, const std::vector<RateSample>& samp
     dh.push_back(mean / sum);
     ea.push_back(*row.ea + row.n * kGasConstant * s.temperature);
   }
+  if (dh.size() < kLineRows) {
+    if (!pi) return fit_line(t, samples, carrier, rates, true);
+    return std::optional<FittedModel>();
+  }
   RidgeProblem p;
   const auto n = static_cast<Eigen::Index>(dh.size());
   p.x = Eigen::MatrixXd::Ones(n, 2);
@@ -76,8 +89,9 @@ Result<FittedModel> fit_line(const Table& t, const std::vector<RateSample>& samp
   p.prior = Eigen::Vector2d(100.0, 2.0);
   auto s = solve_ridge(p);
   if (!s.ok()) return s.error();
-  return pack_model(std::string("line.") + kNames[carrier], {"E0", "alpha"}, s.value().b, s.value().covariance,
-                    {static_cast<int>(n), static_cast<int>(n)}, {{"scatter", s.value().scatter}, {"rows", static_cast<double>(n)}});
+  return std::optional(pack_model(std::string("line.") + kNames[carrier], {"E0", "alpha"}, s.value().b, s.value().covariance,
+                                  {static_cast<int>(n), static_cast<int>(n)},
+                                  {{"scatter", s.value().scatter}, {"rows", static_cast<double>(n)}, {"hydrocarbons", pi ? 1.0 : 0.0}}));
 }
 
 }  // namespace
@@ -105,7 +119,7 @@ Result<std::vector<FittedModel>> fit_models(const Table& table) {
   for (int x = 0; x < 4; ++x) {
     auto m = fit_line(table, samples, x, *find_model(out, std::string("kinetics.") + kNames[x]));
     if (!m.ok()) return m.error();
-    out.push_back(std::move(m).value());
+    if (m.value()) out.push_back(std::move(*m.value()));
   }
   return out;
 }

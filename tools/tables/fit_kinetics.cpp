@@ -203,9 +203,10 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
     k.start[static_cast<std::size_t>(i)] = v;
     k.prior[static_cast<std::size_t>(i)] = sd;
   };
-  set(kp::decay, 0.45, 0.15);
+  set(kp::decay, 0.45, 0.03);
   set(kp::ln_limit, std::log(2e-10), 0.5);
   set(kp::limit_power, 0.45, 0.15);
+  set(kp::saturation, cl ? (*cl)[kp::saturation] : 40.0, cl ? 5.0 : 15.0);
   for (int c = 1; c < kAClasses; ++c) {
     set(kp::a_class + c - 1, 0.0, 0.7);
     set(kp::shift_class + c - 1, 0.0, 4.0);
@@ -213,10 +214,13 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
   const double scale = carrier == 1 ? 1.0 : carrier == 0 ? 0.35 : 1.0;
   for (int g = 0; g < kPolarGroups; ++g) {
     const auto a = static_cast<std::size_t>(kp::polar_alpha + g), b = static_cast<std::size_t>(kp::polar_beyond + g);
-    k.start[a] = cl ? scale * (*cl)[a] : 3.0;
-    k.start[b] = cl ? scale * (*cl)[b] : 5.0;
-    k.prior[a] = k.prior[b] = carrier == 1 ? 8.0 : 2.5;
+    k.start[a] = cl ? scale * (*cl)[a] : conjugates(g) ? 10.0 : 6.0;
+    k.start[b] = cl ? scale * (*cl)[b] : 3.0;
+    // The late transition states of Br and I may feel conjugation otherwise than chlorine's early ones.
+    k.prior[a] = carrier == 1 ? 6.0 : carrier > 1 && conjugates(g) ? 8.0 : 3.0;
+    k.prior[b] = carrier == 1 ? 6.0 : 3.0;
   }
+  k.form.polar_outside = true;
   switch (carrier) {
     case 0:
       set(kp::ln_a, std::log(5e-11), 1.0);
@@ -224,24 +228,25 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
       set(kp::exponent, 0.5, 0.3);
       set(kp::shift, 0.0, 1e-6);
       set(kp::width, 16.0, 5.0);
-      set(kp::alkyl, 0.0, 0.5);
+      set(kp::ln_limit, std::log(4e-10), 0.5);
+      set(kp::alkyl, 0.0, 1.0);
       k.form.polar_outside = true;
       break;
     case 1:
-      set(kp::ln_a, std::log(5e-11), 1.0);
-      set(kp::tightness, 2.0, 1.5);
-      set(kp::exponent, 0.5, 0.7);
-      set(kp::shift, 4.0, 8.0);
-      set(kp::width, 4.0, 2.0);
-      set(kp::alkyl, 0.0, 2.0);
+      set(kp::ln_a, std::log(6e-11), 0.5);
+      set(kp::tightness, 2.5, 1.0);
+      set(kp::exponent, -0.5, 0.3);
+      set(kp::shift, 10.0, 3.0);
+      set(kp::width, 4.0, 1.0);
+      set(kp::alkyl, 0.0, 0.15);
       break;
     default:
       set(kp::ln_a, std::log(6e-11), 1.0);
       set(kp::tightness, 0.0, 1e-6);
-      set(kp::exponent, 0.3, 0.5);
+      set(kp::exponent, 0.3, 0.2);
       set(kp::shift, 3.0, 6.0);
       set(kp::width, 3.0, 1.5);
-      set(kp::alkyl, -3.0, 3.0);
+      set(kp::alkyl, -3.0, 6.0);
   }
   return k;
 }

@@ -89,10 +89,13 @@ std::vector<std::string> model_differences(const std::vector<FittedModel>& store
                                            const std::vector<FittedModel>& fitted) {
   std::vector<std::string> out;
   for (std::size_t i = 0; i < std::max(stored.size(), fitted.size()); ++i) {
-    if (i >= stored.size()) out.push_back(fmt::format("model '{}' is fitted now and not in the file", fitted[i].name));
-    else if (i >= fitted.size()) out.push_back(fmt::format("model '{}' is in the file and not fitted now", stored[i].name));
+    if (i >= stored.size())
+      out.push_back(fmt::format("model '{}' is fitted now and not in the file", fitted[i].name));
+    else if (i >= fitted.size())
+      out.push_back(fmt::format("model '{}' is in the file and not fitted now", stored[i].name));
     else if (stored[i].name != fitted[i].name) {
-      out.push_back(fmt::format("model {} is '{}' in the file, '{}' fitted now", i + 1, stored[i].name, fitted[i].name));
+      out.push_back(
+          fmt::format("model {} is '{}' in the file, '{}' fitted now", i + 1, stored[i].name, fitted[i].name));
     } else {
       for (auto& line : Comparison(stored[i], fitted[i]).run()) out.push_back(std::move(line));
     }

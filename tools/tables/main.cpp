@@ -19,8 +19,9 @@ int main(int argc, char** argv) {
   compile->callback([&] { code = halostep::compile_command(dir, out); });
   command("refit", "check, fit, and write fitted.json")->callback([&] { code = halostep::refit_command(dir); });
   command("crossval", "predict rows left out of the fit")->callback([&] { code = halostep::crossval_command(dir); });
-  app.footer("Exit code: 0 done, 1 faults found (one a line on stderr: file:line: reason), 2 wrong usage.\n"
-             "Example: halostep-tables compile bde_tables halostep.sqlite");
+  app.footer(
+      "Exit code: 0 done, 1 faults found (one a line on stderr: file:line: reason), 2 wrong usage.\n"
+      "Example: halostep-tables compile bde_tables halostep.sqlite");
   try {
     app.parse(argc, argv);
   } catch (const CLI::ParseError& e) {

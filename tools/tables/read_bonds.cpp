@@ -17,7 +17,7 @@ class BondReader {
       : table_(table), sources_(sources), structures_(structures), faults_(faults) {}
 
   std::size_t read(const std::string& dir, const std::string& file, bool hydrogen) {
-    std::vector<std::string> columns = {"molecule", "radical", "d298",       "unit",   "u",      "coverage",
+    std::vector<std::string> columns = {"molecule", "radical",    "d298",   "unit",   "u",      "coverage",
                                         "method",   "provenance", "source", "status", "reason", "note"};
     if (!hydrogen) columns.emplace_back("leaving");
     const auto sheet = read_sheet(dir, file, columns, faults_);
@@ -78,7 +78,8 @@ class BondReader {
       return {};
     }
     const auto broken = broken_into(m->m, radical->m, leaving->m);
-    if (!broken) {
+    const bool electrons = radical->m.unpaired() + leaving->m.unpaired() == m->m.unpaired() + 2;
+    if (!broken || !electrons) {
       row.fault(fmt::format("no acyclic single bond of {} gives {} and {}", m->canonical, radical->canonical,
                             leaving->canonical));
       return {};

@@ -7,7 +7,7 @@
 namespace halostep {
 namespace {
 
-constexpr double kReference = 298.0;   // K, of k298 and of the T ratio in k(T)
+constexpr double kReference = 298.0;  // K, of k298 and of the T ratio in k(T)
 constexpr double kAgreement = 0.10;
 constexpr Range kBarrier{-50, 600}, kExponent{-10, 10}, kTemperature{50, 5000}, kLogU{0, 3, true};
 
@@ -76,7 +76,8 @@ RateRow read_other_row(const Row& row, SourceBook& sources) {
   r.unit = row.word("unit", words::rate_unit);
   read_coefficient(row, r);
   if (!row.text("a").empty() && row.text("ea").empty()) row.fault("a without ea");
-  if (row.text("a").empty() && row.text("ea").empty() && row.text("k298").empty()) row.fault("none of a with ea, ea and k298 is given");
+  if (row.text("a").empty() && row.text("ea").empty() && row.text("k298").empty())
+    row.fault("none of a with ea, ea and k298 is given");
   check_agreement(row, r);
   read_evidence(row, sources, r);
   if (r.reaction.empty()) return r;

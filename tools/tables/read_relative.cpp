@@ -86,11 +86,11 @@ class MixtureSums {
 
 std::size_t read_relative_rates(const std::string& dir, Table& table, SourceBook& sources, Structures& structures,
                                 Faults& faults) {
-  const auto sheet = read_sheet(dir, "relative_rates.csv",
-                                {"reagent", "molecule", "reference_molecule", "radical", "reference_radical",
-                                 "ratio_per_h", "t", "medium", "u_log10", "method", "provenance", "source", "status",
-                                 "reason", "use", "note"},
-                                faults);
+  const auto sheet =
+      read_sheet(dir, "relative_rates.csv",
+                 {"reagent", "molecule", "reference_molecule", "radical", "reference_radical", "ratio_per_h", "t",
+                  "medium", "u_log10", "method", "provenance", "source", "status", "reason", "use", "note"},
+                 faults);
   Duplicates duplicates;
   for (std::size_t i = 0; i < sheet.lines.size(); ++i) {
     const Row row(sheet, i, faults);

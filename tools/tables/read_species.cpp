@@ -19,7 +19,8 @@ void read_enthalpy(const Row& row, SpeciesRow& r) {
   r.u = scaled(row.number("u", {kU.lo / scale, kU.hi / scale}), scale);
   r.coverage = row.text("coverage");
   if (!r.coverage.empty() || !row.text("dfh298").empty()) row.word("coverage", words::coverage);
-  if (row.text("dfh298").empty() != row.text("u").empty()) row.fault("dfh298 and u must both be given or both be empty");
+  if (row.text("dfh298").empty() != row.text("u").empty())
+    row.fault("dfh298 and u must both be given or both be empty");
   if (row.text("dfh298").empty() && !r.coverage.empty()) row.fault("coverage without dfh298");
 }
 

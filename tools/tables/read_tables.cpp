@@ -15,9 +15,9 @@ namespace halostep {
 namespace {
 
 constexpr const char* kList = "file_list.txt";
-constexpr std::array kFiles = {"sources.csv",         "bonds_rh.csv",    "bonds_rx.csv",
-                               "species.csv",         "rates_abstraction.csv", "rates_other.csv",
-                               "relative_rates.csv",  "mixtures.csv",    "left_out.csv"};
+constexpr std::array kFiles = {"sources.csv",        "bonds_rh.csv",          "bonds_rx.csv",
+                               "species.csv",        "rates_abstraction.csv", "rates_other.csv",
+                               "relative_rates.csv", "mixtures.csv",          "left_out.csv"};
 
 /// file_list.txt must name the files this compiler reads, in their order.
 void check_list(const std::string& dir, Faults& faults) {
@@ -29,8 +29,10 @@ void check_list(const std::string& dir, Faults& faults) {
     const auto end = std::min(text->find('\n', from), text->size());
     const auto name = text->substr(from, end - from);
     ++line;
-    if (i >= kFiles.size()) faults.add(kList, line, fmt::format("'{}' is one file too many", name));
-    else if (name != kFiles[i]) faults.add(kList, line, fmt::format("'{}' where '{}' belongs", name, kFiles[i]));
+    if (i >= kFiles.size())
+      faults.add(kList, line, fmt::format("'{}' is one file too many", name));
+    else if (name != kFiles[i])
+      faults.add(kList, line, fmt::format("'{}' where '{}' belongs", name, kFiles[i]));
     ++i;
     from = end + 1;
   }
@@ -45,7 +47,8 @@ void check_strays(const std::string& dir, Faults& faults) {
     const auto name = entry.path().filename().string();
     if (name.ends_with(".csv") && std::find(kFiles.begin(), kFiles.end(), name) == kFiles.end()) strays.insert(name);
   }
-  for (const auto& name : strays) faults.add(name, 0, fmt::format("not a file of the table: {} does not name it", kList));
+  for (const auto& name : strays)
+    faults.add(name, 0, fmt::format("not a file of the table: {} does not name it", kList));
 }
 
 std::size_t read_left_out(const std::string& dir, Faults& faults) {
@@ -69,16 +72,15 @@ Curated read_tables(const std::string& dir, Faults& faults) {
   Structures structures;
   SourceBook sources(dir, t, faults);
   const auto bonds = read_bonds(dir, t, sources, structures, faults);
-  const std::array<std::size_t, kFiles.size()> rows = {
-      t.sources.size(),
-      bonds.rh,
-      bonds.rx,
-      read_species(dir, t, sources, structures, faults),
-      read_abstraction(dir, t, sources, structures, faults),
-      read_other_rates(dir, t, sources, faults),
-      read_relative_rates(dir, t, sources, structures, faults),
-      read_mixtures(dir, t, sources, structures, faults),
-      read_left_out(dir, faults)};
+  const std::array<std::size_t, kFiles.size()> rows = {t.sources.size(),
+                                                       bonds.rh,
+                                                       bonds.rx,
+                                                       read_species(dir, t, sources, structures, faults),
+                                                       read_abstraction(dir, t, sources, structures, faults),
+                                                       read_other_rates(dir, t, sources, faults),
+                                                       read_relative_rates(dir, t, sources, structures, faults),
+                                                       read_mixtures(dir, t, sources, structures, faults),
+                                                       read_left_out(dir, faults)};
   for (std::size_t i = 0; i < rows.size(); ++i) out.rows_per_file.emplace_back(kFiles[i], rows[i]);
   // Without the rows of a whole file every source of it would seem unused.
   const bool all_read = std::none_of(out.rows_per_file.begin(), out.rows_per_file.end(), [&](const auto& file) {

@@ -52,8 +52,12 @@ std::string species_key(const Structure& s) {
 
 int radical_site(const Row& row, const Structure& s, const Structure& radical) {
   const int site = find_site(s.m, s.classes, radical.m);
-  if (site < 0) row.fault(fmt::format("{} is not {} less one H", radical.canonical, s.canonical));
-  return site;
+  // The skeleton of a resonance form does not tell how many electrons are unpaired.
+  const bool electrons = radical.m.unpaired() == s.m.unpaired() + 1;
+  if (site >= 0 && electrons) return site;
+  row.fault(fmt::format("{} is not {} less one H{}", radical.canonical, s.canonical,
+                        site < 0 ? "" : ": the unpaired electrons differ"));
+  return -1;
 }
 
 }  // namespace halostep

@@ -113,7 +113,8 @@ struct HalogenOutcome {
   std::vector<SiteOutcome> sites;    // as the bonds, in order of first atom
   std::vector<Selectivity> selectivity;  // largest site against each other site
   double k_total = 0;                // cm3 molecule-1 s-1, C-H sites
-  Quantity slope;                    // fitted Evans-Polanyi slope alpha over the alkanes
+  std::optional<Quantity> slope;     // fitted straight Evans-Polanyi slope alpha; absent with fewer than three rates
+  std::string slope_over;            // what it was fitted over: "alkanes" or "hydrocarbons"
   std::vector<std::string> notes;    // competing channels and cautions
   std::vector<int> sources;          // rows behind the kinetic model's class
 };

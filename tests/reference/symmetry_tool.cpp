@@ -1,0 +1,65 @@
+// Judged by rdkit_symmetry.py: reads SMILES lines from standard input and writes one line for each.
+//
+//   ok TAB classes of the heavy atoms, input order TAB canonical SMILES without stereo [TAB answered | refused CLASS]
+//   refused TAB CLASS
+//
+// Heavy atoms only: ordinary hydrogens are counts; a D or T atom stays out of the list but tells its neighbours apart.
+#include <fmt/format.h>
+#include <fmt/ranges.h>
+
+#include <cstdio>
+#include <iostream>
+#include <optional>
+#include <string>
+#include <string_view>
+#include <vector>
+
+#include "halostep/engine.hpp"
+#include "halostep/structure.hpp"
+
+namespace {
+
+using namespace halostep;
+
+std::vector<int> heavy_classes(const Molecule& m) {
+  const auto all = symmetry_classes(m);
+  std::vector<int> heavy;
+  for (int i = 0; i < m.atom_count(); ++i) {
+    if (m.atom(i).element != element::H) heavy.push_back(all[static_cast<std::size_t>(i)]);
+  }
+  return heavy;
+}
+
+std::string answer(const Engine& engine, const Molecule& m) {
+  const auto bonds = engine.bonds(m, {.typed = false, .details = false});
+  return bonds.ok() ? "answered" : fmt::format("refused {}", error_class_name(bonds.error().cls));
+}
+
+std::string record(const std::string& line, const std::optional<Engine>& engine) {
+  const auto m = parse_smiles(line);
+  if (!m.ok()) return fmt::format("refused\t{}", error_class_name(m.error().cls));
+  auto text = fmt::format("ok\t{}\t{}", fmt::join(heavy_classes(m.value()), " "), canonical_smiles(m.value(), false));
+  if (engine) text += "\t" + answer(*engine, m.value());
+  return text;
+}
+
+}  // namespace
+
+int main(int argc, char** argv) {
+  const bool answers = argc == 2 && std::string_view(argv[1]) == "--answers";
+  if (argc > 1 && !answers) {
+    fmt::print(stderr, "usage: {} [--answers] < SMILES lines\n", argv[0]);
+    return 1;
+  }
+  std::optional<Engine> engine;
+  if (answers) {
+    auto opened = Engine::open();
+    if (!opened.ok()) {
+      fmt::print(stderr, "{}\n", opened.error().message);
+      return 4;
+    }
+    engine.emplace(std::move(opened).value());
+  }
+  for (std::string line; std::getline(std::cin, line);) fmt::print("{}\n", record(line, engine));
+  return 0;
+}

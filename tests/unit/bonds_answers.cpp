@@ -1,0 +1,325 @@
+// Answers about bonds: routes, contributions, uncertainty, what is listed and what is refused.
+#include <gmock/gmock.h>
+
+#include <cmath>
+
+#include "adjust/combine.hpp"
+#include "engine_shared.hpp"
+
+namespace halostep {
+namespace {
+
+using testing::HasSubstr;
+
+std::vector<BondAnswer> bonds(std::string_view smiles, bool typed = false) {
+  auto r = engine().bonds(read(smiles), {typed, true});
+  if (!r.ok()) {
+    ADD_FAILURE() << smiles << ": " << r.error().message;
+    return {};
+  }
+  return std::move(r).value();
+}
+
+const BondAnswer& find(const std::vector<BondAnswer>& all, std::string_view bond, std::string_view radical) {
+  static const BondAnswer none;
+  const auto wanted = same_as(radical);
+  for (const auto& b : all) {
+    if (b.bond == bond && b.radical == wanted) return b;
+  }
+  ADD_FAILURE() << "no " << bond << " to " << radical;
+  return none;
+}
+
+// D298 against evaluated values; tolerance: the spread between the compilations (kJ/mol). Blanksby and Ellison, Acc.
+// Chem. Res. 2003, 36, 255, from memory, unless another is named.
+TEST(Measured, KnownBonds) {
+  const struct {
+    const char *smiles, *bond, *radical;
+    double d, tolerance;
+  } cases[] = {{"C", "C-H", "[CH3]", 439.3, 1},
+               {"CC", "C-H", "C[CH2]", 423, 3},
+               {"CCC", "C-H", "C[CH]C", 412.5, 4},
+               {"CC(C)C", "C-H", "C[C](C)C", 403.8, 5},
+               {"C=C", "C-H", "[CH]=C", 463, 5},
+               {"c1ccccc1", "C-H", "[c]1ccccc1", 472, 5},
+               {"C#C", "C-H", "[C]#C", 557, 4},
+               {"CC=C", "C-H", "[CH2]C=C", 371, 5},
+               {"Cc1ccccc1", "C-H", "[CH2]c1ccccc1", 375.5, 4},
+               {"CC=O", "C-H", "C[C]=O", 374, 4},
+               {"CO", "O-H", "C[O]", 437.7, 4},
+               {"Oc1ccccc1", "O-H", "[O]c1ccccc1", 365, 8},  // Mulder et al., J. Phys. Chem. A 2005, 109, 2647: 362.8
+               {"CS", "S-H", "C[S]", 365, 5},
+               {"CN", "N-H", "C[NH]", 425, 10},
+               {"[SiH4]", "Si-H", "[SiH3]", 384, 4},
+               {"CCl", "C-Cl", "[CH3]", 350, 4},
+               {"CBr", "C-Br", "[CH3]", 294, 5},
+               {"CI", "C-I", "[CH3]", 239, 5},
+               {"CF", "C-F", "[CH3]", 460, 8}};
+  for (const auto& c : cases) {
+    const auto b = find(bonds(c.smiles), c.bond, c.radical);
+    ASSERT_TRUE(b.d298) << c.smiles;
+    EXPECT_EQ(b.route, Route::measured) << c.smiles;
+    EXPECT_NEAR(b.d298->value, c.d, c.tolerance) << c.smiles << " " << c.bond;
+    EXPECT_FALSE(b.sources.empty());
+  }
+}
+
+// Weak bonds of initiators; values of Luo's handbook (2007) and, for HOCl and H2O2, of the CODATA-type cycle, from
+// memory; the tolerance covers the spread between the sources.
+TEST(Measured, WeakBondsOfInitiators) {
+  const struct {
+    const char *smiles, *bond, *radical;
+    double d, tolerance;
+  } cases[] = {{"OO", "O-O", "[OH]", 210, 5},
+               {"CC(C)(C)OOC(C)(C)C", "O-O", "CC(C)(C)[O]", 165, 15},
+               {"COOC", "O-O", "C[O]", 165, 12},
+               {"OCl", "O-Cl", "[OH]", 234, 5},
+               {"CC(C)(C)OCl", "O-Cl", "CC(C)(C)[O]", 198, 20},
+               {"ClCl", "Cl-Cl", "[Cl]", 242.6, 1},
+               {"BrBr", "Br-Br", "[Br]", 193.9, 1},
+               {"II", "I-I", "[I]", 152.3, 1},
+               {"FF", "F-F", "[F]", 158.7, 1.5}};
+  for (const auto& c : cases) {
+    const auto b = find(bonds(c.smiles), c.bond, c.radical);
+    ASSERT_TRUE(b.d298) << c.smiles;
+    EXPECT_EQ(b.route, Route::measured) << c.smiles;
+    EXPECT_NEAR(b.d298->value, c.d, c.tolerance) << c.smiles << " " << c.bond;
+    EXPECT_EQ(b.h_count, 0);
+    EXPECT_EQ(b.bond_count, 1);
+  }
+  // N-bromosuccinimide: published values run from 243 to 280 kJ/mol, so only that it is listed, measured and weaker than
+  // the C-H bonds of the imide.
+  const auto all = bonds("O=C1CCC(=O)N1Br");
+  const auto n_br = find(all, "N-Br", "O=C1CCC(=O)[N]1");
+  ASSERT_TRUE(n_br.d298);
+  EXPECT_EQ(n_br.route, Route::measured);
+  EXPECT_GT(n_br.d298->value, 200);
+  EXPECT_LT(n_br.d298->value, 320);
+}
+
+TEST(Routes, MeasuredBeforeTypedAndTypedOnDemand) {
+  int both = 0;
+  for (const auto smiles : kSubstrates) {
+    const auto first = bonds(smiles), typed = bonds(smiles, true);
+    ASSERT_EQ(first.size(), typed.size()) << smiles;
+    for (std::size_t i = 0; i < first.size(); ++i) {
+      EXPECT_EQ(first[i].bond, typed[i].bond);
+      EXPECT_EQ(first[i].radical, typed[i].radical);
+      EXPECT_EQ(typed[i].route, Route::typed) << smiles;
+      if (first[i].route != Route::measured || !typed[i].d298) continue;
+      ++both;
+      // The fit has seen these rows: its answer must lie within 3 combined u, and must not be more certain than they are.
+      EXPECT_LT(std::abs(first[i].d298->value - typed[i].d298->value), 3 * std::hypot(first[i].d298->u, typed[i].d298->u) + 1)
+          << smiles << " " << first[i].bond << " to " << first[i].radical << ": measured " << first[i].d298->value << " u "
+          << first[i].d298->u << ", typed " << typed[i].d298->value << " u " << typed[i].d298->u;
+    }
+  }
+  EXPECT_GT(both, 40);
+}
+
+// Every answer can say what it is made of.
+TEST(Contributions, AddUpToTheTypedValue) {
+  for (const auto smiles : kSubstrates) {
+    for (const auto& b : bonds(smiles, true)) {
+      if (!b.d298) continue;
+      double sum = 0;
+      for (const auto& c : b.contributions) sum += c.value.value;
+      EXPECT_NEAR(sum, b.d298->value, 1e-9) << smiles << " " << b.bond << " to " << b.radical;
+      for (const auto& c : b.contributions) {
+        EXPECT_FALSE(c.name.empty());
+        EXPECT_NE(c.count, 0);
+        EXPECT_GE(c.value.u, 0);
+      }
+      EXPECT_FALSE(b.sources.empty()) << smiles << " " << b.bond << " to " << b.radical;
+    }
+  }
+}
+
+// A measured value is the combination of its current rows (DerSimonian and Laird), so its u can be worked out again; it is
+// never below that of plain weighting.
+TEST(Contributions, OfAMeasuredValueAreItsRows) {
+  int compared = 0;
+  for (const auto smiles : kSubstrates) {
+    for (const auto& b : bonds(smiles)) {
+      if (b.route != Route::measured) continue;
+      ASSERT_FALSE(b.contributions.empty()) << smiles;
+      std::vector<Quantity> rows;
+      double weights = 0, precision = 0;
+      for (const auto& c : b.contributions) {
+        rows.push_back(c.value);
+        weights += c.count;
+        precision += 1 / (c.value.u * c.value.u);
+        EXPECT_GT(c.count, 0);
+        EXPECT_LE(c.count, 1);
+      }
+      EXPECT_NEAR(weights, 1, 1e-9) << smiles << " " << b.radical;
+      const auto again = combine(rows);
+      EXPECT_NEAR(again.value.value, b.d298->value, 1e-9) << smiles;
+      EXPECT_NEAR(again.value.u, b.d298->u, 1e-9) << smiles;
+      EXPECT_GE(b.d298->u * (1 + 1e-12), 1 / std::sqrt(precision));
+      // The weights shown are those of the combination.
+      double mean = 0;
+      for (const auto& c : b.contributions) mean += c.count * c.value.value;
+      EXPECT_NEAR(mean, b.d298->value, 1e-6) << smiles << " " << b.radical << ": the weights shown do not give the value shown";
+      ++compared;
+    }
+  }
+  EXPECT_GT(compared, 50);
+}
+
+TEST(Listed, HydrogensAndHalogensAreAllThere) {
+  for (const auto smiles : kSubstrates) {
+    const Molecule m = read(smiles);
+    int hydrogens = 0, halogens = 0;
+    for (int i = 0; i < m.atom_count(); ++i) {
+      hydrogens += m.atom(i).hydrogens;
+      halogens += m.atom(i).element == element::F || m.atom(i).element == element::Cl || m.atom(i).element == element::Br;
+    }
+    int counted = 0, carbon_halogen = 0;
+    for (const auto& b : bonds(smiles)) {
+      counted += b.h_count;
+      if (b.partner >= 0 && b.bond.starts_with("C-")) carbon_halogen += b.bond_count;
+      EXPECT_TRUE(b.d298 || b.why) << smiles;
+      if (b.h_count > 0) EXPECT_EQ(b.bond_count, b.h_count);
+      if (b.h_count > 0) EXPECT_EQ(static_cast<std::size_t>(b.h_count), b.atoms.size() * m.atom(b.atom).hydrogens) << smiles;
+    }
+    EXPECT_EQ(counted, hydrogens) << smiles;
+    EXPECT_EQ(carbon_halogen, halogens) << smiles;
+  }
+}
+
+TEST(Listed, EquivalentSitesAreOneAnswer) {
+  const struct {
+    const char* smiles;
+    std::vector<int> h_counts;
+  } cases[] = {{"CC(C)(C)C", {12}},       {"CC(C)C", {9, 1}},         {"CC(C)C(C)C", {12, 2}},       {"C1CCCCC1", {12}},
+               {"CCCCCC", {6, 4, 4}},     {"Cc1ccc(C)cc1", {6, 4}},   {"C1C2CC3CC1CC(C2)C3", {12, 4}}, {"CCOCC", {6, 4}},
+               {"CC(C)(C)CC(C)C", {9, 2, 1, 6}}};
+  for (const auto& c : cases) {
+    std::vector<int> found;
+    for (const auto& b : bonds(c.smiles)) found.push_back(b.h_count);
+    EXPECT_THAT(found, testing::UnorderedElementsAreArray(c.h_counts)) << c.smiles;
+  }
+  const auto chlorides = bonds("ClC(Cl)CCl");
+  EXPECT_EQ(find(chlorides, "C-Cl", "[CH](Cl)CCl").bond_count, 2);
+  EXPECT_EQ(find(chlorides, "C-Cl", "[CH2]C(Cl)Cl").bond_count, 1);
+}
+
+// C-X from the C-H of the parent and the exchange: within the spread of published values. Blanksby and Ellison 2003 for
+// C2H5-Cl 352, C2H5-Br 293; Luo 2007 for t-C4H9-Cl 352, benzyl-Br 256, allyl-Cl 298; from memory.
+TEST(Halides, TypedBondsAreNearPublishedOnes) {
+  const struct {
+    const char *smiles, *bond, *radical;
+    double d, tolerance;
+  } cases[] = {{"CCCl", "C-Cl", "C[CH2]", 352, 8},          {"CCBr", "C-Br", "C[CH2]", 293, 8},  {"CC(C)(C)Cl", "C-Cl", "C[C](C)C", 352, 10},
+               {"BrCc1ccccc1", "C-Br", "[CH2]c1ccccc1", 256, 15}, {"C=CCCl", "C-Cl", "[CH2]C=C", 298, 14}};
+  for (const auto& c : cases) {
+    const auto b = find(bonds(c.smiles, true), c.bond, c.radical);
+    ASSERT_TRUE(b.d298) << c.smiles;
+    EXPECT_NEAR(b.d298->value, c.d, c.tolerance) << c.smiles;
+    ASSERT_FALSE(b.contributions.empty());
+    EXPECT_THAT(b.contributions[0].name, HasSubstr("C-H of the parent"));
+  }
+}
+
+// The order of strength F > Cl > Br > I on one carbon is textbook knowledge and must hold on either route.
+TEST(Halides, WeakenFromFluorineToIodine) {
+  for (const auto* r : {"C", "CC", "CC(C)", "CC(C)(C)", "c1ccccc1", "C=CC", "CC(=O)"}) {
+    for (const bool typed : {false, true}) {
+      double last = 1e9;
+      for (const char* x : {"F", "Cl", "Br", "I"}) {
+        for (const auto& b : bonds(std::string(r) + x, typed)) {
+          if (b.bond != std::string("C-") + x) continue;
+          ASSERT_TRUE(b.d298) << r << x;
+          EXPECT_LT(b.d298->value, last - 20) << r << x;
+          last = b.d298->value;
+        }
+      }
+    }
+  }
+}
+
+TEST(Deuterium, IsRefusedWithItsOwnClass) {
+  const auto only = engine().bonds(read("[2H]C([2H])([2H])[2H]"));
+  ASSERT_FALSE(only.ok());
+  EXPECT_EQ(only.error().cls, ErrorClass::isotope);
+
+  const auto mixed = bonds("[2H]C(C)C");
+  int refused = 0;
+  for (const auto& b : mixed) {
+    if (b.bond != "C-D") {
+      EXPECT_TRUE(b.d298) << b.bond << " " << b.radical;
+      continue;
+    }
+    ++refused;
+    EXPECT_FALSE(b.d298);
+    ASSERT_TRUE(b.why);
+    EXPECT_EQ(b.why->cls, ErrorClass::isotope);
+    EXPECT_EQ(b.h_count, 0);
+    EXPECT_EQ(b.bond_count, 1);
+    EXPECT_EQ(b.radical, same_as("C[CH]C"));
+  }
+  EXPECT_EQ(refused, 1);
+  // A label does not change the C-H bonds beside it.
+  EXPECT_EQ(find(mixed, "C-H", "C[C]([2H])C").d298->value, find(bonds("CCC"), "C-H", "C[CH]C").d298->value);
+}
+
+TEST(Refusals, SayWhatIsNotCoveredAndAnswerTheRest) {
+  const auto all = bonds("CP(C)CC(C)C");
+  const auto& outside = find(all, "C-H", "[CH2]P(C)CC(C)C");
+  EXPECT_FALSE(outside.d298);
+  ASSERT_TRUE(outside.why);
+  EXPECT_EQ(outside.why->cls, ErrorClass::domain);
+  EXPECT_THAT(outside.why->message, HasSubstr("not covered by the typed model"));
+  EXPECT_TRUE(find(all, "C-H", "CP(C)CC(C)[CH2]").d298);
+
+  const auto nothing = engine().bonds(read("CP"));
+  ASSERT_FALSE(nothing.ok());
+  EXPECT_EQ(nothing.error().cls, ErrorClass::domain);
+  const auto no_bond = engine().bonds(read("N#N"));
+  ASSERT_FALSE(no_bond.ok());
+  EXPECT_THAT(no_bond.error().message, HasSubstr("no X-H"));
+}
+
+// Thin evidence is said, and does not come with a small u.
+TEST(Typed, ThinEvidenceIsMarked) {
+  for (const auto smiles : kSubstrates) {
+    for (const auto& b : bonds(smiles, true)) {
+      if (!b.d298 || b.h_count == 0) continue;
+      EXPECT_GT(b.d298->u, 1.0) << smiles << " " << b.radical;
+      EXPECT_LT(b.d298->u, 18.0001) << "the limit of docs/model.md";
+      for (const auto& c : b.contributions) EXPECT_TRUE(b.extrapolated || c.support >= 2) << smiles << " " << c.name;
+    }
+  }
+}
+
+TEST(Typed, TheOrderOfAtomsSaysNothing) {
+  const std::pair<const char*, const char*> pairs[] = {{"CC(C)CCO", "OCCC(C)C"}, {"Cc1ccccc1Cl", "Clc1ccccc1C"}, {"C1CC2CCC1C2", "C1C2CCC1CC2"}};
+  for (const auto& [a, b] : pairs) {
+    for (const bool typed : {false, true}) {
+      const auto p = bonds(a, typed), q = bonds(b, typed);
+      ASSERT_EQ(p.size(), q.size());
+      for (const auto& x : p) {
+        const auto& y = find(q, x.bond, x.radical);
+        ASSERT_EQ(x.d298.has_value(), y.d298.has_value());
+        if (x.d298) EXPECT_NEAR(x.d298->value, y.d298->value, 1e-9) << a << " " << x.radical;
+        EXPECT_EQ(x.bond_count, y.bond_count) << a << " " << x.radical;
+      }
+    }
+  }
+}
+
+// An engine over a table without rows answers with refusals, not with numbers.
+TEST(EmptyTable, RefusesAll) {
+  const auto e = Engine::from_table({});
+  ASSERT_TRUE(e.ok());
+  const auto b = e.value().bonds(read("CC"));
+  ASSERT_FALSE(b.ok());
+  EXPECT_EQ(b.error().cls, ErrorClass::domain);
+  EXPECT_THAT(b.error().message, HasSubstr("no fitted bond model"));
+  EXPECT_FALSE(e.value().outcome(read("CC"), kAllHalogens, 298.15).ok());
+  EXPECT_FALSE(e.value().reaction("[Cl].C>>Cl.[CH3]", 298.15).ok());
+}
+
+}  // namespace
+}  // namespace halostep

@@ -1,0 +1,299 @@
+// The rate model: its derivatives, its limits, and what it reads off a structure.
+#include <gtest/gtest.h>
+
+#include <array>
+#include <cmath>
+#include <random>
+#include <set>
+
+#include "bonds/locate.hpp"
+#include "engine_shared.hpp"
+#include "kinetics/rates.hpp"
+
+namespace halostep {
+namespace {
+
+using Parameters = std::vector<double>;
+
+Parameters random_parameters(std::mt19937& random) {
+  const auto between = [&](double lo, double hi) { return std::uniform_real_distribution<double>(lo, hi)(random); };
+  Parameters p(kp::total);
+  for (auto& v : p) v = between(-2, 6);
+  p[kp::ln_a] = between(-26, -22);
+  p[kp::tightness] = between(0, 5);
+  p[kp::exponent] = between(-1, 1);
+  p[kp::width] = between(1, 20);
+  p[kp::decay] = between(0.2, 0.7);
+  p[kp::ln_limit] = between(-23, -21);
+  p[kp::limit_power] = between(0.2, 0.7);
+  return p;
+}
+
+RateSite random_site(std::mt19937& random) {
+  RateSite s;
+  s.a_class = static_cast<AClass>(random() % static_cast<unsigned>(kAClasses));
+  s.carbons = static_cast<int>(random() % 4);
+  for (auto& group : s.count) {
+    for (auto& n : group) n = random() % 4 == 0 ? static_cast<std::uint8_t>(1 + random() % 3) : std::uint8_t{0};
+  }
+  return s;
+}
+
+// Closed-form derivatives against central differences.
+TEST(RateGradient, EqualsNumericalDifferences) {
+  std::mt19937 random(11);
+  std::uniform_real_distribution<double> enthalpy(-160, 160), temperature(200, 900);
+  for (int round = 0; round < 200; ++round) {
+    const auto p = random_parameters(random);
+    const auto s = random_site(random);
+    const KineticForm form{round % 2 == 1};
+    const double dh = enthalpy(random), t = temperature(random);
+    const auto at = site_rate(p, form, s, dh, t);
+    const auto g = rate_gradient(p, form, s, at, t);
+    std::vector<double> found(kp::total, 0.0);
+    for (const auto& part : g.parameters) found[static_cast<std::size_t>(part.parameter)] += part.value;
+    for (std::size_t i = 0; i < found.size(); ++i) {
+      const double h = 1e-5 * std::max(1.0, std::abs(p[i]));
+      auto up = p, down = p;
+      up[i] += h;
+      down[i] -= h;
+      const double expected = (site_rate(up, form, s, dh, t).ln_k - site_rate(down, form, s, dh, t).ln_k) / (2 * h);
+      ASSERT_NEAR(found[i], expected, 1e-6 * (1 + std::abs(expected))) << kinetic_parameter_names()[i] << ", round " << round;
+    }
+    const double h = 1e-4;
+    const double expected = (site_rate(p, form, s, dh + h, t).ln_k - site_rate(p, form, s, dh - h, t).ln_k) / (2 * h);
+    ASSERT_NEAR(g.dh, expected, 1e-6 * (1 + std::abs(expected))) << "step enthalpy, round " << round;
+  }
+}
+
+// A bare site: no polar groups, no shifts, no tightness, so that only the bent form is left.
+Parameters bare(double width) {
+  Parameters p(kp::total, 0.0);
+  p[kp::ln_a] = std::log(1e-10);
+  p[kp::width] = width;
+  p[kp::decay] = 0.5;
+  return p;
+}
+
+// The hyperbola has the limits that thermochemistry demands: 0 far downhill, the step enthalpy far uphill (the reverse
+// then has no barrier); half way and symmetric at thermoneutral (Hammond, J. Am. Chem. Soc. 1955, 77, 334; Marcus, J.
+// Phys. Chem. 1968, 72, 891).
+TEST(SiteRate, LimitsOfTheBentForm) {
+  for (const double width : {2.0, 5.0, 16.0}) {
+    const auto p = bare(width);
+    const auto at = [&](double dh) { return site_rate(p, {}, {}, dh, 300); };
+    EXPECT_NEAR(at(0).barrier, width, 1e-12);
+    EXPECT_NEAR(at(0).position, 0.5, 1e-12);
+    EXPECT_NEAR(at(5000).barrier - 5000, width * width / 5000, 1e-5) << "strongly endothermic: the step enthalpy";
+    EXPECT_NEAR(at(5000).position, 1, 1e-4);
+    EXPECT_NEAR(at(-5000).barrier, width * width / 5000, 1e-5) << "strongly exothermic: none";
+    EXPECT_NEAR(at(-5000).position, 0, 1e-4);
+    double last_barrier = 0, last_position = 0;
+    for (double dh = -200; dh <= 200; dh += 5) {
+      const auto r = at(dh);
+      EXPECT_GE(r.barrier, std::max(0.0, dh));
+      EXPECT_GT(r.barrier, last_barrier) << "rises";
+      EXPECT_GT(r.position, last_position) << "bends upward";
+      EXPECT_LT(r.position, 1);
+      EXPECT_NEAR(r.barrier - at(-dh).barrier, dh, 1e-9) << "forward less reverse is the step enthalpy";
+      EXPECT_NEAR(r.position + at(-dh).position, 1, 1e-12);
+      EXPECT_NEAR(r.position, (at(dh + 1e-4).barrier - at(dh - 1e-4).barrier) / 2e-4, 1e-6) << "slope of the barrier";
+      last_barrier = r.barrier;
+      last_position = r.position;
+    }
+  }
+}
+
+TEST(SiteRate, ArrheniusPartsMakeTheRate) {
+  std::mt19937 random(3);
+  for (int round = 0; round < 50; ++round) {
+    const auto p = random_parameters(random);
+    const auto s = random_site(random);
+    const KineticForm form{round % 2 == 1};
+    const double dh = std::uniform_real_distribution<double>(-150, 150)(random), t = 350;
+    const auto r = site_rate(p, form, s, dh, t);
+    EXPECT_NEAR(r.ln_k, r.ln_a - r.barrier / (kGasConstant * t), 1e-12);
+    // R T^2 d ln k / dT: the threshold plus n R T, and so below zero where both are small and n < 0. No clamp.
+    const double h = 0.01;
+    const double ea = kGasConstant * t * t * (site_rate(p, form, s, dh, t + h).ln_k - site_rate(p, form, s, dh, t - h).ln_k) / (2 * h);
+    EXPECT_NEAR(ea, r.barrier + p[kp::exponent] * kGasConstant * t, 1e-4);
+  }
+}
+
+// An electrophilic atom is slowed by an electron-withdrawing group, less so from further away (R. W. Taft, in Steric
+// Effects in Organic Chemistry, 1956: a factor of about 0.4 per carbon).
+TEST(SiteRate, PolarGroupsSlowAndFadeWithDistance) {
+  for (const bool outside : {false, true}) {
+    auto p = bare(4);
+    for (int g = 0; g < kPolarGroups; ++g) {
+      p[static_cast<std::size_t>(kp::polar_alpha + g)] = 4;
+      p[static_cast<std::size_t>(kp::polar_beyond + g)] = 6;
+    }
+    const KineticForm form{outside};
+    for (std::size_t g = 0; g < static_cast<std::size_t>(kPolarGroups); ++g) {
+      const double plain = site_rate(p, form, {}, -20, 298).ln_k;
+      double last = -1e9;
+      for (std::size_t d = 1; d < static_cast<std::size_t>(kPolarReach); ++d) {
+        RateSite s;
+        s.count[g][d] = 1;
+        EXPECT_NEAR(polar_energy(p, s), 6 * std::pow(0.5, static_cast<double>(d) - 1), 1e-12);
+        const double slowed = site_rate(p, form, s, -20, 298).ln_k;
+        EXPECT_LT(slowed, plain) << polar_group_name(static_cast<PolarGroup>(g));
+        EXPECT_GT(slowed, last) << "less from further away";
+        last = slowed;
+      }
+      RateSite two;
+      two.count[g][0] = 2;
+      EXPECT_NEAR(polar_energy(p, two), 8, 1e-12);
+    }
+  }
+}
+
+// Where the polar energy stands outside, it adds to the barrier as a whole and leaves the position alone.
+TEST(SiteRate, PolarEnergyOutsideTheBend) {
+  auto p = bare(10);
+  p[kp::polar_alpha] = 5;
+  RateSite s;
+  s.count[0][0] = 1;
+  const auto with = site_rate(p, {true}, s, -40, 298), without = site_rate(p, {true}, {}, -40, 298);
+  EXPECT_NEAR(with.barrier - without.barrier, 5, 1e-12);
+  EXPECT_EQ(with.position, without.position);
+  const auto inside = site_rate(p, {false}, s, -40, 298);
+  EXPECT_GT(inside.position, without.position);
+  EXPECT_LT(inside.barrier - without.barrier, 5) << "only its share at the transition state";
+}
+
+TEST(EncounterLimit, GrowsWithTheMoleculeAndCapsTheSum) {
+  Parameters p(kp::total, 0.0);
+  p[kp::ln_limit] = std::log(2e-10);
+  p[kp::limit_power] = 0.5;
+  EXPECT_NEAR(encounter_limit(p, 1) / 2e-10, 1, 1e-12);
+  EXPECT_NEAR(encounter_limit(p, 4) / 4e-10, 1, 1e-12);
+  EXPECT_NEAR(limited_total(1e-14, 4e-10) / 1e-14, 1, 1e-12) << "far below: untouched";
+  EXPECT_NEAR(limited_total(1e-5, 4e-10) / 4e-10, 1, 1e-12) << "far above: the limit";
+  EXPECT_NEAR(limited_total(4e-10, 4e-10) / 4e-10, std::pow(2.0, -1.0 / 3), 1e-12);
+  double last = 0;
+  for (double k = 1e-13; k < 1e-7; k *= 1.3) {
+    const double k_limited = limited_total(k, 4e-10);
+    EXPECT_GT(k_limited, last);
+    EXPECT_LT(k_limited, std::min(k, 4e-10));
+    EXPECT_NEAR(std::pow(k_limited, -3) / (std::pow(k, -3) + std::pow(4e-10, -3)), 1, 1e-9) << "power -3 means add";
+    last = k_limited;
+  }
+}
+
+TEST(RateSiteOf, ClassOfTheCarbon) {
+  const struct {
+    const char* smiles;
+    int atom;
+    AClass a_class;
+    bool covered;
+  } cases[] = {{"CC(C)C", 1, AClass::alkyl, true},          {"Cc1ccccc1", 0, AClass::benzylic, true},
+               {"CC=C", 0, AClass::allylic, true},          {"CC#C", 0, AClass::allylic, true},
+               {"C1CCOC1", 2, AClass::alpha_oxygen, true},  {"C1CCOC1", 1, AClass::alkyl, true},
+               {"CC(=O)OC", 4, AClass::alkyl, true},        {"CC=O", 1, AClass::acyl, true},
+               {"O=COC", 1, AClass::formate, true},         {"O=CN(C)C", 1, AClass::formate, true},
+               {"CN(C)C", 0, AClass::alpha_hetero, true},   {"CSC", 0, AClass::alpha_hetero, true},
+               {"C1CC1", 0, AClass::cyclopropyl, true},     {"C=C", 0, AClass::unsaturated, false},
+               {"c1ccccc1", 0, AClass::unsaturated, false}, {"C#C", 0, AClass::unsaturated, false},
+               {"OCc1ccccc1", 1, AClass::benzylic, true}};
+  for (const auto& c : cases) {
+    const Molecule m = read(c.smiles);
+    const auto s = rate_site(m, environment(m), c.atom);
+    EXPECT_STREQ(a_class_name(s.a_class), a_class_name(c.a_class)) << c.smiles << " atom " << c.atom;
+    EXPECT_EQ(s.covered, c.covered) << c.smiles;
+  }
+}
+
+TEST(RateSiteOf, PolarGroupsByDistance) {
+  using P = PolarGroup;
+  const struct {
+    const char* smiles;
+    int atom;
+    P group;
+    std::array<int, kPolarReach> count;
+  } cases[] = {{"ClCCl", 1, P::chlorine, {2}},
+               {"CCCl", 0, P::chlorine, {0, 1}},
+               {"CCCCCl", 0, P::chlorine, {0, 0, 0, 1}},
+               {"CC(F)(F)F", 0, P::fluorine, {0, 3}},
+               {"CC(C)=O", 0, P::carbonyl, {1}},
+               {"CC(C)=O", 0, P::oxygen, {}},
+               {"CC(=O)OC", 0, P::carboxyl, {1}},
+               {"CC(=O)OC", 4, P::oxygen_acyl, {1}},
+               {"CC(=O)Cl", 0, P::carbonyl_halide, {1}},
+               {"CC#N", 0, P::cyano, {1}},
+               {"C[N+](=O)[O-]", 0, P::nitro, {1}},
+               {"CO[N+](=O)[O-]", 0, P::nitrate, {1}},
+               {"CO[N+](=O)[O-]", 0, P::nitro, {}},
+               {"CCc1ccccc1", 0, P::aryl, {0, 1}},
+               {"CCC=C", 0, P::unsaturated, {0, 1}},
+               {"COC", 0, P::oxygen, {1}},
+               {"CN(C)C", 0, P::nitrogen, {1}},
+               {"CSC", 0, P::sulfur, {1}}};
+  for (const auto& c : cases) {
+    const Molecule m = read(c.smiles);
+    const auto s = rate_site(m, environment(m), c.atom);
+    for (std::size_t d = 0; d < c.count.size(); ++d) {
+      EXPECT_EQ(s.count[static_cast<std::size_t>(c.group)][d], c.count[d])
+          << c.smiles << ": " << polar_group_name(c.group) << " at " << d + 1;
+    }
+  }
+}
+
+// Seen alike from every equivalent atom, however the structure is written.
+TEST(RateSiteOf, EquivalentAtomsAlike) {
+  for (const auto smiles : kSubstrates) {
+    const Molecule m = read(smiles);
+    const auto info = environment(m);
+    for (const auto& site : hydrogen_sites(m, symmetry_classes(m))) {
+      const auto first = rate_site(m, info, site.atom);
+      for (const int atom : site.atoms) {
+        const auto other = rate_site(m, info, atom);
+        EXPECT_EQ(first.a_class, other.a_class) << smiles;
+        EXPECT_EQ(first.carbons, other.carbons) << smiles;
+        EXPECT_EQ(first.count, other.count) << smiles;
+      }
+    }
+  }
+}
+
+TEST(RateSiteOf, PlainAlkylSitesScatterLess) {
+  const auto share = [](const char* smiles, int atom) {
+    const Molecule m = read(smiles);
+    return scatter_share(rate_site(m, environment(m), atom));
+  };
+  EXPECT_LT(share("CC(C)C", 1), 1);
+  EXPECT_LT(share("C1CC1", 0), 1);
+  EXPECT_EQ(share("CCCl", 0), 1);
+  EXPECT_EQ(share("Cc1ccccc1", 0), 1);
+}
+
+// The models in the table: all four atoms, each parameter named, covariances symmetric without negative variances.
+TEST(RateBook, ReadsAllFourCarriers) {
+  const RateBook book(engine().table());
+  const auto names = kinetic_parameter_names();
+  EXPECT_EQ(std::set<std::string>(names.begin(), names.end()).size(), static_cast<std::size_t>(kp::total));
+  for (int x = 0; x < 4; ++x) {
+    const auto* m = book.carrier(x);
+    ASSERT_NE(m, nullptr);
+    ASSERT_EQ(m->p.size(), names.size());
+    const std::size_t n = m->p.size();
+    for (std::size_t i = 0; i < n; ++i) {
+      EXPECT_GE(m->covariance[i * n + i], 0) << names[i];
+      for (std::size_t k = 0; k < i; ++k) {
+        const double scale = std::sqrt(m->covariance[i * n + i] * m->covariance[k * n + k]);
+        EXPECT_NEAR(m->covariance[i * n + k], m->covariance[k * n + i], 1e-9 * scale + 1e-15);
+        EXPECT_LE(std::abs(m->covariance[i * n + k]), scale * (1 + 1e-6) + 1e-15);
+      }
+    }
+    EXPECT_GT(m->p[kp::width], 0);
+    EXPECT_GT(m->p[kp::decay], 0);
+    EXPECT_LT(m->p[kp::decay], 1);
+    EXPECT_LT(m->t_low, m->t_high);
+  }
+  const RateBook empty(Table{});
+  for (int x = 0; x < 4; ++x) EXPECT_EQ(empty.carrier(x), nullptr);
+}
+
+}  // namespace
+}  // namespace halostep
