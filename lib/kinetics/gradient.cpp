@@ -26,12 +26,12 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
     out.push_back({kp::a_class + c - 1, 1.0});
     out.push_back({kp::shift_class + c - 1, slope});
   }
-  const double limit = par(kp::saturation), share = group_sum(p, s) / limit, left = std::exp(-share);
-  const double group = polar * left;
+  const auto parts = polar_parts(p, s);
+  const double limit = par(kp::saturation), q = parts.sum / limit, group = polar * parts.left;
   double by_decay = 0;
   for (int k = 0; k < kPolarGroups; ++k) {
     const auto& n = s.count[static_cast<std::size_t>(k)];
-    if (n[0]) out.push_back({kp::polar_alpha + k, (conjugates(k) ? polar : group) * n[0]});
+    if (n[0]) out.push_back({kp::polar_alpha + k, (conjugates(k) ? polar : group) * parts.screen * n[0]});
     double field = 0, derivative = 0, factor = 1, below = 0;
     for (std::size_t d = 1; d < n.size(); ++d) {
       field += n[d] * factor;
@@ -40,11 +40,16 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
       factor *= par(kp::decay);
     }
     if (field == 0) continue;
-    out.push_back({kp::polar_beyond + k, group * field});
+    out.push_back({kp::polar_beyond + k, group * parts.screen_beyond * field});
     by_decay += par(kp::polar_beyond + k) * derivative;
   }
-  if (by_decay != 0) out.push_back({kp::decay, group * by_decay});
-  if (share != 0) out.push_back({kp::saturation, polar * (1 - left * (1 + share))});
+  if (by_decay != 0) out.push_back({kp::decay, group * parts.screen_beyond * by_decay});
+  if (q != 0) out.push_back({kp::saturation, polar * (1 - parts.left * (1 + q))});
+  if (parts.alkyls > 0) {
+    const double per_alpha = parts.alkyls * parts.screen / par(kp::screen);
+    const double per_beyond = (parts.alkyls - 1) * parts.screen_beyond / par(kp::screen);
+    out.push_back({kp::screen, polar * per_alpha * parts.conjugating + group * (per_alpha * parts.alpha + per_beyond * parts.beyond)});
+  }
   return g;
 }
 

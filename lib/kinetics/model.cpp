@@ -1,5 +1,6 @@
 #include "model.hpp"
 
+#include <algorithm>
 #include <cmath>
 
 #include "halostep/quantity.hpp"
@@ -28,6 +29,7 @@ std::vector<std::string> kinetic_parameter_names() {
   set(kp::ln_limit, "ln encounter limit");
   set(kp::limit_power, "encounter limit, power of heavy atoms");
   set(kp::saturation, "polar saturation");
+  set(kp::screen, "polar, factor per alkyl on the centre");
   return n;
 }
 
@@ -39,26 +41,34 @@ bool conjugates(int group) noexcept {
   }
 }
 
-double group_sum(std::span<const double> p, const RateSite& s) {
+PolarParts polar_parts(std::span<const double> p, const RateSite& s) {
   const auto at = [&](int i) { return p[static_cast<std::size_t>(i)]; };
-  double sum = 0;
+  PolarParts parts;
+  int conjugating = 0;
   for (int g = 0; g < kPolarGroups; ++g) {
     const auto& n = s.count[static_cast<std::size_t>(g)];
-    if (!conjugates(g)) sum += at(kp::polar_alpha + g) * n[0];
+    if (conjugates(g)) {
+      conjugating += g == static_cast<int>(PolarGroup::nitro) ? 0 : n[0];
+      parts.conjugating += at(kp::polar_alpha + g) * n[0];
+    } else {
+      parts.alpha += at(kp::polar_alpha + g) * n[0];
+    }
     double field = 0, factor = 1;
     for (std::size_t d = 1; d < n.size(); ++d, factor *= at(kp::decay)) field += n[d] * factor;
-    sum += at(kp::polar_beyond + g) * field;
+    parts.beyond += at(kp::polar_beyond + g) * field;
   }
-  return sum;
+  parts.alkyls = std::max(0, s.carbons - conjugating);
+  parts.screen = std::pow(at(kp::screen), parts.alkyls);
+  parts.screen_beyond = parts.alkyls > 0 ? parts.screen / at(kp::screen) : 1.0;
+  const double sum = parts.screen * parts.alpha + parts.screen_beyond * parts.beyond;
+  parts.left = std::exp(-sum / at(kp::saturation));
+  parts.sum = sum;
+  return parts;
 }
 
 double polar_energy(std::span<const double> p, const RateSite& s) {
-  const double limit = p[kp::saturation];
-  double sum = p[kp::alkyl] * s.carbons - limit * std::expm1(-group_sum(p, s) / limit);
-  for (int g = 0; g < kPolarGroups; ++g) {
-    if (conjugates(g)) sum += p[static_cast<std::size_t>(kp::polar_alpha + g)] * s.count[static_cast<std::size_t>(g)][0];
-  }
-  return sum;
+  const auto parts = polar_parts(p, s);
+  return p[kp::alkyl] * s.carbons + parts.screen * parts.conjugating + p[kp::saturation] * (1 - parts.left);
 }
 
 SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature) {

@@ -24,7 +24,8 @@ inline constexpr int decay = polar_beyond + kPolarGroups; // factor per further 
 inline constexpr int ln_limit = decay + 1;                // ln of the encounter limit at one heavy atom
 inline constexpr int limit_power = ln_limit + 1;          // its growth with the number of heavy atoms
 inline constexpr int saturation = limit_power + 1;         // kJ/mol, what the groups' sum cannot exceed
-inline constexpr int total = saturation + 1;
+inline constexpr int screen = saturation + 1;             // factor on polar groups per alkyl group on the centre
+inline constexpr int total = screen + 1;
 }  // namespace kp
 
 /// Names of the parameters, in order.
@@ -47,10 +48,17 @@ struct KineticForm {
 /// Groups whose pi system takes the odd electron: at an early transition state the bond is weaker than the attack
 /// feels, so on the centre they add their own constant, outside the saturating sum.
 bool conjugates(int group) noexcept;
-/// Sum of the other groups' polar energies at a site before saturation, kJ/mol.
-double group_sum(std::span<const double> p, const RateSite& s);
-/// Polar energy of a site, kJ/mol: alkyl and conjugating groups, and the sum g of all others as S (1 - exp(-g/S)), since
-/// each further group finds the centre already poorer in electrons.
+/// Polar energies of the groups around a site, kJ/mol, and the factors that act on them.
+struct PolarParts {
+  double alpha = 0, conjugating = 0, beyond = 0;  // on the centre; conjugating on the centre; further away
+  double screen = 1, screen_beyond = 1;           // alkyl groups on the centre screen it
+  double sum = 0;                                 // screened alpha and beyond
+  double left = 1;                                // exp(-sum/S): what a further group still counts
+  int alkyls = 0;                                 // carbons on the centre that do not conjugate
+};
+PolarParts polar_parts(std::span<const double> p, const RateSite& s);
+/// Polar energy of a site, kJ/mol: alkyl groups, conjugating groups, and the sum g of all others as S (1 - exp(-g/S)),
+/// since each further group finds the centre already poorer in electrons.
 double polar_energy(std::span<const double> p, const RateSite& s);
 SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature);
 /// Encounter limit for a molecule with that many heavy atoms, cm3 molecule-1 s-1.

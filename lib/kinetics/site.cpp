@@ -5,7 +5,7 @@
 namespace halostep {
 namespace {
 
-constexpr double kPlainShare = 0.08;
+constexpr double kPlainShare = 0.08, kSharePerGroup = 0.25, kMostShare = 2.0;
 
 constexpr std::array<const char*, kAClasses> kClassNames = {"alkyl",   "alpha-O", "alpha-N/S", "benzylic", "allylic",
                                                             "acyl",    "formate", "cyclopropyl", "unsaturated"};
@@ -83,11 +83,12 @@ const char* a_class_name(AClass c) noexcept { return kClassNames[static_cast<std
 const char* polar_group_name(PolarGroup g) noexcept { return kGroupNames[static_cast<std::size_t>(g)]; }
 
 double scatter_share(const RateSite& s) noexcept {
-  if (s.a_class != AClass::alkyl && s.a_class != AClass::cyclopropyl) return 1.0;
+  int groups = 0;
   for (const auto& g : s.count) {
-    if (std::any_of(g.begin(), g.end(), [](int n) { return n > 0; })) return 1.0;
+    for (const int n : g) groups += n;
   }
-  return kPlainShare;
+  const bool plain = groups == 0 && (s.a_class == AClass::alkyl || s.a_class == AClass::cyclopropyl);
+  return plain ? kPlainShare : std::min(kMostShare, kSharePerGroup * (groups + 1));
 }
 
 RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int atom) {

@@ -33,8 +33,8 @@ struct RateSite {
   std::array<std::array<std::uint8_t, kPolarReach>, kPolarGroups> count{};
 };
 
-/// Share of the rate model's scatter that a site sees: hydrocarbon sites without pi systems scatter far less than
-/// those beside polar or conjugating groups.
+/// Share of the rate model's scatter that a site sees: alkane sites scatter little, others the more the more groups
+/// act on them.
 double scatter_share(const RateSite& s) noexcept;
 
 RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int atom);

@@ -32,15 +32,14 @@ std::vector<int> heavy_classes(const Molecule& m) {
 
 std::string answer(const Engine& engine, const Molecule& m) {
   const auto bonds = engine.bonds(m, {.typed = false, .details = false});
-  return bonds.ok() ? "answered" : fmt::format("refused {}", error_class_name(bonds.error().cls));
+  return bonds.ok() ? "\tanswered" : fmt::format("\trefused {}", error_class_name(bonds.error().cls));
 }
 
 std::string record(const std::string& line, const std::optional<Engine>& engine) {
   const auto m = parse_smiles(line);
   if (!m.ok()) return fmt::format("refused\t{}", error_class_name(m.error().cls));
-  auto text = fmt::format("ok\t{}\t{}", fmt::join(heavy_classes(m.value()), " "), canonical_smiles(m.value(), false));
-  if (engine) text += "\t" + answer(*engine, m.value());
-  return text;
+  return fmt::format("ok\t{}\t{}{}", fmt::join(heavy_classes(m.value()), " "), canonical_smiles(m.value(), false),
+                     engine ? answer(*engine, m.value()) : "");
 }
 
 }  // namespace

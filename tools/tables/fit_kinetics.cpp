@@ -206,7 +206,8 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
   set(kp::decay, 0.45, 0.03);
   set(kp::ln_limit, std::log(2e-10), 0.5);
   set(kp::limit_power, 0.45, 0.15);
-  set(kp::saturation, cl ? (*cl)[kp::saturation] : 40.0, cl ? 5.0 : 15.0);
+  set(kp::saturation, cl ? (*cl)[kp::saturation] : 20.0, cl ? 3.0 : 3.0);
+  set(kp::screen, cl ? (*cl)[kp::screen] : 0.6, cl ? 0.1 : 0.2);
   for (int c = 1; c < kAClasses; ++c) {
     set(kp::a_class + c - 1, 0.0, 0.7);
     set(kp::shift_class + c - 1, 0.0, 4.0);
@@ -238,7 +239,7 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
       set(kp::exponent, -0.5, 0.3);
       set(kp::shift, 10.0, 3.0);
       set(kp::width, 4.0, 1.0);
-      set(kp::alkyl, 0.0, 0.15);
+      set(kp::alkyl, 0.0, 0.25);
       break;
     default:
       set(kp::ln_a, std::log(6e-11), 1.0);
