@@ -44,6 +44,20 @@ double match_scatter(const NonlinearProblem& p, const Eigen::VectorXd& r, const 
   return 0.5 * (lo + hi);
 }
 
+// Scatter for predictions: such that 95 % of the rows lie within 2 u of the model.
+double predictive_scatter(const NonlinearProblem& p, const Eigen::VectorXd& r, double fitted) {
+  const auto within = [&](double s) {
+    return static_cast<double>((r.array().abs() <= 2 * variances(p, s).array().sqrt()).count()) / static_cast<double>(r.size());
+  };
+  double lo = fitted, hi = 10.0 + fitted;
+  if (within(lo) >= 0.95) return lo;
+  for (int i = 0; i < 50; ++i) {
+    const double mid = 0.5 * (lo + hi);
+    (within(mid) < 0.95 ? lo : hi) = mid;
+  }
+  return hi;
+}
+
 }  // namespace
 
 Result<NonlinearSolution> solve_nonlinear(const NonlinearProblem& p) {
@@ -106,6 +120,7 @@ Result<NonlinearSolution> solve_nonlinear(const NonlinearProblem& p) {
       out.weight[i] = t <= kHuber ? 1.0 : kHuber / t;
     }
   }
+  out.scatter = predictive_scatter(p, p.residual(out.b), out.scatter);
   return out;
 }
 

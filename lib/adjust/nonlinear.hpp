@@ -20,7 +20,7 @@ struct NonlinearProblem {
 struct NonlinearSolution {
   Eigen::VectorXd b;
   Eigen::MatrixXd covariance;
-  double scatter = 0;           // model scatter, unit of the residuals
+  double scatter = 0;           // model scatter, unit of the residuals: covers 95 % of the rows with 2 u
   double effective = 0;
   Eigen::VectorXd weight;       // robust weights
   int iterations = 0;

@@ -45,6 +45,7 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
   }
   if (by_decay != 0) out.push_back({kp::decay, group * parts.screen_beyond * by_decay});
   if (q != 0) out.push_back({kp::saturation, polar * (1 - parts.left * (1 + q))});
+  if (parts.alkyls == 0) out.push_back({kp::bare, polar});
   if (parts.alkyls > 0) {
     const double per_alpha = parts.alkyls * parts.screen / par(kp::screen);
     const double per_beyond = (parts.alkyls - 1) * parts.screen_beyond / par(kp::screen);

@@ -29,6 +29,7 @@ std::vector<std::string> kinetic_parameter_names() {
   set(kp::ln_limit, "ln encounter limit");
   set(kp::limit_power, "encounter limit, power of heavy atoms");
   set(kp::saturation, "polar saturation");
+  set(kp::bare, "polar, no alkyl on the centre");
   set(kp::screen, "polar, factor per alkyl on the centre");
   return n;
 }
@@ -68,7 +69,7 @@ PolarParts polar_parts(std::span<const double> p, const RateSite& s) {
 
 double polar_energy(std::span<const double> p, const RateSite& s) {
   const auto parts = polar_parts(p, s);
-  return p[kp::alkyl] * s.carbons + parts.screen * parts.conjugating + p[kp::saturation] * (1 - parts.left);
+  return p[kp::alkyl] * s.carbons + (parts.alkyls == 0 ? p[kp::bare] : 0.0) + parts.screen * parts.conjugating + p[kp::saturation] * (1 - parts.left);
 }
 
 SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature) {

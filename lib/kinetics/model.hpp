@@ -25,7 +25,8 @@ inline constexpr int ln_limit = decay + 1;                // ln of the encounter
 inline constexpr int limit_power = ln_limit + 1;          // its growth with the number of heavy atoms
 inline constexpr int saturation = limit_power + 1;         // kJ/mol, what the groups' sum cannot exceed
 inline constexpr int screen = saturation + 1;             // factor on polar groups per alkyl group on the centre
-inline constexpr int total = screen + 1;
+inline constexpr int bare = screen + 1;                   // kJ/mol, no alkyl group on the centre (CH4, CH3-X)
+inline constexpr int total = bare + 1;
 }  // namespace kp
 
 /// Names of the parameters, in order.
@@ -57,7 +58,7 @@ struct PolarParts {
   int alkyls = 0;                                 // carbons on the centre that do not conjugate
 };
 PolarParts polar_parts(std::span<const double> p, const RateSite& s);
-/// Polar energy of a site, kJ/mol: alkyl groups, conjugating groups, and the sum g of all others as S (1 - exp(-g/S)),
+/// Polar energy of a site, kJ/mol: alkyl groups or their absence, conjugating groups, and the sum g of all others as S (1 - exp(-g/S)),
 /// since each further group finds the centre already poorer in electrons.
 double polar_energy(std::span<const double> p, const RateSite& s);
 SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature);

@@ -5,7 +5,7 @@
 namespace halostep {
 namespace {
 
-constexpr double kPlainShare = 0.08, kSharePerGroup = 0.25, kMostShare = 2.0;
+constexpr double kPlainShare = 0.06, kShare = 0.4, kSharePerGroup = 0.15, kMostShare = 2.0;
 
 constexpr std::array<const char*, kAClasses> kClassNames = {"alkyl",   "alpha-O", "alpha-N/S", "benzylic", "allylic",
                                                             "acyl",    "formate", "cyclopropyl", "unsaturated"};
@@ -88,7 +88,7 @@ double scatter_share(const RateSite& s) noexcept {
     for (const int n : g) groups += n;
   }
   const bool plain = groups == 0 && (s.a_class == AClass::alkyl || s.a_class == AClass::cyclopropyl);
-  return plain ? kPlainShare : std::min(kMostShare, kSharePerGroup * (groups + 1));
+  return plain ? kPlainShare : std::min(kMostShare, kShare + kSharePerGroup * groups);
 }
 
 RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int atom) {

@@ -5,6 +5,7 @@
 #include <openbabel/generic.h>
 #include <openbabel/mol.h>
 #include <openbabel/obiter.h>
+#include <openbabel/ring.h>
 #include <openbabel/stereo/cistrans.h>
 #include <openbabel/stereo/stereo.h>
 #include <openbabel/stereo/tetrahedral.h>
@@ -40,6 +41,13 @@ int unpaired_electrons(const Atom& a, int valence) {
   return 0;
 }
 
+// In rings of fewer than eight members cis is all there is, so a double bond there takes no descriptor
+// (IUPAC Recommendations 2013, P-93.5.1.4; from memory).
+bool small_ring(OBBond& bond) {
+  const auto* ring = bond.IsInRing() ? bond.FindSmallestRing() : nullptr;
+  return ring != nullptr && ring->Size() < 8;
+}
+
 void read_stereo(OpenBabel::OBMol& mol, const std::vector<int>& to, const std::vector<Bond>& bonds,
                  std::vector<TetrahedralStereo>& tetrahedral, std::vector<DoubleBondStereo>& doubles) {
   const auto atom_of = [&](unsigned long id) {
@@ -63,6 +71,9 @@ void read_stereo(OpenBabel::OBMol& mol, const std::vector<int>& to, const std::v
       auto* cs = static_cast<OpenBabel::OBCisTransStereo*>(d);
       const auto c = cs->GetConfig(OBStereo::ShapeU);
       if (!cs->IsValid() || !c.specified || c.refs.size() != 4) continue;
+      auto *begin = mol.GetAtomById(c.begin), *end = mol.GetAtomById(c.end);
+      auto* bond = begin == nullptr || end == nullptr ? nullptr : mol.GetBond(begin, end);
+      if (bond == nullptr || small_ring(*bond)) continue;
       // ShapeU: refs run begin, begin, end, end around the bond, so 0 and 3 lie on one side, 1 and 2 on the other.
       const int a = atom_of(c.begin), b = atom_of(c.end);
       const int ra[2] = {atom_of(c.refs[0]), atom_of(c.refs[1])}, rb[2] = {atom_of(c.refs[3]), atom_of(c.refs[2])};
@@ -103,9 +114,28 @@ bool nonmetal(int z) {
   return std::find(std::begin(kKnown), std::end(kKnown), z) != std::end(kKnown);
 }
 
+// Radical centres pass for saturated while rings are judged: phenyl is as aromatic as benzene.
+void perceive_aromaticity(OpenBabel::OBMol& mol) {
+  std::vector<std::pair<OBAtom*, unsigned>> saturated;
+  FOR_ATOMS_OF_MOL(a, mol) {
+    Atom like;
+    like.element = static_cast<std::uint8_t>(a->GetAtomicNum());
+    like.charge = static_cast<std::int8_t>(a->GetFormalCharge());
+    const unsigned h = a->GetImplicitHCount();
+    if (unpaired_electrons(like, static_cast<int>(a->GetExplicitValence() + h)) != 1) continue;
+    saturated.emplace_back(&*a, h);
+    a->SetImplicitHCount(h + 1);
+  }
+  if (saturated.empty()) return;
+  mol.SetAromaticPerceived(false);
+  (void)mol.GetAtom(1)->IsAromatic();
+  for (const auto& [a, h] : saturated) a->SetImplicitHCount(h);
+}
+
 }  // namespace
 
 Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
+  perceive_aromaticity(mol);
   const auto n = mol.NumAtoms();
   std::vector<Atom> atoms;
   std::vector<Bond> bonds;

@@ -16,7 +16,7 @@ constexpr int kLargestCharge = 4;  // as in SMILES
 
 template <class T>
 std::optional<T> number(std::string_view field) {
-  if (field.starts_with('+')) field.remove_prefix(1);
+  if (field.starts_with('+') && !field.starts_with("+-")) field.remove_prefix(1);
   T value{};
   const auto [end, fault] = std::from_chars(field.data(), field.data() + field.size(), value);
   if (fault != std::errc{} || end != field.data() + field.size()) return std::nullopt;

@@ -67,6 +67,13 @@ Error placed(Error e, std::string_view text, const std::vector<std::size_t>& pos
   return e;
 }
 
+// "c", "[nH]", "[13c]".
+bool written_aromatic(std::string_view text, std::size_t at) {
+  if (text[at] == '[') ++at;
+  while (text[at] >= '0' && text[at] <= '9') ++at;
+  return text[at] >= 'a' && text[at] <= 'z';
+}
+
 }  // namespace
 
 Result<Molecule> parse_smiles(std::string_view input, ParseMode mode) {
@@ -100,6 +107,12 @@ Result<Molecule> parse_smiles(std::string_view input, ParseMode mode) {
     m = convert(mol, &source);
   }
   if (!m.ok()) return placed(m.error(), text, check.atom_position, source);
+  for (int i = 0; i < m.value().atom_count(); ++i) {
+    const auto at = check.atom_position[static_cast<std::size_t>(source[static_cast<std::size_t>(i)])];
+    if (written_aromatic(text, at) && !m.value().atom(i).in_ring) {
+      return Error{ErrorClass::aromaticity, "an aromatic atom outside a ring", place_in(text, at)};
+    }
+  }
   if (auto e = check_mode(m.value(), mode)) {
     if (e->cls == ErrorClass::fragments) e->place = place_in(text, text.find('.'));
     else *e = placed(*e, text, check.atom_position, source);

@@ -41,6 +41,15 @@ int explicit_valence(const Molecule& m, int atom, bool pi) noexcept {
   return v;
 }
 
+namespace {
+
+bool all_single(const Molecule& m, int atom) {
+  return std::all_of(m.neighbours(atom).begin(), m.neighbours(atom).end(),
+                     [&](const Neighbour& n) { return m.bond(n.bond).order == BondOrder::single; });
+}
+
+}  // namespace
+
 std::optional<Error> check_valences(const Molecule& m) {
   for (int i = 0; i < m.atom_count(); ++i) {
     const auto& a = m.atom(i);
@@ -49,6 +58,8 @@ std::optional<Error> check_valences(const Molecule& m) {
     const int v = explicit_valence(m, i, false) + a.unpaired;
     int most = 0;
     for (const int* p = allowed; *p != 0; ++p) most = std::max(most, *p);
+    // Five bonds of nitrogen are a way of writing charge separation: some of them are multiple.
+    if (a.element == element::N && a.charge == 0 && all_single(m, i)) most = 3;
     if (v > most && !(a.element == element::H && m.degree(i) == 0)) {
       return Error{ErrorClass::valence,
                    std::string(element_symbol(a.element)) + " with " + std::to_string(v) + " bonds takes at most " + std::to_string(most),

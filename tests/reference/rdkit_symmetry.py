@@ -185,7 +185,8 @@ def run(tool, lines, *options):
 def main(tool):
     counts = collections.Counter()
     lines = NCI.read_text().splitlines()
-    faults = list(judge(lines, run(tool, lines, "--answers"), counts))
+    faults = [] if len(lines) > 4900 else [f"{NCI}: only {len(lines)} lines"]
+    faults += judge(lines, run(tool, lines, "--answers"), counts)
     cages = [*CAGES.values(), *random_cages(200, seed=1)]
     faults += judge_cages(cages, run(tool, cages), counts)
     print(f"{NCI.name}: {len(lines)} lines")

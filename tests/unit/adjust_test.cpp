@@ -292,6 +292,26 @@ TEST(Nonlinear, ScatterIsWhatTheRowsOwnUncertaintyLeaves) {
   EXPECT_EQ(solve_nonlinear(p).value().scatter, 5);
 }
 
+// The scatter given covers 95 % of the rows with 2 u, also where a few rows lie far out and get little weight.
+TEST(Nonlinear, ScatterCoversTheRows) {
+  std::mt19937 random(9);
+  std::normal_distribution<double> normal;
+  NonlinearProblem p;
+  VectorXd y(100);
+  for (Eigen::Index i = 0; i < 100; ++i) y[i] = 5 + (i % 11 == 0 ? 4.0 : 0.3) * normal(random);
+  p.residual = [&](const VectorXd& b) { return VectorXd(y.array() - b[0]); };
+  p.u = VectorXd::Constant(100, 0.1);
+  p.start = VectorXd::Zero(1);
+  p.prior = VectorXd::Constant(1, 1e4);
+  const auto s = solve_nonlinear(p);
+  ASSERT_TRUE(s.ok());
+  const double u = std::hypot(0.1, s.value().scatter);
+  int within = 0;
+  for (const double v : y) within += std::abs(v - s.value().b[0]) <= 2 * u * (1 + 1e-9);
+  EXPECT_GE(within, 95);
+  EXPECT_NEAR(s.value().b[0], 5, 0.15) << "the far rows have little say";
+}
+
 TEST(Nonlinear, Refusals) {
   auto p = misra(250, 5);
   p.prior.resize(1);

@@ -122,7 +122,8 @@ TEST(Hammond, TransitionStateIsLaterWhereTheStepIsMoreEndothermic) {
   }
   const auto h = outcome("CC(C)C");
   EXPECT_GT(h[2].sites[1].share, h[1].sites[1].share) << "so bromine prefers the tertiary H more than chlorine";
-  EXPECT_LT(h[1].slope.value, h[2].slope.value) << "and its Evans-Polanyi slope is larger";
+  ASSERT_TRUE(h[1].slope && h[2].slope);
+  EXPECT_LT(h[1].slope->value, h[2].slope->value) << "and its Evans-Polanyi slope is larger";
 }
 
 // R T^2 d ln k / dT by difference, the encounter limit included; it may be negative.

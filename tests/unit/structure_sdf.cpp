@@ -126,6 +126,7 @@ TEST(Sdf, BrokenV2000) {
                  "record 2, line 8");  // bond block too short
   expect_refused(replaced(good, "  2  1  0", "999999  0"), ErrorClass::syntax, "record 2, line 7");
   expect_refused(replaced(good, "    1.0000", "    1.0x00"), ErrorClass::syntax, "record 2, line 6");
+  expect_refused(replaced(good, "    1.0000", "   +-1.000"), ErrorClass::syntax, "record 2, line 6");
   expect_refused(replaced(good, "M  END\n", ""), ErrorClass::syntax, "record 2, line 7");
   expect_refused(v2000("x", two, {{1, 3}}), ErrorClass::syntax, "record 2, line 7");
   expect_refused(v2000("x", two, {{0, 1}}), ErrorClass::syntax, "record 2, line 7");

@@ -14,6 +14,7 @@ namespace halostep {
 namespace {
 
 constexpr const char* kNames[] = {"F", "Cl", "Br", "I"};
+constexpr int kNumbers[] = {9, 17, 35, 53};
 const double kLn10 = std::log(10.0);
 
 int carrier_index(const std::string& c) {
@@ -124,6 +125,49 @@ std::vector<double> row_temperatures(const RateRow& r) {
   return {lo, 0.5 * (lo + hi), hi};
 }
 
+// The site that becomes `product` by taking the halogen; its H in `h_count`, -1 when there is none.
+int site_of_product(const Prepared& p, const std::string& product, int carrier, int& h_count) {
+  const auto wanted = prepare(product);
+  if (!wanted) return -1;
+  for (const auto& h : hydrogen_sites(p.m, p.classes)) {
+    if (canonical_smiles(p.m.with_substituent(h.atom, kNumbers[carrier]), false) != wanted->text) continue;
+    h_count = h.h_count;
+    return h.atom;
+  }
+  return -1;
+}
+
+// A mixture of monohalides speaks of ratios only: each product against the most abundant one, per H.
+void add_mixtures(const Table& t, const Sampler& sampler, std::vector<RateSample>& out) {
+  const auto same = [](const MixtureRow& a, const MixtureRow& b) {
+    return a.reagent == b.reagent && a.molecule == b.molecule && a.t == b.t && a.medium == b.medium && a.source == b.source;
+  };
+  for (std::size_t i = 0; i < t.mixtures.size(); ++i) {
+    const auto& r = t.mixtures[i];
+    const int x = carrier_index(r.reagent);
+    if (r.superseded || !r.fitted || x < 0 || r.medium != "gas" || !(r.fraction > 0)) continue;
+    const auto* top = &r;
+    for (const auto& q : t.mixtures) {
+      if (same(q, r) && !q.superseded && q.fraction > top->fraction) top = &q;
+    }
+    const auto p = prepare(r.molecule);
+    int n = 0, n_top = 0;
+    const int site = p ? site_of_product(*p, r.product, x, n) : -1, reference = p ? site_of_product(*p, top->product, x, n_top) : -1;
+    if (site < 0 || reference < 0 || site == reference) continue;
+    RateSample s;
+    s.carrier = x;
+    s.relative = true;
+    s.molecule = p->text;
+    s.sites = sampler.sites(*p, canonical_smiles(p->m.without_hydrogen(site)), x);
+    s.reference = sampler.sites(*p, canonical_smiles(p->m.without_hydrogen(reference)), x);
+    s.temperature = r.t;
+    s.ln_value = std::log(r.fraction / n / (top->fraction / n_top));
+    // Fractions are good to about two points.
+    s.u = std::hypot(0.02 / r.fraction, 0.02 / top->fraction);
+    if (!s.sites.empty() && !s.reference.empty()) out.push_back(std::move(s));
+  }
+}
+
 }  // namespace
 
 std::vector<RateSample> rate_samples(const Table& t, const BondModel& bonds) {
@@ -178,6 +222,7 @@ std::vector<RateSample> rate_samples(const Table& t, const BondModel& bonds) {
     s.u = kLn10 * std::max(r.u_log10, 0.05);
     if (!s.sites.empty() && !s.reference.empty()) out.push_back(std::move(s));
   }
+  add_mixtures(t, sampler, out);
   return out;
 }
 
@@ -208,6 +253,7 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
   set(kp::limit_power, 0.45, 0.15);
   set(kp::saturation, cl ? (*cl)[kp::saturation] : 20.0, cl ? 3.0 : 3.0);
   set(kp::screen, cl ? (*cl)[kp::screen] : 0.6, cl ? 0.1 : 0.2);
+  set(kp::bare, 0.0, 1.0);
   for (int c = 1; c < kAClasses; ++c) {
     set(kp::a_class + c - 1, 0.0, 0.7);
     set(kp::shift_class + c - 1, 0.0, 4.0);
@@ -239,7 +285,7 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
       set(kp::exponent, -0.5, 0.3);
       set(kp::shift, 10.0, 3.0);
       set(kp::width, 4.0, 1.0);
-      set(kp::alkyl, 0.0, 0.25);
+      set(kp::alkyl, 0.0, 0.3);
       break;
     default:
       set(kp::ln_a, std::log(6e-11), 1.0);

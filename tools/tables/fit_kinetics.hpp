@@ -23,7 +23,7 @@ struct RateSample {
   int heavy = 0;
   double temperature = 0;
   double ln_value = 0, u = 0;            // ln of k (cm3) or of the ratio; u in ln units
-  int row = -1;                          // index into Table::rates or relative_rates
+  int row = -1;                          // index into Table::rates or relative_rates; -1 for a mixture
   bool relative = false, ea_only = false;
   double ea = 0;
 };
