@@ -3,6 +3,7 @@
 #include <algorithm>
 
 #include "halostep/structure.hpp"
+#include "signature.hpp"
 
 namespace halostep {
 namespace {
@@ -30,6 +31,11 @@ bool spoken_of(const Molecule& m, const Bond& b) {
 }
 
 }  // namespace
+
+const std::string& Analysis::key() const {
+  if (key_.empty()) key_ = canonical_smiles(plain(), false);
+  return key_;
+}
 
 Analysis::Analysis(const Molecule& m) : original_(m) {
   bool labelled = false;
@@ -68,7 +74,7 @@ Analysis::Analysis(const Molecule& m) : original_(m) {
     }
   }
   info_ = environment(plain());
-  key_ = canonical_smiles(plain(), false);
+  signature_ = heavy_signature(m);
   for (int i = 0; i < m.bond_count(); ++i) {
     const auto& b = m.bond(i);
     if (!spoken_of(m, b)) continue;

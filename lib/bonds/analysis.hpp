@@ -30,7 +30,10 @@ class Analysis {
   [[nodiscard]] const std::vector<HeavyBond>& heavy_bonds() const { return heavy_; }
   [[nodiscard]] int deuterium_count() const { return deuterium_; }
   /// Canonical text of the plain molecule, without stereo: the key of the table.
-  [[nodiscard]] const std::string& key() const { return key_; }
+  /// Made at the first call; an Analysis belongs to one thread.
+  [[nodiscard]] const std::string& key() const;
+  /// heavy_signature() of the molecule.
+  [[nodiscard]] std::uint64_t signature() const { return signature_; }
   [[nodiscard]] int heavy_atoms() const { return heavy_atoms_; }
 
  private:
@@ -41,7 +44,8 @@ class Analysis {
   std::vector<AtomInfo> info_;
   std::vector<HydrogenSite> sites_;
   std::vector<HeavyBond> heavy_;
-  std::string key_;
+  mutable std::string key_;
+  std::uint64_t signature_ = 0;
   int deuterium_ = 0, heavy_atoms_ = 0;
 };
 

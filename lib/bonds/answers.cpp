@@ -20,6 +20,14 @@ int halogen_index(int z) {
 
 Error domain(std::string message) { return {ErrorClass::domain, std::move(message), {}}; }
 
+BondValue typed_value(TypedBond t) {
+  BondValue v;
+  v.extrapolated = t.extrapolated;
+  v.refusal = std::move(t.refusal);
+  if (v.refusal.empty()) v.d = t.d;
+  return v;
+}
+
 }  // namespace
 
 std::vector<int> BondBook::entry_sources(int entry) const {
@@ -41,29 +49,52 @@ std::vector<int> BondBook::halide_sources(const Analysis& a, const HydrogenSite&
   return evidence_.exchange(x, exchange_features(a.plain(), a.info(), a.to_plain(s.atom)));
 }
 
-BondValue BondBook::hydrogen(const Analysis& a, const HydrogenSite& s, bool typed_only) const {
+BondValue BondBook::measured(const Analysis& a, int atom) const {
   BondValue v;
-  const int atom = a.to_plain(s.atom);
-  if (!typed_only && model_.known(a.key())) {
-    v.entry = model_.measured(a.key(), canonical_smiles(a.plain().without_hydrogen(atom), false), "[H]");
-    if (v.entry >= 0) {
-      v.route = Route::measured;
-      v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
-      return v;
-    }
-  }
-  auto t = model_.typed(site_features(a.plain(), a.info(), atom));
-  v.extrapolated = t.extrapolated;
-  v.refusal = std::move(t.refusal);
-  if (v.refusal.empty()) v.d = t.d;
+  if (!model_.possible(a.signature()) || !model_.known(a.key())) return v;
+  v.entry = model_.measured(a.key(), canonical_smiles(a.plain().without_hydrogen(atom), false), "[H]");
+  if (v.entry < 0) return v;
+  v.route = Route::measured;
+  v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
   return v;
 }
 
-Quantity BondBook::exchange(const Analysis& a, const HydrogenSite& s, int x) const {
-  return model_.exchange(x, exchange_features(a.plain(), a.info(), a.to_plain(s.atom)));
+BondValue BondBook::hydrogen(const Analysis& a, const HydrogenSite& s, bool typed_only) const {
+  const int atom = a.to_plain(s.atom);
+  if (!typed_only) {
+    if (auto v = measured(a, atom); v.entry >= 0) return v;
+  }
+  return typed_value(model_.typed(site_features(a.plain(), a.info(), atom)));
 }
 
-BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, bool typed_only) const {
+std::vector<SiteBond> BondBook::sites(const Analysis& a, bool typed_only) const {
+  std::vector<SiteBond> out;
+  out.reserve(a.sites().size());
+  for (const auto& s : a.sites()) {
+    SiteBond b;
+    const int atom = a.to_plain(s.atom);
+    if (!typed_only) b.value = measured(a, atom);
+    if (b.value.entry < 0) {
+      auto f = site_features(a.plain(), a.info(), atom);
+      b.value = typed_value(model_.typed(f));
+      b.features = std::move(f.features);
+    }
+    if (a.plain().atom(atom).element == element::C) {
+      b.exchange = exchange_features(a.plain(), a.info(), atom);
+      // Long chains repeat a few kinds of site.
+      const auto same = std::find_if(out.rbegin(), out.rend(), [&](const SiteBond& q) { return q.exchange == b.exchange; });
+      for (int x = 0; x < 4; ++x) {
+        const auto k = static_cast<std::size_t>(x);
+        b.delta[k] = same != out.rend() ? same->delta[k] : model_.exchange(x, b.exchange);
+      }
+    }
+    out.push_back(std::move(b));
+  }
+  return out;
+}
+
+BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, const Quantity& delta,
+                           bool typed_only) const {
   BondValue v;
   // Only molecules of the table's size can be in it; larger ones skip the text of the halide.
   if (!typed_only && parent.route == Route::measured) {
@@ -83,8 +114,7 @@ BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, cons
     v.refusal = parent.d ? "the table holds no exchange model for this halogen" : parent.refusal;
     return v;
   }
-  const auto d = exchange(a, s, x);
-  v.d = Quantity{parent.d->value + d.value, std::hypot(parent.d->u, d.u)};
+  v.d = Quantity{parent.d->value + delta.value, std::hypot(parent.d->u, delta.u)};
   v.extrapolated = parent.extrapolated;
   return v;
 }
@@ -116,14 +146,14 @@ void BondBook::explain_typed(const LinearModel& m, const std::vector<std::string
   }
 }
 
-BondAnswer BondBook::hydrogen_answer(const Analysis& a, const HydrogenSite& s, const BondOptions& o) const {
+BondAnswer BondBook::hydrogen_answer(const Analysis& a, const HydrogenSite& s, const SiteBond& site, const BondOptions& o) const {
   BondAnswer b;
   const auto& m = a.original();
+  const auto& v = site.value;
   b.atom = s.atom;
   b.atoms = s.atoms;
   b.h_count = s.h_count;
   b.bond_count = s.h_count;
-  auto v = hydrogen(a, s, o.typed);
   b.d298 = v.d;
   b.route = v.route;
   b.extrapolated = v.extrapolated;
@@ -132,11 +162,11 @@ BondAnswer BondBook::hydrogen_answer(const Analysis& a, const HydrogenSite& s, c
   b.bond = fmt::format("{}-H", element_symbol(m.atom(s.atom).element));
   b.radical = canonical_smiles(m.without_hydrogen(s.atom));
   b.type = site_type(a.plain(), a.info(), a.to_plain(s.atom));
-  if (v.entry >= 0) explain_entry(v.entry, b);
-  else if (v.d) {
-    const auto f = site_features(a.plain(), a.info(), a.to_plain(s.atom)).features;
-    explain_typed(model_.bonds(), feature_names(), f, b);
-    b.sources = evidence_.hydrogen(f);
+  if (v.entry >= 0) {
+    explain_entry(v.entry, b);
+  } else if (v.d) {
+    explain_typed(model_.bonds(), feature_names(), site.features, b);
+    b.sources = evidence_.hydrogen(site.features);
   }
   return b;
 }
@@ -148,13 +178,15 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
   b.partner = h.partner;
   b.atoms = {h.centre};
   b.bond_count = h.count;
-  b.bond = fmt::format("{}-{}", element_symbol(m.atom(h.centre).element), element_symbol(m.atom(h.partner).element));
-  const auto halves = m.broken(h.bond);
-  const bool first = m.bond(h.bond).a == h.centre;
-  b.radical = canonical_smiles(first ? halves.first : halves.second);
   const int x = m.atom(h.centre).element == element::C ? halogen_index(m.atom(h.partner).element) : -1;
-  b.type = x >= 0 ? fmt::format("{}, {}", b.bond, h.count == 1 ? "one" : fmt::format("{} equivalent", h.count)) : fmt::format("{}, weak bond", b.bond);
-  if (!o.typed && model_.known(a.key())) {
+  if (o.details) {
+    const auto halves = m.broken(h.bond);
+    b.bond = fmt::format("{}-{}", element_symbol(m.atom(h.centre).element), element_symbol(m.atom(h.partner).element));
+    b.radical = canonical_smiles(m.bond(h.bond).a == h.centre ? halves.first : halves.second);
+    b.type = x >= 0 ? fmt::format("{}, {}", b.bond, h.count == 1 ? "one" : fmt::format("{} equivalent", h.count))
+                    : fmt::format("{}, weak bond", b.bond);
+  }
+  if (!o.typed && model_.possible(a.signature()) && model_.known(a.key())) {
     const int pa = a.to_plain(h.centre), pb = a.to_plain(h.partner);
     const int bond = a.plain().bond_between(pa, pb);
     const auto plain = a.plain().broken(bond);
@@ -168,11 +200,13 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
       return b;
     }
   }
-  if (x < 0) {
-    b.why = domain("the table has no value for this bond and it is not typed");
-    return b;
-  }
-  // R-X from R-H of the parent: the radical with a hydrogen instead of the halogen.
+  if (x >= 0) typed_halide(a, h, x, o, b);
+  else b.why = domain("the table has no value for this bond and it is not typed");
+  return b;
+}
+
+// R-X from R-H of the parent: the molecule with a hydrogen instead of the halogen.
+void BondBook::typed_halide(const Analysis& a, const HeavyBond& h, int x, const BondOptions& o, BondAnswer& b) const {
   std::vector<Atom> atoms;
   std::vector<Bond> bonds;
   const int gone = a.to_plain(h.partner);
@@ -192,27 +226,26 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
   const auto parent = Molecule::from_graph(std::move(atoms), std::move(bonds));
   if (!parent.ok()) {
     b.why = parent.error();
-    return b;
+    return;
   }
   const Analysis pa(parent.value());
-  HydrogenSite site{c, 1, {c}};
+  const HydrogenSite site{c, 1, {c}};
   const auto value = hydrogen(pa, site, o.typed);
-  const auto rx = halide(pa, site, x, value, true);
+  const auto f = exchange_features(pa.plain(), pa.info(), c);
+  const auto rx = halide(pa, site, x, value, model_.exchange(x, f), true);
   b.d298 = rx.d;
   b.extrapolated = rx.extrapolated;
   if (!rx.d) {
     b.why = domain(rx.refusal);
-    return b;
+    return;
   }
-  if (!o.details) return b;
+  if (!o.details) return;
   b.contributions.push_back({fmt::format("C-H of the parent, {}", route_name(value.route)), 1.0, *value.d, 1});
   b.sources = sources(pa, site, value);
-  const auto f = exchange_features(pa.plain(), pa.info(), c);
   explain_typed(model_.exchange_model(x), exchange_feature_names(), f, b);
   for (const int q : evidence_.exchange(x, f)) {
     if (std::find(b.sources.begin(), b.sources.end(), q) == b.sources.end()) b.sources.push_back(q);
   }
-  return b;
 }
 
 void BondBook::deuterium(const Analysis& a, std::vector<BondAnswer>& out) const {
@@ -238,10 +271,10 @@ void BondBook::deuterium(const Analysis& a, std::vector<BondAnswer>& out) const 
   }
 }
 
-std::vector<BondAnswer> BondBook::all(const Analysis& a, const BondOptions& o) const {
+std::vector<BondAnswer> BondBook::all(const Analysis& a, const std::vector<SiteBond>& sites, const BondOptions& o) const {
   std::vector<BondAnswer> out;
   out.reserve(a.sites().size() + a.heavy_bonds().size());
-  for (const auto& s : a.sites()) out.push_back(hydrogen_answer(a, s, o));
+  for (std::size_t i = 0; i < sites.size(); ++i) out.push_back(hydrogen_answer(a, a.sites()[i], sites[i], o));
   if (a.deuterium_count() > 0) deuterium(a, out);
   for (const auto& h : a.heavy_bonds()) out.push_back(heavy_answer(a, h, o));
   return out;

@@ -1,5 +1,6 @@
 // Answers about the bonds of one molecule.
 #pragma once
+#include <array>
 #include <vector>
 
 #include "analysis.hpp"
@@ -18,18 +19,27 @@ struct BondValue {
   std::string refusal;
 };
 
+/// What bonds, steps and rates all need of one X-H site, worked out once.
+struct SiteBond {
+  BondValue value;
+  std::vector<FeatureCount> features;  // of the typed model; filled where value is typed
+  std::vector<FeatureCount> exchange;  // of the exchange H -> X; carbon sites only
+  std::array<Quantity, 4> delta{};     // D(R-X) - D(R-H) from the exchange model, F Cl Br I
+};
+
 class BondBook {
  public:
   BondBook(const Table& table, const BondModel& model) : table_(table), model_(model), evidence_(table) {}
 
+  /// All X-H sites, in the order of Analysis::sites().
+  [[nodiscard]] std::vector<SiteBond> sites(const Analysis& a, bool typed_only) const;
   /// D of X-H at one site.
   [[nodiscard]] BondValue hydrogen(const Analysis& a, const HydrogenSite& s, bool typed_only) const;
   /// D of R-X once X sits at the site (the halide formed), from the table or from D(R-H) and the exchange model.
-  [[nodiscard]] BondValue halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, bool typed_only) const;
-  /// Uncertainty of D(R-H) - D(R-X) where both come from one parent value: the exchange's own u.
-  [[nodiscard]] Quantity exchange(const Analysis& a, const HydrogenSite& s, int x) const;
-  /// All bonds of the molecule, in order of atoms: X-H first, then bonds between heavy atoms.
-  [[nodiscard]] std::vector<BondAnswer> all(const Analysis& a, const BondOptions& o) const;
+  [[nodiscard]] BondValue halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent,
+                                 const Quantity& delta, bool typed_only) const;
+  /// All bonds of the molecule, in order of atoms: X-H first, then bonds between heavy atoms. `sites` as from sites().
+  [[nodiscard]] std::vector<BondAnswer> all(const Analysis& a, const std::vector<SiteBond>& sites, const BondOptions& o) const;
   /// Sources behind a value of hydrogen() or halide(): its rows, or those of the most similar bonds.
   [[nodiscard]] std::vector<int> sources(const Analysis& a, const HydrogenSite& s, const BondValue& v) const;
   [[nodiscard]] std::vector<int> halide_sources(const Analysis& a, const HydrogenSite& s, int x, const BondValue& v) const;
@@ -37,8 +47,10 @@ class BondBook {
   [[nodiscard]] std::vector<int> entry_sources(int entry) const;
 
  private:
-  [[nodiscard]] BondAnswer hydrogen_answer(const Analysis& a, const HydrogenSite& s, const BondOptions& o) const;
+  [[nodiscard]] BondValue measured(const Analysis& a, int atom) const;
+  [[nodiscard]] BondAnswer hydrogen_answer(const Analysis& a, const HydrogenSite& s, const SiteBond& b, const BondOptions& o) const;
   [[nodiscard]] BondAnswer heavy_answer(const Analysis& a, const HeavyBond& h, const BondOptions& o) const;
+  void typed_halide(const Analysis& a, const HeavyBond& h, int x, const BondOptions& o, BondAnswer& b) const;
   void deuterium(const Analysis& a, std::vector<BondAnswer>& out) const;
   void explain_entry(int entry, BondAnswer& out) const;
   void explain_typed(const LinearModel& m, const std::vector<std::string_view>& names,

@@ -4,6 +4,8 @@
 
 #include <cmath>
 
+#include "signature.hpp"
+
 namespace halostep {
 namespace {
 
@@ -61,7 +63,8 @@ BondModel::BondModel(const Table& table, const FittedModel* bonds, std::span<con
     entries_.emplace(entry_key(b.molecule, b.radical, b.leaving), static_cast<int>(i));
     // A broken bond may be asked for from either side.
     if (b.leaving != "[H]") entries_.emplace(entry_key(b.molecule, b.leaving, b.radical), static_cast<int>(i));
-    molecules_.emplace(b.molecule, 0);
+    molecules_.insert(b.molecule);
+    signatures_.insert(heavy_signature(b.molecule));
   }
 }
 

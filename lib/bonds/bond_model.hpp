@@ -1,9 +1,11 @@
 // Bond energies from the table (measured) and from the fitted model (typed). No parsing at look-up.
 #pragma once
+#include <cstdint>
 #include <span>
 #include <string>
 #include <string_view>
 #include <unordered_map>
+#include <unordered_set>
 #include <vector>
 
 #include "features.hpp"
@@ -47,6 +49,8 @@ class BondModel {
   [[nodiscard]] Quantity exchange(int x, const std::vector<FeatureCount>& f) const;
   /// True when the table has any bond of the molecule with this canonical text (without stereo).
   [[nodiscard]] bool known(std::string_view molecule) const { return molecules_.contains(std::string(molecule)); }
+  /// False when no molecule of the table has this heavy_signature(): known() need not be asked, nor its text made.
+  [[nodiscard]] bool possible(std::uint64_t signature) const { return signatures_.contains(signature); }
   /// Index of the table's entry, or -1. Texts are canonical without stereo; `leaving` "[H]", "[Cl]", ...
   [[nodiscard]] int measured(std::string_view molecule, std::string_view radical, std::string_view leaving) const;
 
@@ -57,7 +61,8 @@ class BondModel {
   LinearModel bonds_;
   std::vector<LinearModel> exchange_;
   std::unordered_map<std::string, int> entries_;
-  std::unordered_map<std::string, int> molecules_;
+  std::unordered_set<std::string> molecules_;
+  std::unordered_set<std::uint64_t> signatures_;
 };
 
 const FittedModel* find_model(const std::vector<FittedModel>& models, std::string_view name);

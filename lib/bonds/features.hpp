@@ -16,6 +16,7 @@ const char* centre_name(CentreType t) noexcept;
 struct FeatureCount {
   int feature = 0;  // index into feature_names()
   double count = 0;
+  friend bool operator==(const FeatureCount&, const FeatureCount&) = default;
 };
 
 struct SiteFeatures {

@@ -1,5 +1,6 @@
 #include "gradient.hpp"
 
+#include <bit>
 #include <cmath>
 
 #include "halostep/quantity.hpp"
@@ -16,6 +17,7 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
   RateGradient g;
   g.dh = slope;
   auto& out = g.parameters;
+  out.reserve(20);
   out = {{kp::ln_a, 1.0},
          {kp::tightness, -at.position},
          {kp::exponent, std::log(temperature / 298.0)},
@@ -26,10 +28,11 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
     out.push_back({kp::a_class + c - 1, 1.0});
     out.push_back({kp::shift_class + c - 1, slope});
   }
-  const auto parts = polar_parts(p, s);
+  const auto& parts = at.parts;
   const double limit = par(kp::saturation), q = parts.sum / limit, group = polar * parts.left;
   double by_decay = 0;
-  for (int k = 0; k < kPolarGroups; ++k) {
+  for (auto present = s.present; present != 0; present &= present - 1) {
+    const int k = std::countr_zero(present);
     const auto& n = s.count[static_cast<std::size_t>(k)];
     if (n[0]) out.push_back({kp::polar_alpha + k, (conjugates(k) ? polar : group) * parts.screen * n[0]});
     double field = 0, derivative = 0, factor = 1, below = 0;

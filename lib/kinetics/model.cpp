@@ -1,6 +1,7 @@
 #include "model.hpp"
 
 #include <algorithm>
+#include <bit>
 #include <cmath>
 
 #include "halostep/quantity.hpp"
@@ -46,7 +47,8 @@ PolarParts polar_parts(std::span<const double> p, const RateSite& s) {
   const auto at = [&](int i) { return p[static_cast<std::size_t>(i)]; };
   PolarParts parts;
   int conjugating = 0;
-  for (int g = 0; g < kPolarGroups; ++g) {
+  for (auto left = s.present; left != 0; left &= left - 1) {
+    const int g = std::countr_zero(left);
     const auto& n = s.count[static_cast<std::size_t>(g)];
     if (conjugates(g)) {
       conjugating += g == static_cast<int>(PolarGroup::nitro) ? 0 : n[0];
@@ -59,16 +61,15 @@ PolarParts polar_parts(std::span<const double> p, const RateSite& s) {
     parts.beyond += at(kp::polar_beyond + g) * field;
   }
   parts.alkyls = std::max(0, s.carbons - conjugating);
-  parts.screen = std::pow(at(kp::screen), parts.alkyls);
+  for (int k = 0; k < parts.alkyls; ++k) parts.screen *= at(kp::screen);
   parts.screen_beyond = parts.alkyls > 0 ? parts.screen / at(kp::screen) : 1.0;
   const double sum = parts.screen * parts.alpha + parts.screen_beyond * parts.beyond;
-  parts.left = std::exp(-sum / at(kp::saturation));
+  if (sum != 0) parts.left = std::exp(-sum / at(kp::saturation));
   parts.sum = sum;
   return parts;
 }
 
-double polar_energy(std::span<const double> p, const RateSite& s) {
-  const auto parts = polar_parts(p, s);
+double polar_energy(std::span<const double> p, const RateSite& s, const PolarParts& parts) {
   return p[kp::alkyl] * s.carbons + (parts.alkyls == 0 ? p[kp::bare] : 0.0) + parts.screen * parts.conjugating + p[kp::saturation] * (1 - parts.left);
 }
 
@@ -76,7 +77,8 @@ SiteRate site_rate(std::span<const double> p, const KineticForm& form, const Rat
   const auto at = [&](int i) { return p[static_cast<std::size_t>(i)]; };
   const int c = static_cast<int>(s.a_class);
   SiteRate r;
-  r.polar = polar_energy(p, s);
+  r.parts = polar_parts(p, s);
+  r.polar = polar_energy(p, s, r.parts);
   double x = dh + at(kp::shift) + (c > 0 ? at(kp::shift_class + c - 1) : 0.0);
   if (!form.polar_outside) x += r.polar;
   r.effective = x;

@@ -32,8 +32,18 @@ inline constexpr int total = bare + 1;
 /// Names of the parameters, in order.
 std::vector<std::string> kinetic_parameter_names();
 
+/// Polar energies of the groups around a site, kJ/mol, and the factors that act on them.
+struct PolarParts {
+  double alpha = 0, conjugating = 0, beyond = 0;  // on the centre; conjugating on the centre; further away
+  double screen = 1, screen_beyond = 1;           // alkyl groups on the centre screen it
+  double sum = 0;                                 // screened alpha and beyond
+  double left = 1;                                // exp(-sum/S): what a further group still counts
+  int alkyls = 0;                                 // carbons on the centre that do not conjugate
+};
+
 /// Rate of one H, at T.
 struct SiteRate {
+  PolarParts parts;      // of the polar energy
   double ln_k = 0;       // ln of k per H before the encounter limit
   double ln_a = 0;       // its pre-exponential part at T
   double barrier = 0;    // threshold energy, kJ/mol
@@ -49,18 +59,11 @@ struct KineticForm {
 /// Groups whose pi system takes the odd electron: at an early transition state the bond is weaker than the attack
 /// feels, so on the centre they add their own constant, outside the saturating sum.
 bool conjugates(int group) noexcept;
-/// Polar energies of the groups around a site, kJ/mol, and the factors that act on them.
-struct PolarParts {
-  double alpha = 0, conjugating = 0, beyond = 0;  // on the centre; conjugating on the centre; further away
-  double screen = 1, screen_beyond = 1;           // alkyl groups on the centre screen it
-  double sum = 0;                                 // screened alpha and beyond
-  double left = 1;                                // exp(-sum/S): what a further group still counts
-  int alkyls = 0;                                 // carbons on the centre that do not conjugate
-};
 PolarParts polar_parts(std::span<const double> p, const RateSite& s);
 /// Polar energy of a site, kJ/mol: alkyl groups or their absence, conjugating groups, and the sum g of all others as S (1 - exp(-g/S)),
 /// since each further group finds the centre already poorer in electrons.
-double polar_energy(std::span<const double> p, const RateSite& s);
+double polar_energy(std::span<const double> p, const RateSite& s, const PolarParts& parts);
+inline double polar_energy(std::span<const double> p, const RateSite& s) { return polar_energy(p, s, polar_parts(p, s)); }
 SiteRate site_rate(std::span<const double> p, const KineticForm& form, const RateSite& s, double dh, double temperature);
 /// Encounter limit for a molecule with that many heavy atoms, cm3 molecule-1 s-1.
 double encounter_limit(std::span<const double> p, int heavy_atoms);

@@ -36,17 +36,29 @@ RateBook::RateBook(const Table& table) : models_(4) {
   }
 }
 
-double RateBook::covariance(int x, const RateGradient& g, const RateGradient& h) const {
+double RateBook::variance(int x, const RateGradient& g) const {
   const auto& c = models_[static_cast<std::size_t>(x)];
   const std::size_t n = c.p.size();
   double sum = 0;
   for (const auto& a : g.parameters) {
     const double* row = c.covariance.data() + static_cast<std::size_t>(a.parameter) * n;
     double inner = 0;
-    for (const auto& b : h.parameters) inner += b.value * row[b.parameter];
+    for (const auto& b : g.parameters) inner += b.value * row[b.parameter];
     sum += a.value * inner;
   }
   return sum;
+}
+
+std::vector<double> RateBook::times_covariance(int x, const std::vector<double>& v) const {
+  const auto& c = models_[static_cast<std::size_t>(x)].covariance;
+  const std::size_t n = v.size();
+  std::vector<double> out(n, 0.0);
+  for (std::size_t i = 0; i < n; ++i) {
+    if (v[i] == 0) continue;
+    const double* row = c.data() + i * n;
+    for (std::size_t j = 0; j < n; ++j) out[j] += v[i] * row[j];
+  }
+  return out;
 }
 
 const char* RateBook::thin(int x, const RateSite& s) const {

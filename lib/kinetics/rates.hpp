@@ -30,8 +30,10 @@ class RateBook {
     const auto& m = models_[static_cast<std::size_t>(x)];
     return m.p.empty() ? nullptr : &m;
   }
-  /// g' C h over the parameters' covariance.
-  [[nodiscard]] double covariance(int x, const RateGradient& g, const RateGradient& h) const;
+  /// g' C g over the parameters' covariance.
+  [[nodiscard]] double variance(int x, const RateGradient& g) const;
+  /// C v for a dense vector v over the parameters.
+  [[nodiscard]] std::vector<double> times_covariance(int x, const std::vector<double>& v) const;
   /// Why the structure is outside the evidence of the model, or nullptr.
   [[nodiscard]] const char* thin(int x, const RateSite& s) const;
 

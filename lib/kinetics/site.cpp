@@ -124,6 +124,7 @@ RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int ato
       const bool chain = g == static_cast<int>(PolarGroup::aryl) || g == static_cast<int>(PolarGroup::unsaturated);
       if (chain && group_of(m, info, u) == g) continue;
       ++s.count[static_cast<std::size_t>(g)][static_cast<std::size_t>(d)];
+      s.present |= 1U << static_cast<unsigned>(g);
     }
   }
   return s;

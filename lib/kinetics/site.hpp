@@ -29,6 +29,7 @@ struct RateSite {
   int carbons = 0;            // carbon neighbours of the centre
   int small_ring = 0;         // 3, 4, 5 or 0
   bool covered = true;        // false where the rate model has no evidence for the kind of centre
+  std::uint32_t present = 0;  // bit g set where group g has a count
   // count[group][distance-1]
   std::array<std::array<std::uint8_t, kPolarReach>, kPolarGroups> count{};
 };

@@ -12,32 +12,34 @@ bool same(const SiteKind& a, const SiteKind& b) {
 
 }  // namespace
 
-CarbonSites carbon_sites(const Analysis& a, const BondBook& bonds, const BondModel& model, bool typed_only) {
+CarbonSites carbon_sites(const Analysis& a, const std::vector<SiteBond>& bonds, const BondModel& model) {
   CarbonSites out;
-  for (const auto& s : a.sites()) {
+  out.sites.reserve(bonds.size());
+  for (std::size_t i = 0; i < bonds.size(); ++i) {
+    const auto& s = a.sites()[i];
+    const auto& b = bonds[i];
     if (a.original().atom(s.atom).element != element::C) continue;
     CarbonSite c;
     c.site = &s;
-    const auto d = bonds.hydrogen(a, s, typed_only);
-    c.extrapolated = d.extrapolated;
-    const int atom = a.to_plain(s.atom);
+    c.extrapolated = b.value.extrapolated;
     SiteKind k;
-    k.rate = rate_site(a.plain(), a.info(), atom);
-    if (!d.d) c.refusal = d.refusal;
-    else if (!k.rate.covered) c.refusal = "no measured rates for this kind of C-H";
+    if (!b.value.d) {
+      c.refusal = b.value.refusal;
+    } else {
+      k.rate = rate_site(a.plain(), a.info(), a.to_plain(s.atom));
+      if (!k.rate.covered) c.refusal = "no measured rates for this kind of C-H";
+    }
     if (c.refusal.empty()) {
-      k.d = *d.d;
-      k.entry = d.entry;
-      if (d.route == Route::typed) {
-        k.features = site_features(a.plain(), a.info(), atom).features;
-        const double own = scatter_share(k.features) * model.bonds().scatter;
-        k.own_u2 = own * own;
-      } else {
-        k.own_u2 = k.d.u * k.d.u;
-      }
+      k.d = *b.value.d;
+      k.entry = b.value.entry;
       const auto it = std::find_if(out.kinds.begin(), out.kinds.end(), [&](const SiteKind& q) { return same(q, k); });
       c.kind = static_cast<int>(it - out.kinds.begin());
-      if (it == out.kinds.end()) out.kinds.push_back(std::move(k));
+      if (it == out.kinds.end()) {
+        k.features = b.features;
+        const double own = scatter_share(b.features) * model.bonds().scatter;
+        k.own_u2 = k.entry < 0 ? own * own : k.d.u * k.d.u;
+        out.kinds.push_back(std::move(k));
+      }
     }
     out.sites.push_back(std::move(c));
   }

@@ -29,6 +29,6 @@ struct CarbonSites {
   std::vector<CarbonSite> sites;       // in order of Analysis::sites(), carbon only
 };
 
-CarbonSites carbon_sites(const Analysis& a, const BondBook& bonds, const BondModel& model, bool typed_only);
+CarbonSites carbon_sites(const Analysis& a, const std::vector<SiteBond>& bonds, const BondModel& model);
 
 }  // namespace halostep

@@ -55,8 +55,9 @@ Engine::Impl::Impl(Table t)
     : table(std::move(t)), model(make_model(table)), bonds(table, model), thermo(table), steps(table, model, bonds, thermo),
       rates(table), rate_evidence(table) {}
 
-Result<std::vector<BondAnswer>> Engine::Impl::bond_answers(const Analysis& a, const BondOptions& o) const {
-  auto list = bonds.all(a, o);
+Result<std::vector<BondAnswer>> Engine::Impl::bond_answers(const Analysis& a, const std::vector<SiteBond>& sites,
+                                                               const BondOptions& o) const {
+  auto list = bonds.all(a, sites, o);
   if (list.empty()) return Error{ErrorClass::domain, "no X-H, C-X or weak bond in this structure", {}};
   if (std::none_of(list.begin(), list.end(), [](const BondAnswer& b) { return b.d298.has_value(); })) {
     // A structure refused only for its isotopes says so.
@@ -65,29 +66,40 @@ Result<std::vector<BondAnswer>> Engine::Impl::bond_answers(const Analysis& a, co
   return list;
 }
 
-std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
-                                                   double temperature, const BondOptions& o) const {
-  auto list = steps.chain(a, halogens, temperature, o);
-  std::size_t site = 0;
-  int x = -1;
-  std::optional<KindRates> r;
+std::vector<HalogenRates> Engine::Impl::halogen_rates(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
+                                                      double temperature, bool with_errors) const {
+  std::vector<HalogenRates> out;
+  for (const auto halogen : halogens) {
+    const int x = static_cast<int>(halogen);
+    HalogenRates r{halogen, std::nullopt};
+    if (carrier(x) != nullptr) {
+      r.rates = kind_rates(c, rates, model, x, *steps.halogen(x).d_hx, a.heavy_atoms(), temperature, with_errors);
+    }
+    out.push_back(std::move(r));
+  }
+  return out;
+}
+
+std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const std::vector<SiteBond>& sites, const CarbonSites& c,
+                                                   std::span<const HalogenRates> rated, double temperature,
+                                                   const BondOptions& o) const {
+  std::vector<Halogen> halogens;
+  for (const auto& r : rated) halogens.push_back(r.halogen);
+  auto list = steps.chain(a, sites, halogens, temperature, o);
+  // chain() gives the abstractions of one halogen after the other, each in the order of the sites.
+  std::size_t n = 0;
   for (auto& s : list) {
     if (s.kind != StepKind::abstraction) continue;
-    if (const int now = static_cast<int>(*s.halogen); now != x) {
-      x = now;
-      site = 0;
-      r.reset();
-      if (carrier(x) != nullptr) r = kind_rates(c, rates, model, x, *steps.halogen(x).d_hx, a.heavy_atoms(), temperature, false);
-    }
-    if (!r) {
-      s.why_ea = "the table holds no rate model for this halogen";
+    const auto& r = rated[n / c.sites.size()];
+    const std::size_t site = n++ % c.sites.size();
+    if (!r.rates) {
+      if (o.details) s.why_ea = "the table holds no rate model for this halogen";
     } else if (c.sites[site].kind < 0) {
       if (o.details) s.why_ea = c.sites[site].refusal;
     } else {
-      s.ea = site_ea(c, *r, *carrier(x), site, temperature);
-      s.k_cm3_s = site_k(c, *r, site);
+      s.ea = site_ea(c, *r.rates, *carrier(static_cast<int>(r.halogen)), site, temperature);
+      s.k_cm3_s = site_k(c, *r.rates, site);
     }
-    ++site;
   }
   return list;
 }
@@ -108,15 +120,17 @@ Engine::~Engine() = default;
 const Table& Engine::table() const noexcept { return impl_->table; }
 
 Result<std::vector<BondAnswer>> Engine::bonds(const Molecule& m, const BondOptions& o) const {
-  return impl_->bond_answers(Analysis(m), o);
+  const Analysis a(m);
+  return impl_->bond_answers(a, impl_->bonds.sites(a, o.typed), o);
 }
 
 Result<std::vector<StepAnswer>> Engine::steps(const Molecule& m, std::span<const Halogen> halogens, double temperature,
                                               const BondOptions& o) const {
   const Analysis a(m);
-  const auto c = carbon_sites(a, impl_->bonds, impl_->model, o.typed);
+  const auto sites = impl_->bonds.sites(a, o.typed);
+  const auto c = carbon_sites(a, sites, impl_->model);
   if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
-  return impl_->step_answers(a, c, halogens, temperature, o);
+  return impl_->step_answers(a, sites, c, impl_->halogen_rates(a, c, halogens, temperature, false), temperature, o);
 }
 
 Result<StepAnswer> Engine::reaction(std::string_view text, double temperature) const {
@@ -128,20 +142,23 @@ Result<StepAnswer> Engine::reaction(std::string_view text, double temperature) c
 Result<std::vector<HalogenOutcome>> Engine::outcome(const Molecule& m, std::span<const Halogen> halogens, double temperature,
                                                     const OutcomeOptions& o) const {
   const Analysis a(m);
-  return impl_->outcome_answers(a, carbon_sites(a, impl_->bonds, impl_->model, o.typed), halogens, temperature, o.details);
+  const auto c = carbon_sites(a, impl_->bonds.sites(a, o.typed), impl_->model);
+  return impl_->outcome_answers(a, c, impl_->halogen_rates(a, c, halogens, temperature, true), temperature, o.details);
 }
 
 Result<Study> Engine::study(const Molecule& m, std::span<const Halogen> halogens, double temperature,
                             const BondOptions& o) const {
   const Analysis a(m);
   Study s;
-  auto bonds = impl_->bond_answers(a, o);
+  const auto sites = impl_->bonds.sites(a, o.typed);
+  auto bonds = impl_->bond_answers(a, sites, o);
   if (!bonds.ok()) return bonds.error();
   s.bonds = std::move(bonds).value();
-  const auto c = carbon_sites(a, impl_->bonds, impl_->model, o.typed);
+  const auto c = carbon_sites(a, sites, impl_->model);
   if (c.sites.empty()) return s;
-  s.steps = impl_->step_answers(a, c, halogens, temperature, o);
-  auto outcome = impl_->outcome_answers(a, c, halogens, temperature, o.details);
+  const auto rated = impl_->halogen_rates(a, c, halogens, temperature, true);
+  s.steps = impl_->step_answers(a, sites, c, rated, temperature, o);
+  auto outcome = impl_->outcome_answers(a, c, rated, temperature, o.details);
   if (outcome.ok()) s.halogens = std::move(outcome).value();
   return s;
 }

@@ -11,17 +11,27 @@
 
 namespace halostep {
 
+/// Absent where the table has no rate model for the halogen.
+struct HalogenRates {
+  Halogen halogen = Halogen::Cl;
+  std::optional<KindRates> rates;
+};
+
 struct Engine::Impl {
   explicit Impl(Table t);
 
   /// Rate model and D(H-X), or nothing where the table lacks one of them.
   [[nodiscard]] const CarrierModel* carrier(int x) const { return steps.halogen(x).d_hx ? rates.carrier(x) : nullptr; }
-  [[nodiscard]] Result<std::vector<BondAnswer>> bond_answers(const Analysis& a, const BondOptions& o) const;
-  [[nodiscard]] std::vector<StepAnswer> step_answers(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
-                                                     double temperature, const BondOptions& o) const;
+  [[nodiscard]] Result<std::vector<BondAnswer>> bond_answers(const Analysis& a, const std::vector<SiteBond>& sites, const BondOptions& o) const;
+  [[nodiscard]] std::vector<StepAnswer> step_answers(const Analysis& a, const std::vector<SiteBond>& sites, const CarbonSites& c,
+                                                     std::span<const HalogenRates> rated, double temperature,
+                                                     const BondOptions& o) const;
   [[nodiscard]] Result<std::vector<HalogenOutcome>> outcome_answers(const Analysis& a, const CarbonSites& c,
-                                                                    std::span<const Halogen> halogens, double temperature,
+                                                                    std::span<const HalogenRates> rated, double temperature,
                                                                     bool details) const;
+  /// Rates of all kinds for each halogen; `with_errors` where shares are wanted.
+  [[nodiscard]] std::vector<HalogenRates> halogen_rates(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
+                                                        double temperature, bool with_errors) const;
   /// Adds Ea and k to a reaction X + RH or R + HX.
   void add_rate(StepAnswer& s, std::string_view text) const;
 

@@ -39,7 +39,7 @@ void compare_sites(const CarbonSites& c, const KindRates& r, const CarrierModel&
 }  // namespace
 
 Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis& a, const CarbonSites& c,
-                                                                  std::span<const Halogen> halogens, double temperature,
+                                                                  std::span<const HalogenRates> rated, double temperature,
                                                                   bool details) const {
   if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
   if (c.kinds.empty()) return Error{ErrorClass::domain, fmt::format("no C-H site inside the domain: {}", c.sites.front().refusal), {}};
@@ -53,12 +53,13 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
                            canonical_smiles(a.original().without_hydrogen(s.site->atom)), s.refusal);
     break;
   }
-  for (const auto halogen : halogens) {
+  for (const auto& one : rated) {
+    const auto halogen = one.halogen;
     const int x = static_cast<int>(halogen);
     const auto* m = carrier(x);
-    if (m == nullptr) return Error{ErrorClass::no_data, fmt::format("the table holds no rate model for {}", halogen_name(halogen)), {}};
+    if (!one.rates) return Error{ErrorClass::no_data, fmt::format("the table holds no rate model for {}", halogen_name(halogen)), {}};
     const auto& d_hx = *steps.halogen(x).d_hx;
-    const auto r = kind_rates(c, rates, model, x, d_hx, a.heavy_atoms(), temperature, true);
+    const auto& r = *one.rates;
     const auto share = shares(c, r);
     HalogenOutcome h;
     h.halogen = halogen;
@@ -77,7 +78,7 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
       o.h_count = s.site->h_count;
       o.dh = {c.kinds[k].d.value - d_hx.value, std::hypot(c.kinds[k].d.u, d_hx.u)};
       o.k_cm3_s = site_k(c, r, i);
-      o.u_log10_k = std::sqrt(std::max(0.0, r.covariance[k * c.kinds.size() + k] + r.own[k])) / std::log(10.0);
+      o.u_log10_k = std::sqrt(std::max(0.0, r.shared[k] + r.own[k])) / std::log(10.0);
       o.ea = site_ea(c, r, *m, i, temperature);
       o.a_cm3_s = o.k_cm3_s * std::exp(o.ea / (kGasConstant * temperature));
       o.ts_position = r.at[k].position;

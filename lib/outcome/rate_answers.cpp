@@ -17,23 +17,37 @@ double raw_ea(const CarrierModel& m, const SiteRate& at, double temperature) {
   return at.barrier + m.p[kp::exponent] * kGasConstant * temperature;
 }
 
+// Covariances are never formed pair by pair: shares need the variance of each kind and its covariance with the total.
 void add_errors(KindRates& r, const CarbonSites& s, const RateBook& rates, const BondModel& model, int x, const Quantity& d_hx) {
   const std::size_t n = s.kinds.size();
-  r.covariance.assign(n * n, 0.0);
+  const auto& carrier = *rates.carrier(x);
+  const auto& bonds = model.bonds();
+  std::vector<double> total(carrier.p.size(), 0.0), corrections(bonds.value.size(), 0.0);
+  double by_hx = 0;
   r.own.resize(n);
-  const double scatter = rates.carrier(x)->scatter;
-  for (std::size_t i = 0; i < n; ++i) {
-    const double gi = r.gradient[i].dh;
-    const double own = scatter * scatter_share(s.kinds[i].rate);
-    r.own[i] = own * own + gi * gi * s.kinds[i].own_u2;
-    for (std::size_t j = 0; j <= i; ++j) {
-      double d_shared = d_hx.u * d_hx.u;
-      if (!s.kinds[i].features.empty() && !s.kinds[j].features.empty()) {
-        d_shared += model.bonds().covariance_of(s.kinds[i].features, s.kinds[j].features);
-      }
-      const double c = rates.covariance(x, r.gradient[i], r.gradient[j]) + gi * r.gradient[j].dh * d_shared;
-      r.covariance[i * n + j] = r.covariance[j * n + i] = c;
-    }
+  r.shared.resize(n);
+  r.row.resize(n);
+  for (std::size_t k = 0; k < n; ++k) {
+    const auto& kind = s.kinds[k];
+    const double g = r.gradient[k].dh, w = r.by_kind[k];
+    const double own = carrier.scatter * scatter_share(kind.rate);
+    r.own[k] = own * own + g * g * kind.own_u2;
+    r.shared[k] = rates.variance(x, r.gradient[k]) + g * g * (d_hx.u * d_hx.u + bonds.covariance_of(kind.features, kind.features));
+    for (const auto& p : r.gradient[k].parameters) total[static_cast<std::size_t>(p.parameter)] += w * p.value;
+    for (const auto& f : kind.features) corrections[static_cast<std::size_t>(f.feature)] += w * g * f.count;
+    by_hx += w * g * d_hx.u * d_hx.u;
+  }
+  const auto c_total = rates.times_covariance(x, total);
+  std::vector<FeatureCount> mixed;
+  for (std::size_t f = 0; f < corrections.size(); ++f) {
+    if (corrections[f] != 0) mixed.push_back({static_cast<int>(f), corrections[f]});
+  }
+  for (std::size_t k = 0; k < n; ++k) {
+    const double g = r.gradient[k].dh;
+    double sum = g * by_hx;
+    for (const auto& p : r.gradient[k].parameters) sum += p.value * c_total[static_cast<std::size_t>(p.parameter)];
+    if (!s.kinds[k].features.empty()) sum += g * bonds.covariance_of(s.kinds[k].features, mixed);
+    r.row[k] = sum;
   }
 }
 
@@ -48,9 +62,11 @@ KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondMode
     if (with_errors) r.gradient.push_back(rate_gradient(m.p, m.form, k.rate, r.at.back(), temperature));
   }
   double ea_sum = 0;
+  r.by_kind.assign(s.kinds.size(), 0.0);
   for (std::size_t i = 0; i < s.sites.size(); ++i) {
     const double k = raw(s, r, i);
     r.total += k;
+    if (k > 0) r.by_kind[kind_of(s, i)] += k;
     if (k > 0) ea_sum += k * raw_ea(m, r.at[kind_of(s, i)], temperature);
   }
   if (r.total > 0) {
@@ -69,17 +85,10 @@ double site_ea(const CarbonSites& s, const KindRates& r, const CarrierModel& m, 
 }
 
 std::vector<Share> shares(const CarbonSites& s, const KindRates& r) {
-  const std::size_t n = s.kinds.size();
-  std::vector<double> by_kind(n, 0.0), row(n, 0.0);
-  for (std::size_t i = 0; i < s.sites.size(); ++i) {
-    if (inside(s, i)) by_kind[kind_of(s, i)] += raw(s, r, i);
-  }
-  // row = C w and the quadratic forms below: each site then costs only a few products.
   double whole = 0, own = 0;
-  for (std::size_t k = 0; k < n; ++k) {
-    for (std::size_t l = 0; l < n; ++l) row[k] += r.covariance[k * n + l] * by_kind[l];
-    whole += by_kind[k] * row[k];
-    own += by_kind[k] * by_kind[k] * r.own[k];
+  for (std::size_t k = 0; k < s.kinds.size(); ++k) {
+    whole += r.by_kind[k] * r.row[k];
+    own += r.by_kind[k] * r.by_kind[k] * r.own[k];
   }
   std::vector<Share> out(s.sites.size());
   for (std::size_t i = 0; i < s.sites.size(); ++i) {
@@ -92,8 +101,8 @@ std::vector<Share> shares(const CarbonSites& s, const KindRates& r) {
     }
     // logit = ln w - ln(rest): with e = W/rest, d logit = e d(ln k of this kind) - sum over all of W_l/rest d(ln k_l).
     const double e = 1 + w / rest;
-    const double variance = e * e * (r.covariance[k * n + k] + r.own[k]) -
-                            2 * e / rest * (row[k] + by_kind[k] * r.own[k]) + (whole + own) / (rest * rest);
+    const double variance = e * e * (r.shared[k] + r.own[k]) -
+                            2 * e / rest * (r.row[k] + r.by_kind[k] * r.own[k]) + (whole + own) / (rest * rest);
     const double logit = std::log(w / rest), range = 1.96 * std::sqrt(std::max(0.0, variance));
     const auto back = [](double z) { return 1 / (1 + std::exp(-z)); };
     out[i] = {w / r.total, back(logit - range), back(logit + range)};

@@ -11,14 +11,16 @@ namespace halostep {
 struct KindRates {
   std::vector<SiteRate> at;            // per kind, one H, before the encounter limit
   std::vector<RateGradient> gradient;  // per kind
-  std::vector<double> covariance;      // kinds x kinds: of ln k per H, with the shared part of D; row-major
+  std::vector<double> shared;          // per kind: variance of ln k from what kinds share: parameters, D(H-X), corrections
   std::vector<double> own;             // per kind: variance of ln k nothing else shares
+  std::vector<double> by_kind;         // per kind: rate of all its sites, before the limit
+  std::vector<double> row;             // per kind: shared covariance with the total, sum over kinds l of C_kl w_l
   double total = 0;                    // sum over all sites, before the limit, cm3 molecule-1 s-1
   double damping = 1;                  // what the encounter limit leaves of every rate, 0..1
   double ea_shift = 0;                 // what the limit adds to every activation energy, kJ/mol
 };
 
-/// D(H-X) of the halogen; false `with_errors` leaves covariance and own empty.
+/// D(H-X) of the halogen; false `with_errors` leaves the error parts empty.
 KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondModel& model, int x, const Quantity& d_hx,
                      int heavy_atoms, double temperature, bool with_errors);
 

@@ -46,7 +46,7 @@ void Engine::Impl::add_rate(StepAnswer& s, std::string_view text) const {
   if (f.x < 0) return;
   const Analysis a(*f.parent);
   const int atom = find_site(a.original(), a.classes(), *f.radical);
-  const auto c = carbon_sites(a, bonds, model, false);
+  const auto c = carbon_sites(a, bonds.sites(a, false), model);
   const auto site = std::find_if(c.sites.begin(), c.sites.end(), [&](const CarbonSite& q) { return q.site->atom == atom; });
   if (carrier(f.x) == nullptr || site == c.sites.end()) return;
   if (site->kind < 0) {

@@ -195,7 +195,7 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
       const auto rk = canonical_smiles(rad, false);
       if (std::none_of(all.begin(), all.end(), [&](const Species& q) { return q.key == rk && q.radical >= 0; })) continue;
       const Analysis a(m);
-      const auto list = bonds_.all(a, {});
+      const auto list = bonds_.all(a, bonds_.sites(a, false), {});
       const auto b = std::find_if(list.begin(), list.end(), [&](const BondAnswer& q) {
         return q.partner >= 0 && q.d298 && q.atom == c && m.atom(q.partner).element == m.atom(i).element;
       });

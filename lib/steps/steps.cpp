@@ -47,7 +47,8 @@ void finish(StepAnswer& s, const ThermoSum& sum, double temperature) {
 // What the steps of one site share, worked out once for all halogens.
 struct StepBook::SiteData {
   const HydrogenSite* site = nullptr;
-  BondValue d;
+  const BondValue* d = nullptr;
+  const SiteBond* bond = nullptr;
   std::string rh, radical;                 // texts
   std::vector<int> sources;                // of d
   const SpeciesEntry *rh_entry = nullptr, *r_entry = nullptr, *rr_entry = nullptr;
@@ -93,7 +94,10 @@ void StepBook::initiation(int x, double t, bool details, std::vector<StepAnswer>
 void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t, const BondOptions& o,
                           std::vector<StepAnswer>& out) const {
   const auto& h = halogens_[static_cast<std::size_t>(x)];
-  StepAnswer abstraction, transfer, net;
+  // chain() has reserved room, so the three stay where they are.
+  const std::size_t at = out.size();
+  out.resize(at + 3);
+  StepAnswer &abstraction = out[at], &transfer = out[at + 1], &net = out[at + 2];
   abstraction.kind = StepKind::abstraction;
   transfer.kind = StepKind::transfer;
   net.kind = StepKind::net;
@@ -102,12 +106,13 @@ void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t,
     s->route = "bonds";
     s->radical = d.radical;
   }
-  const auto rx = bonds_.halide(a, *d.site, x, d.d, o.typed);
-  if (d.d.d && h.d_hx) abstraction.dh = minus(*d.d.d, *h.d_hx);
+  const Quantity& delta = d.bond->delta[static_cast<std::size_t>(x)];
+  const auto rx = bonds_.halide(a, *d.site, x, *d.d, delta, o.typed);
+  if (d.d->d && h.d_hx) abstraction.dh = minus(*d.d->d, *h.d_hx);
   if (rx.d && h.d_xx) transfer.dh = minus(*h.d_xx, *rx.d);
   if (abstraction.dh && transfer.dh) {
     // The two bonds share the radical: with D(R-X) typed from D(R-H), D(R-H) cancels and only the exchange's u is left.
-    const double pair = rx.route == Route::typed ? bonds_.exchange(a, *d.site, x).u : std::hypot(d.d.d->u, rx.d->u);
+    const double pair = rx.route == Route::typed ? delta.u : std::hypot(d.d->d->u, rx.d->u);
     net.dh = Quantity{abstraction.dh->value + transfer.dh->value, std::hypot(pair, h.d_hx->u, h.d_xx->u)};
   }
   const SpeciesEntry* rx_entry = nullptr;
@@ -119,7 +124,7 @@ void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t,
     abstraction.reaction = fmt::format("{}.{}>>{}.{}", kAtom[x], d.rh, kHydride[x], d.radical);
     transfer.reaction = fmt::format("{}.{}>>{}.{}", d.radical, kMolecule[x], rx_text, kAtom[x]);
     net.reaction = fmt::format("{}.{}>>{}.{}", d.rh, kMolecule[x], rx_text, kHydride[x]);
-    if (!abstraction.dh) abstraction.why_dh = d.d.refusal.empty() ? "the table has no D(H-X)" : d.d.refusal;
+    if (!abstraction.dh) abstraction.why_dh = d.d->refusal.empty() ? "the table has no D(H-X)" : d.d->refusal;
     if (!transfer.dh) transfer.why_dh = rx.refusal.empty() ? "the table has no D(X-X)" : rx.refusal;
     if (!net.dh) net.why_dh = "a step of it has no value";
     transfer.why_ea = "halogen transfer is near the encounter limit; not modelled here";
@@ -132,6 +137,8 @@ void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t,
     net.sources = abstraction.sources;
     merge(net.sources, transfer.sources);
   }
+  for (auto* q : {&abstraction, &transfer, &net}) q->temperature = t;
+  if (!o.details) return;
   ThermoSum sa, st, sn;
   thermo_.add(sa, d.rh_entry, -1, d.rh);
   thermo_.add(sa, h.atom, -1, kAtom[x]);
@@ -148,42 +155,39 @@ void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t,
   finish(abstraction, sa, t);
   finish(transfer, st, t);
   finish(net, sn, t);
-  out.push_back(std::move(abstraction));
-  out.push_back(std::move(transfer));
-  out.push_back(std::move(net));
 }
 
-void StepBook::terminations(const SiteData& d, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const {
+void StepBook::terminations(const SiteData& d, std::size_t transfer_at, int x, double t, const BondOptions& o,
+                            std::vector<StepAnswer>& out) const {
   // R + X is the transfer's bond; taken from the answer just made, so the two agree.
-  StepAnswer rx, rr;
-  const auto transfer = std::find_if(out.rbegin(), out.rend(), [&](const StepAnswer& s) {
-    return s.kind == StepKind::transfer && s.halogen == static_cast<Halogen>(x) && s.radical == d.radical;
-  });
+  const std::size_t at = out.size();
+  out.resize(at + 2);
+  StepAnswer &rx = out[at], &rr = out[at + 1];
+  const StepAnswer* transfer = &out[transfer_at];
   const auto& h = halogens_[static_cast<std::size_t>(x)];
   rx.kind = rr.kind = StepKind::termination;
   rx.halogen = rr.halogen = static_cast<Halogen>(x);
   rx.radical = rr.radical = d.radical;
   rx.route = "bonds";
-  rr.route = "formation enthalpies";
-  if (transfer != out.rend() && transfer->dh && h.d_xx) {
+  if (transfer->dh && h.d_xx) {
     rx.dh = Quantity{transfer->dh->value - h.d_xx->value, std::sqrt(std::max(0.0, transfer->dh->u * transfer->dh->u - h.d_xx->u * h.d_xx->u))};
     rx.sources = transfer->sources;
   }
   if (d.d_rr) rr.dh = Quantity{-d.d_rr->value, d.d_rr->u};
+  rx.temperature = rr.temperature = t;
+  if (!o.details) return;
+  const auto arrow = transfer->reaction.find(">>");
+  const auto product = transfer->reaction.substr(arrow + 2, transfer->reaction.rfind('.') - arrow - 2);
+  rx.reaction = fmt::format("{}.{}>>{}", d.radical, kAtom[x], product);
+  rr.reaction = fmt::format("{}.{}>>{}", d.radical, d.radical, d.dimer);
+  rr.route = "formation enthalpies";
+  const auto* rx_entry = thermo_.find(product);
+  if (!rx.dh) rx.why_dh = transfer->why_dh;
+  if (!rr.dh) rr.why_dh = "the table has no formation enthalpy of the dimer or of the radical";
+  rx.why_ea = rr.why_ea = "recombination, no barrier";
+  if (d.rr_entry != nullptr) rr.sources = thermo_.sources(*d.rr_entry);
+  if (d.r_entry != nullptr) merge(rr.sources, thermo_.sources(*d.r_entry));
   ThermoSum sx, sr;
-  const SpeciesEntry* rx_entry = nullptr;
-  if (o.details && transfer != out.rend()) {
-    const auto arrow = transfer->reaction.find(">>");
-    const auto product = transfer->reaction.substr(arrow + 2, transfer->reaction.rfind('.') - arrow - 2);
-    rx.reaction = fmt::format("{}.{}>>{}", d.radical, kAtom[x], product);
-    rr.reaction = fmt::format("{}.{}>>{}", d.radical, d.radical, d.dimer);
-    rx_entry = thermo_.find(product);
-    if (!rx.dh) rx.why_dh = transfer->why_dh;
-    if (!rr.dh) rr.why_dh = "the table has no formation enthalpy of the dimer or of the radical";
-    rx.why_ea = rr.why_ea = "recombination, no barrier";
-    if (d.rr_entry != nullptr) rr.sources = thermo_.sources(*d.rr_entry);
-    if (d.r_entry != nullptr) merge(rr.sources, thermo_.sources(*d.r_entry));
-  }
   thermo_.add(sx, d.r_entry, -1, d.radical);
   thermo_.add(sx, h.atom, -1, kAtom[x]);
   thermo_.add(sx, rx_entry, 1, "the halide");
@@ -191,8 +195,6 @@ void StepBook::terminations(const SiteData& d, int x, double t, const BondOption
   thermo_.add(sr, d.rr_entry, 1, d.dimer);
   finish(rx, sx, t);
   finish(rr, sr, t);
-  out.push_back(std::move(rx));
-  out.push_back(std::move(rr));
 }
 
 namespace {
@@ -227,22 +229,24 @@ std::optional<Molecule> dimer_of(const Molecule& r) {
 
 }  // namespace
 
-std::vector<StepAnswer> StepBook::chain(const Analysis& a, std::span<const Halogen> halogens, double t, const BondOptions& o) const {
+std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<SiteBond>& sites, std::span<const Halogen> halogens, double t, const BondOptions& o) const {
   std::vector<SiteData> data;
   const std::string rh = o.details ? canonical_smiles(a.original()) : std::string();
   const bool plain = a.deuterium_count() == 0;
-  const auto* rh_entry = plain ? thermo_.find(a.key()) : nullptr;
-  for (const auto& s : a.sites()) {
+  const auto* rh_entry = plain && o.details ? thermo_.find(a.key()) : nullptr;
+  for (std::size_t i = 0; i < sites.size(); ++i) {
+    const auto& s = a.sites()[i];
     if (a.original().atom(s.atom).element != element::C) continue;
     SiteData d;
     d.site = &s;
-    d.d = bonds_.hydrogen(a, s, o.typed);
+    d.bond = &sites[i];
+    d.d = &d.bond->value;
     d.rh = rh;
     d.rh_entry = rh_entry;
     if (o.details) {
       const auto r = a.original().without_hydrogen(s.atom);
       d.radical = canonical_smiles(r);
-      d.sources = bonds_.sources(a, s, d.d);
+      d.sources = bonds_.sources(a, s, *d.d);
       if (rh_entry != nullptr) d.r_entry = thermo_.find_radical(r, canonical_smiles(r, false));
       if (const auto rr = dimer_of(r)) {
         d.dimer = canonical_smiles(*rr);
@@ -250,8 +254,8 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, std::span<const Halog
       }
       const auto* h = thermo_.find("[H]");
       std::optional<Quantity> dfh_r;
-      if (d.d.d && rh_entry != nullptr && rh_entry->dfh298 && h != nullptr && h->dfh298) {
-        dfh_r = Quantity{rh_entry->dfh298->value + d.d.d->value - h->dfh298->value, std::hypot(rh_entry->dfh298->u, d.d.d->u)};
+      if (d.d->d && rh_entry != nullptr && rh_entry->dfh298 && h != nullptr && h->dfh298) {
+        dfh_r = Quantity{rh_entry->dfh298->value + d.d->d->value - h->dfh298->value, std::hypot(rh_entry->dfh298->u, d.d->d->u)};
       } else if (d.r_entry != nullptr) {
         dfh_r = d.r_entry->dfh298;
       }
@@ -265,6 +269,7 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, std::span<const Halog
   out.reserve(halogens.size() * (data.size() * 5 + 2));
   for (const auto halogen : halogens) {
     const int x = static_cast<int>(halogen);
+    const std::size_t first = out.size();  // initiation, then three steps per site
     initiation(x, t, o.details, out);
     for (const auto& d : data) site_steps(a, d, x, t, o, out);
     StepAnswer xx = *std::find_if(out.begin(), out.end(), [&](const StepAnswer& s) { return s.halogen == halogen && s.kind == StepKind::initiation; });
@@ -277,7 +282,7 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, std::span<const Halog
       xx.reaction = fmt::format("{}.{}>>{}", kAtom[x], kAtom[x], kMolecule[x]);
       xx.why_ea = "recombination on a third body, no barrier";
     }
-    for (const auto& d : data) terminations(d, x, t, o, out);
+    for (std::size_t i = 0; i < data.size(); ++i) terminations(data[i], first + 3 * i + 2, x, t, o, out);
     out.push_back(std::move(xx));
   }
   return out;

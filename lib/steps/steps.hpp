@@ -21,8 +21,8 @@ class StepBook {
   StepBook(const Table& table, const BondModel& model, const BondBook& bonds, const ThermoBook& thermo);
   [[nodiscard]] const HalogenData& halogen(int x) const { return halogens_[static_cast<std::size_t>(x)]; }
   /// Step enthalpy of abstraction at a site, D(R-H) - D(H-X); empty with `why` when a bond is missing.
-  [[nodiscard]] std::vector<StepAnswer> chain(const Analysis& a, std::span<const Halogen> halogens, double temperature,
-                                              const BondOptions& o) const;
+  [[nodiscard]] std::vector<StepAnswer> chain(const Analysis& a, const std::vector<SiteBond>& sites,
+                                              std::span<const Halogen> halogens, double temperature, const BondOptions& o) const;
   /// One step written as reaction SMILES.
   [[nodiscard]] Result<StepAnswer> reaction(std::string_view text, double temperature) const;
 
@@ -30,7 +30,9 @@ class StepBook {
   struct SiteData;
   void initiation(int x, double t, bool details, std::vector<StepAnswer>& out) const;
   void site_steps(const Analysis& a, const SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
-  void terminations(const SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
+  /// `transfer_at`: where the transfer step of the site stands in `out`; its bond is R-X here.
+  void terminations(const SiteData& s, std::size_t transfer_at, int x, double t, const BondOptions& o,
+                    std::vector<StepAnswer>& out) const;
   const Table& table_;
   const BondModel& model_;
   const BondBook& bonds_;

@@ -146,7 +146,7 @@ def judge(rows):
         judged += kind in COUNTED
         limit = LIMIT if kind in COUNTED or how != "typed" else max(LIMIT, 2 * u)
         if abs(found - expected) > limit:
-            faults.append(f"{kind} of {name} ({smiles}): {found:.1f}, by the set {expected:.1f}, {found - expected:+.1f} kJ/mol")
+            faults.append(f"{kind} of {name} ({smiles}): {found:.1f}, by the set {expected:.1f}, {found - expected:+.1f}")
     lines.append(f"{judged} C-H, O-H, N-H, S-H and C-C bonds judged")
     if judged < ENOUGH:
         faults.append(f"only {judged} bonds judged, {ENOUGH} wanted")

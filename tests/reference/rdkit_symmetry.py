@@ -6,10 +6,10 @@ Every line of the file is answered or refused with a class; what is accepted and
 reading; the classes of every accepted structure are those of RDKit's CanonicalRankAtoms (breakTies=False) after its
 stereo was removed. Two programs that refine neighbourhoods may share a mistake, so each pair of one class must also be
 carried into each other by an automorphism, found by RDKit's substructure search (Cordella et al., IEEE Trans. Pattern
-Anal. Mach. Intell. 2004, 26, 1367). RDKit reads the original text with its own aromaticity model; no structure of the
-file needs an exception for that.
+Anal. Mach. Intell. 2004, 26, 1367). On cages, where refinement alone is known to fail, the orbits of the automorphisms
+are the judge. RDKit reads the original text with its own aromaticity model; no structure needs an exception for that.
 
-Sources: G. Landrum and others, RDKit (Debian python3-rdkit); structures of the National Cancer Institute, in rdkit-data.
+Sources: RDKit (G. Landrum and others; Debian python3-rdkit); structures of the National Cancer Institute (rdkit-data).
 """
 import collections
 import pathlib

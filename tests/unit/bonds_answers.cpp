@@ -64,8 +64,8 @@ TEST(Measured, KnownBonds) {
   }
 }
 
-// Weak bonds of initiators; values of Luo's handbook (2007) and, for HOCl and H2O2, of the CODATA-type cycle, from
-// memory; the tolerance covers the spread between the sources.
+// Weak bonds of initiators: Luo's handbook (2007), from memory, with the spread between sources as tolerance. X-X: CODATA
+// key values (Cox, Wagman, Medvedev 1989), from memory: twice the atom's enthalpy of formation less that of gaseous X2.
 TEST(Measured, WeakBondsOfInitiators) {
   const struct {
     const char *smiles, *bond, *radical;
@@ -76,9 +76,9 @@ TEST(Measured, WeakBondsOfInitiators) {
                {"OCl", "O-Cl", "[OH]", 234, 5},
                {"CC(C)(C)OCl", "O-Cl", "CC(C)(C)[O]", 198, 20},
                {"ClCl", "Cl-Cl", "[Cl]", 242.6, 1},
-               {"BrBr", "Br-Br", "[Br]", 193.9, 1},
-               {"II", "I-I", "[I]", 152.3, 1},
-               {"FF", "F-F", "[F]", 158.7, 1.5}};
+               {"BrBr", "Br-Br", "[Br]", 192.8, 1},
+               {"II", "I-I", "[I]", 151.1, 1},
+               {"FF", "F-F", "[F]", 158.8, 1}};
   for (const auto& c : cases) {
     const auto b = find(bonds(c.smiles), c.bond, c.radical);
     ASSERT_TRUE(b.d298) << c.smiles;
@@ -98,7 +98,8 @@ TEST(Measured, WeakBondsOfInitiators) {
 }
 
 TEST(Routes, MeasuredBeforeTypedAndTypedOnDemand) {
-  int both = 0;
+  int both = 0, within = 0;
+  std::string far;
   for (const auto smiles : kSubstrates) {
     const auto first = bonds(smiles), typed = bonds(smiles, true);
     ASSERT_EQ(first.size(), typed.size()) << smiles;
@@ -108,13 +109,16 @@ TEST(Routes, MeasuredBeforeTypedAndTypedOnDemand) {
       EXPECT_EQ(typed[i].route, Route::typed) << smiles;
       if (first[i].route != Route::measured || !typed[i].d298) continue;
       ++both;
-      // The fit has seen these rows: its answer must lie within 3 combined u, and must not be more certain than they are.
-      EXPECT_LT(std::abs(first[i].d298->value - typed[i].d298->value), 3 * std::hypot(first[i].d298->u, typed[i].d298->u) + 1)
-          << smiles << " " << first[i].bond << " to " << first[i].radical << ": measured " << first[i].d298->value << " u "
-          << first[i].d298->u << ", typed " << typed[i].d298->value << " u " << typed[i].d298->u;
+      if (std::abs(first[i].d298->value - typed[i].d298->value) <= 2 * std::hypot(first[i].d298->u, typed[i].d298->u)) {
+        ++within;
+      } else {
+        far += std::string(smiles) + " " + first[i].bond + " to " + first[i].radical + ": measured " +
+               format_fixed(first[i].d298->value, 1) + ", typed " + format_fixed(typed[i].d298->value, 1) + "\n";
+      }
     }
   }
   EXPECT_GT(both, 40);
+  EXPECT_GE(within, 0.95 * both) << "u is made to cover 95 % with 2 u; outside:\n" << far;
 }
 
 // Every answer can say what it is made of.
@@ -180,8 +184,12 @@ TEST(Listed, HydrogensAndHalogensAreAllThere) {
       counted += b.h_count;
       if (b.partner >= 0 && b.bond.starts_with("C-")) carbon_halogen += b.bond_count;
       EXPECT_TRUE(b.d298 || b.why) << smiles;
-      if (b.h_count > 0) EXPECT_EQ(b.bond_count, b.h_count);
-      if (b.h_count > 0) EXPECT_EQ(static_cast<std::size_t>(b.h_count), b.atoms.size() * m.atom(b.atom).hydrogens) << smiles;
+      if (b.h_count > 0) {
+        EXPECT_EQ(b.bond_count, b.h_count);
+      }
+      if (b.h_count > 0) {
+        EXPECT_EQ(static_cast<std::size_t>(b.h_count), b.atoms.size() * m.atom(b.atom).hydrogens) << smiles;
+      }
     }
     EXPECT_EQ(counted, hydrogens) << smiles;
     EXPECT_EQ(carbon_halogen, halogens) << smiles;
@@ -206,13 +214,13 @@ TEST(Listed, EquivalentSitesAreOneAnswer) {
 }
 
 // C-X from the C-H of the parent and the exchange: within the spread of published values. Blanksby and Ellison 2003 for
-// C2H5-Cl 352, C2H5-Br 293; Luo 2007 for t-C4H9-Cl 352, benzyl-Br 256, allyl-Cl 298; from memory.
+// C2H5-Cl 352, C2H5-Br 293; Luo 2007 for t-C4H9-Cl 352, benzyl-Br 239, allyl-Cl 298; from memory.
 TEST(Halides, TypedBondsAreNearPublishedOnes) {
   const struct {
     const char *smiles, *bond, *radical;
     double d, tolerance;
   } cases[] = {{"CCCl", "C-Cl", "C[CH2]", 352, 8},          {"CCBr", "C-Br", "C[CH2]", 293, 8},  {"CC(C)(C)Cl", "C-Cl", "C[C](C)C", 352, 10},
-               {"BrCc1ccccc1", "C-Br", "[CH2]c1ccccc1", 256, 15}, {"C=CCCl", "C-Cl", "[CH2]C=C", 298, 14}};
+               {"BrCc1ccccc1", "C-Br", "[CH2]c1ccccc1", 239, 10}, {"C=CCCl", "C-Cl", "[CH2]C=C", 298, 14}};
   for (const auto& c : cases) {
     const auto b = find(bonds(c.smiles, true), c.bond, c.radical);
     ASSERT_TRUE(b.d298) << c.smiles;
@@ -302,7 +310,9 @@ TEST(Typed, TheOrderOfAtomsSaysNothing) {
       for (const auto& x : p) {
         const auto& y = find(q, x.bond, x.radical);
         ASSERT_EQ(x.d298.has_value(), y.d298.has_value());
-        if (x.d298) EXPECT_NEAR(x.d298->value, y.d298->value, 1e-9) << a << " " << x.radical;
+        if (x.d298) {
+          EXPECT_NEAR(x.d298->value, y.d298->value, 1e-9) << a << " " << x.radical;
+        }
         EXPECT_EQ(x.bond_count, y.bond_count) << a << " " << x.radical;
       }
     }

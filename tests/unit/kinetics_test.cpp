@@ -1,6 +1,7 @@
 // The rate model: its derivatives, its limits, and what it reads off a structure.
 #include <gtest/gtest.h>
 
+#include <algorithm>
 #include <array>
 #include <cmath>
 #include <random>
@@ -31,12 +32,19 @@ Parameters random_parameters(std::mt19937& random) {
   return p;
 }
 
+void put(RateSite& s, std::size_t group, std::size_t distance, int n) {
+  s.count[group][distance] = static_cast<std::uint8_t>(n);
+  s.present |= 1U << group;
+}
+
 RateSite random_site(std::mt19937& random) {
   RateSite s;
   s.a_class = static_cast<AClass>(random() % static_cast<unsigned>(kAClasses));
   s.carbons = static_cast<int>(random() % 4);
-  for (auto& group : s.count) {
-    for (auto& n : group) n = random() % 4 == 0 ? static_cast<std::uint8_t>(1 + random() % 3) : std::uint8_t{0};
+  for (std::size_t g = 0; g < s.count.size(); ++g) {
+    for (std::size_t d = 0; d < s.count[g].size(); ++d) {
+      if (random() % 4 == 0) put(s, g, d, static_cast<int>(1 + random() % 3));
+    }
   }
   return s;
 }
@@ -140,16 +148,16 @@ TEST(SiteRate, PolarGroupsSlowAndFadeWithDistance) {
       double last = -1e9;
       for (std::size_t d = 1; d < static_cast<std::size_t>(kPolarReach); ++d) {
         RateSite s;
-        s.count[g][d] = 1;
-        EXPECT_NEAR(polar_energy(p, s), 6 * std::pow(0.5, static_cast<double>(d) - 1), 1e-4);
+        put(s, g, d, 1);
+        EXPECT_NEAR(site_rate(p, form, s, -20, 298).polar, 6 * std::pow(0.5, static_cast<double>(d) - 1), 1e-4);
         const double slowed = site_rate(p, form, s, -20, 298).ln_k;
         EXPECT_LT(slowed, plain) << polar_group_name(static_cast<PolarGroup>(g));
         EXPECT_GT(slowed, last) << "less from further away";
         last = slowed;
       }
       RateSite two;
-      two.count[g][0] = 2;
-      EXPECT_NEAR(polar_energy(p, two), 8, 1e-4);
+      put(two, g, 0, 2);
+      EXPECT_NEAR(site_rate(p, form, two, -20, 298).polar, 8, 1e-4);
     }
   }
 }
@@ -160,10 +168,10 @@ TEST(SiteRate, GroupsSaturate) {
   p[kp::saturation] = 10;
   p[kp::polar_alpha] = 6;
   double last = 0, last_gain = 1e9;
-  for (std::uint8_t n = 1; n <= 3; ++n) {
+  for (int n = 1; n <= 3; ++n) {
     RateSite s;
-    s.count[0][0] = n;
-    const double e = polar_energy(p, s);
+    put(s, 0, 0, n);
+    const double e = site_rate(p, {}, s, -20, 298).polar;
     EXPECT_NEAR(e, 10 * (1 - std::exp(-0.6 * n)), 1e-12);
     EXPECT_GT(e, last);
     EXPECT_LT(e - last, last_gain);
@@ -178,7 +186,7 @@ TEST(SiteRate, PolarEnergyOutsideTheBend) {
   auto p = plain_form(10);
   p[kp::polar_alpha] = 5;
   RateSite s;
-  s.count[0][0] = 1;
+  put(s, 0, 0, 1);
   const auto with = site_rate(p, {true}, s, -40, 298), without = site_rate(p, {true}, {}, -40, 298);
   EXPECT_NEAR(with.barrier - without.barrier, 5, 1e-4);
   EXPECT_EQ(with.position, without.position);
@@ -276,6 +284,10 @@ TEST(RateSiteOf, EquivalentAtomsAlike) {
         EXPECT_EQ(first.a_class, other.a_class) << smiles;
         EXPECT_EQ(first.carbons, other.carbons) << smiles;
         EXPECT_EQ(first.count, other.count) << smiles;
+        for (std::size_t g = 0; g < first.count.size(); ++g) {
+          const bool any = std::any_of(first.count[g].begin(), first.count[g].end(), [](int n) { return n > 0; });
+          EXPECT_EQ(any, (first.present >> g & 1U) == 1U) << smiles;
+        }
       }
     }
   }

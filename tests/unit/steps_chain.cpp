@@ -127,7 +127,9 @@ TEST(Chain, TheFreeQueryGivesTheSameNumber) {
         EXPECT_NEAR(r.value().dh->value, s.dh->value, 1e-9) << step_kind_name(s.kind) << " " << s.reaction;
         EXPECT_NEAR(r.value().dh->u, s.dh->u, 1e-9) << step_kind_name(s.kind) << " " << s.reaction;
         EXPECT_EQ(r.value().ds.has_value(), s.ds.has_value()) << step_kind_name(s.kind) << " " << s.reaction;
-        if (r.value().ds && s.ds) EXPECT_NEAR(*r.value().ds, *s.ds, 1e-9) << s.reaction;
+        if (r.value().ds && s.ds) {
+          EXPECT_NEAR(*r.value().ds, *s.ds, 1e-9) << s.reaction;
+        }
         if (s.kind == StepKind::abstraction && s.ea && r.value().ea) {
           EXPECT_NEAR(*r.value().ea, *s.ea, 1e-9) << s.reaction;
           EXPECT_NEAR(*r.value().k_cm3_s / *s.k_cm3_s, 1, 1e-9) << s.reaction;

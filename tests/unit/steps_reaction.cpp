@@ -33,7 +33,7 @@ TEST(FreeStep, KnownReactionEnthalpies) {
       {"[Cl].C>>Cl.[CH3]", 7.6, 1.5, "D(CH3-H) 439.3 less D(H-Cl) 431.6; Ruscic 2015 and CODATA, from memory"},
       {"[CH3].[CH3]>>CC", -377, 2.5, "Blanksby and Ellison 2003: D(CH3-CH3) 377.4, from memory"},
       {"[CH3].[Cl]>>CCl", -350.2, 3, "Blanksby and Ellison 2003: D(CH3-Cl) 350.2, from memory"},
-      {"[CH3].[O][O]>>CO[O]", -137, 5, "Knyazev and Slagle, J. Phys. Chem. A 1998, 102, 1770: 137, from memory"},
+      {"[CH3].O=O>>CO[O]", -137, 5, "Knyazev and Slagle, J. Phys. Chem. A 1998, 102, 1770: 137, from memory"},
       {"C[CH]CC>>CC=C.[CH3]", 96, 8, "dfH: 2-butyl 67, propene 20, methyl 146.7; handbook values, from memory"},
       {"C[CH2]>>C=C.[H]", 150, 5, "dfH: ethyl 120.5, ethene 52.4, H 218.0; handbook values, from memory"},
       {"CC(C)(C)[O]>>CC(C)=O.[CH3]", 19, 10, "dfH: tert-butoxyl -95, acetone -217, methyl 146.7; from memory"}};
@@ -52,7 +52,7 @@ TEST(FreeStep, KnownReactionEnthalpies) {
 // Turning a step round turns the signs and nothing else; for a bimolecular pair detailed balance ties the rates.
 TEST(FreeStep, BackwardIsForwardWithTheSignTurned) {
   const char* texts[] = {"[Br].CC(C)C>>Br.C[C](C)C", "[Cl].C>>Cl.[CH3]",  "[F].CC>>F.C[CH2]",       "[I].C>>I.[CH3]",
-                         "[CH3].ClCl>>CCl.[Cl]",     "[CH3].[CH3]>>CC",   "[CH3].[O][O]>>CO[O]",    "C[CH]CC>>CC=C.[CH3]",
+                         "[CH3].ClCl>>CCl.[Cl]",     "[CH3].[CH3]>>CC",   "[CH3].O=O>>CO[O]",       "C[CH]CC>>CC=C.[CH3]",
                          "BrBr>>[Br].[Br]",          "C[C](C)C.BrBr>>CC(C)(C)Br.[Br]", "[Cl].Cc1ccccc1>>Cl.[CH2]c1ccccc1",
                          "C.ClCl>>CCl.Cl",           "[OH].C>>O.[CH3]",   "[Br].C=C>>[CH2]CBr"};
   for (const std::string text : texts) {
@@ -83,20 +83,21 @@ TEST(FreeStep, DoesNotDependOnHowItIsWritten) {
       {"[Cl].CC=C>>Cl.[CH2]C=C", "C=CC.[Cl]>>C=C[CH2].Cl"},
       {"[Cl].CC=CC>>Cl.[CH2]C=CC", "[Cl].CC=CC>>Cl.C=C[CH]C"},
       {"[Cl].Cc1ccccc1>>Cl.[CH2]c1ccccc1", "[Cl].CC1=CC=CC=C1>>Cl.C=C1C=C[CH]C=C1"},
-      {"[CH3].[O][O]>>CO[O]", "[CH3].O=O>>CO[O]"},
+      {"[CH3].O=O>>CO[O]", "[CH3].[O][O]>>CO[O]"},
       {"[Cl].CC>>Cl.C[CH2]", "[35Cl].CC>>[H][35Cl].C[CH2]"}};
   for (const auto& [a, b] : pairs) {
     const auto p = engine().reaction(a, 350), q = engine().reaction(b, 350);
     ASSERT_TRUE(p.ok()) << a << ": " << p.error().message;
     if (!q.ok()) {
-      // A labelled atom may be refused, but not answered by another number.
-      EXPECT_EQ(q.error().cls, ErrorClass::isotope) << b << ": " << q.error().message;
+      ADD_FAILURE() << b << ": " << q.error().message;
       continue;
     }
     EXPECT_NEAR(p.value().dh->value, q.value().dh->value, 1e-9) << b;
     EXPECT_EQ(p.value().ds.has_value(), q.value().ds.has_value()) << b;
     EXPECT_EQ(p.value().ea.has_value(), q.value().ea.has_value()) << b;
-    if (p.value().ea && q.value().ea) EXPECT_NEAR(*p.value().ea, *q.value().ea, 1e-9) << b;
+    if (p.value().ea && q.value().ea) {
+      EXPECT_NEAR(*p.value().ea, *q.value().ea, 1e-9) << b;
+    }
   }
 }
 

@@ -53,7 +53,7 @@ struct BondAnswer {
 
 struct BondOptions {
   bool typed = false;     // force the typed route
-  bool details = true;    // fill text fields, sources and contributions (off: numbers only)
+  bool details = true;    // off: enthalpies, rates and shares only; no texts, sources, contributions, entropies of steps
 };
 
 enum class StepKind { initiation, abstraction, transfer, net, termination, elementary };
