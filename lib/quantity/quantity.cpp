@@ -45,7 +45,7 @@ const char* energy_unit_name(EnergyUnit unit) noexcept {
 
 Result<double> parse_number(std::string_view text) {
   std::string_view t = text;
-  if (!t.empty() && t.front() == '+') t.remove_prefix(1);
+  if (t.size() > 1 && t.front() == '+' && t[1] != '-') t.remove_prefix(1);
   double v = 0.0;
   const auto [end, ec] = std::from_chars(t.data(), t.data() + t.size(), v);
   if (ec != std::errc{} || end != t.data() + t.size() || !std::isfinite(v)) {
