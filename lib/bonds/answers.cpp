@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "adjust/combine.hpp"
 #include "halostep/structure.hpp"
 
 namespace halostep {
@@ -122,17 +123,20 @@ BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, cons
 void BondBook::explain_entry(int entry, BondAnswer& out) const {
   const auto& e = table_.bonds[static_cast<std::size_t>(entry)];
   out.sources = entry_sources(entry);
-  double total = 0;
-  for (const int row : e.rows) {
-    const auto& r = table_.bond_rows[static_cast<std::size_t>(row)];
-    if (!r.superseded) total += 1.0 / (r.u * r.u);
-  }
+  std::vector<const BondRow*> rows;
+  std::vector<Quantity> values;
   for (const int row : e.rows) {
     const auto& r = table_.bond_rows[static_cast<std::size_t>(row)];
     if (r.superseded) continue;
-    const auto& src = table_.sources[static_cast<std::size_t>(r.source)];
-    out.contributions.push_back({fmt::format("{}: {}, {}", src.id, r.method, r.provenance == "memory" ? "from memory" : "read"),
-                                 1.0 / (r.u * r.u) / total, {r.d298, r.u}, 1});
+    rows.push_back(&r);
+    values.push_back({r.d298, r.u});
+  }
+  if (rows.empty()) return;
+  const auto all = combine(values);
+  for (const auto* r : rows) {
+    const auto& src = table_.sources[static_cast<std::size_t>(r->source)];
+    out.contributions.push_back({fmt::format("{}: {}, {}", src.id, r->method, r->provenance == "memory" ? "from memory" : "read"),
+                                 combine_weight({r->d298, r->u}, all), {r->d298, r->u}, 1});
   }
 }
 

@@ -23,7 +23,8 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
          {kp::exponent, std::log(temperature / 298.0)},
          {kp::shift, slope},
          {kp::width, par(kp::tightness) * 2 * x * w / root3 - 2 * w / (root * rt)},
-         {kp::alkyl, polar * s.carbons}};
+         {kp::alkyl, polar * s.carbons},
+         {kp::a_alkyl, static_cast<double>(s.carbons)}};
   if (const int c = static_cast<int>(s.a_class); c > 0) {
     out.push_back({kp::a_class + c - 1, 1.0});
     out.push_back({kp::shift_class + c - 1, slope});

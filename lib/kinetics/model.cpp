@@ -30,6 +30,7 @@ std::vector<std::string> kinetic_parameter_names() {
   set(kp::ln_limit, "ln encounter limit");
   set(kp::limit_power, "encounter limit, power of heavy atoms");
   set(kp::saturation, "polar saturation");
+  set(kp::a_alkyl, "ln A per carbon on the centre");
   set(kp::bare, "polar, no alkyl on the centre");
   set(kp::screen, "polar, factor per alkyl on the centre");
   return n;
@@ -86,6 +87,7 @@ SiteRate site_rate(std::span<const double> p, const KineticForm& form, const Rat
   r.barrier = 0.5 * (x + root) + (form.polar_outside ? r.polar : 0.0);
   r.position = 0.5 * (1 + x / root);
   r.ln_a = at(kp::ln_a) + (c > 0 ? at(kp::a_class + c - 1) : 0.0) - at(kp::tightness) * r.position +
+           at(kp::a_alkyl) * s.carbons +
            at(kp::exponent) * std::log(temperature / 298.0);
   r.ln_k = r.ln_a - r.barrier / (kGasConstant * temperature);
   return r;

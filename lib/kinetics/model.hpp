@@ -26,7 +26,8 @@ inline constexpr int limit_power = ln_limit + 1;          // its growth with the
 inline constexpr int saturation = limit_power + 1;         // kJ/mol, what the groups' sum cannot exceed
 inline constexpr int screen = saturation + 1;             // factor on polar groups per alkyl group on the centre
 inline constexpr int bare = screen + 1;                   // kJ/mol, no alkyl group on the centre (CH4, CH3-X)
-inline constexpr int total = bare + 1;
+inline constexpr int a_alkyl = bare + 1;                  // ln A per carbon on the centre
+inline constexpr int total = a_alkyl + 1;
 }  // namespace kp
 
 /// Names of the parameters, in order.

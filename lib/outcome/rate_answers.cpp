@@ -17,38 +17,82 @@ double raw_ea(const CarrierModel& m, const SiteRate& at, double temperature) {
   return at.barrier + m.p[kp::exponent] * kGasConstant * temperature;
 }
 
-// Covariances are never formed pair by pair: shares need the variance of each kind and its covariance with the total.
-void add_errors(KindRates& r, const CarbonSites& s, const RateBook& rates, const BondModel& model, int x, const Quantity& d_hx) {
-  const std::size_t n = s.kinds.size();
-  const auto& carrier = *rates.carrier(x);
-  const auto& bonds = model.bonds();
-  std::vector<double> total(carrier.p.size(), 0.0), corrections(bonds.value.size(), 0.0);
+// Covariances are never formed pair by pair: shares need the variance of each kind and its covariance with a sum over
+// kinds of given weights.
+struct Projection {
+  std::vector<double> row;
+  double whole = 0;
+};
+
+struct Carrier {
+  const RateBook& rates;
+  const BondModel& model;
+  int x;
+  const Quantity& d_hx;
+};
+
+Projection project(const KindRates& r, const CarbonSites& s, const Carrier& c, const std::vector<double>& weight) {
+  const auto& bonds = c.model.bonds();
+  std::vector<double> total(c.rates.carrier(c.x)->p.size(), 0.0), corrections(bonds.value.size(), 0.0);
   double by_hx = 0;
-  r.own.resize(n);
-  r.shared.resize(n);
-  r.row.resize(n);
-  for (std::size_t k = 0; k < n; ++k) {
-    const auto& kind = s.kinds[k];
-    const double g = r.gradient[k].dh, w = r.by_kind[k];
-    const double own = carrier.scatter * scatter_share(kind.rate);
-    r.own[k] = own * own + g * g * kind.own_u2;
-    r.shared[k] = rates.variance(x, r.gradient[k]) + g * g * (d_hx.u * d_hx.u + bonds.covariance_of(kind.features, kind.features));
+  for (std::size_t k = 0; k < weight.size(); ++k) {
+    const double w = weight[k], g = r.gradient[k].dh;
     for (const auto& p : r.gradient[k].parameters) total[static_cast<std::size_t>(p.parameter)] += w * p.value;
-    for (const auto& f : kind.features) corrections[static_cast<std::size_t>(f.feature)] += w * g * f.count;
-    by_hx += w * g * d_hx.u * d_hx.u;
+    for (const auto& f : s.kinds[k].features) corrections[static_cast<std::size_t>(f.feature)] += w * g * f.count;
+    by_hx += w * g * c.d_hx.u * c.d_hx.u;
   }
-  const auto c_total = rates.times_covariance(x, total);
+  const auto c_total = c.rates.times_covariance(c.x, total);
   std::vector<FeatureCount> mixed;
   for (std::size_t f = 0; f < corrections.size(); ++f) {
     if (corrections[f] != 0) mixed.push_back({static_cast<int>(f), corrections[f]});
   }
-  for (std::size_t k = 0; k < n; ++k) {
+  Projection out;
+  out.row.resize(weight.size());
+  for (std::size_t k = 0; k < weight.size(); ++k) {
     const double g = r.gradient[k].dh;
     double sum = g * by_hx;
     for (const auto& p : r.gradient[k].parameters) sum += p.value * c_total[static_cast<std::size_t>(p.parameter)];
     if (!s.kinds[k].features.empty()) sum += g * bonds.covariance_of(s.kinds[k].features, mixed);
-    r.row[k] = sum;
+    out.row[k] = sum;
+    out.whole += weight[k] * sum;
   }
+  return out;
+}
+
+void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
+  const std::size_t n = s.kinds.size();
+  r.own.resize(n);
+  r.shared.resize(n);
+  for (std::size_t k = 0; k < n; ++k) {
+    const auto& kind = s.kinds[k];
+    const double g = r.gradient[k].dh, own = c.rates.carrier(c.x)->scatter * scatter_share(kind.rate);
+    r.own[k] = own * own + g * g * kind.own_u2;
+    r.shared[k] = c.rates.variance(c.x, r.gradient[k]) +
+                  g * g * (c.d_hx.u * c.d_hx.u + c.model.bonds().covariance_of(kind.features, kind.features));
+  }
+  auto all = project(r, s, c, r.by_kind);
+  r.row = std::move(all.row);
+  r.whole = all.whole;
+  // Where one site takes nearly all, differences from the total lose their digits: its rest is summed by itself.
+  for (std::size_t i = 0; i < s.sites.size(); ++i) {
+    if (inside(s, i) && (r.top < 0 || raw(s, r, i) > raw(s, r, static_cast<std::size_t>(r.top)))) r.top = static_cast<int>(i);
+  }
+  std::vector<double> rest(n, 0.0);
+  for (std::size_t i = 0; i < s.sites.size(); ++i) {
+    if (inside(s, i) && static_cast<int>(i) != r.top) rest[kind_of(s, i)] += raw(s, r, i);
+  }
+  const auto others = project(r, s, c, rest);
+  r.top_row = others.row[kind_of(s, static_cast<std::size_t>(r.top))];
+  r.top_whole = others.whole;
+}
+
+// Rate of the other sites of the same kind.
+double same_kind(const CarbonSites& s, const std::vector<double>& w, std::size_t site) {
+  double sum = 0;
+  for (std::size_t i = 0; i < w.size(); ++i) {
+    if (i != site && s.sites[i].kind == s.sites[site].kind) sum += w[i];
+  }
+  return sum;
 }
 
 }  // namespace
@@ -74,7 +118,7 @@ KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondMode
     r.damping = limited_total(r.total, r.total / q) / r.total;
     r.ea_shift = -q3 / (1 + q3) * ea_sum / r.total;
   }
-  if (with_errors) add_errors(r, s, rates, model, x, d_hx);
+  if (with_errors) add_errors(r, s, {rates, model, x, d_hx});
   return r;
 }
 
@@ -85,27 +129,33 @@ double site_ea(const CarbonSites& s, const KindRates& r, const CarrierModel& m, 
 }
 
 std::vector<Share> shares(const CarbonSites& s, const KindRates& r) {
-  double whole = 0, own = 0;
-  for (std::size_t k = 0; k < s.kinds.size(); ++k) {
-    whole += r.by_kind[k] * r.row[k];
-    own += r.by_kind[k] * r.by_kind[k] * r.own[k];
-  }
-  std::vector<Share> out(s.sites.size());
-  for (std::size_t i = 0; i < s.sites.size(); ++i) {
+  const std::size_t n = s.sites.size();
+  std::vector<double> w(n), after(n + 1, 0.0);
+  for (std::size_t i = 0; i < n; ++i) w[i] = raw(s, r, i);
+  for (std::size_t i = n; i-- > 0;) after[i] = after[i + 1] + w[i];
+  std::vector<Share> out(n);
+  double before = 0;
+  for (std::size_t i = 0; i < n; before += w[i++]) {
     if (!inside(s, i)) continue;
-    const std::size_t k = kind_of(s, i);
-    const double w = raw(s, r, i), rest = r.total - w;
-    if (rest <= r.total * 1e-15) {
+    const double rest = before + after[i + 1];
+    if (!(rest > 0)) {
       out[i] = {1.0, 1.0, 1.0};
       continue;
     }
-    // logit = ln w - ln(rest): with e = W/rest, d logit = e d(ln k of this kind) - sum over all of W_l/rest d(ln k_l).
-    const double e = 1 + w / rest;
-    const double variance = e * e * (r.shared[k] + r.own[k]) -
-                            2 * e / rest * (r.row[k] + r.by_kind[k] * r.own[k]) + (whole + own) / (rest * rest);
-    const double logit = std::log(w / rest), range = 1.96 * std::sqrt(std::max(0.0, variance));
+    // logit = ln w - ln rest; its gradient is 1 for this site's ln k and -(rate of the others of a kind)/rest for each kind.
+    const std::size_t k = kind_of(s, i);
+    const bool top = static_cast<int>(i) == r.top;
+    const double row = top ? r.top_row : r.row[k] - w[i] * r.shared[k];
+    const double whole = top ? r.top_whole : r.whole - 2 * w[i] * r.row[k] + w[i] * w[i] * r.shared[k];
+    double variance = r.shared[k] - 2 * row / rest + whole / (rest * rest);
+    for (std::size_t l = 0; l < s.kinds.size(); ++l) {
+      const double others = l != k ? r.by_kind[l] : top ? same_kind(s, w, i) : r.by_kind[l] - w[i];
+      const double c = (l == k ? 1.0 : 0.0) - others / rest;
+      variance += c * c * r.own[l];
+    }
+    const double logit = std::log(w[i] / rest), range = 1.96 * std::sqrt(std::max(0.0, variance));
     const auto back = [](double z) { return 1 / (1 + std::exp(-z)); };
-    out[i] = {w / r.total, back(logit - range), back(logit + range)};
+    out[i] = {w[i] / (w[i] + rest), back(logit - range), back(logit + range)};
   }
   return out;
 }

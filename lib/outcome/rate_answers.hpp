@@ -15,6 +15,9 @@ struct KindRates {
   std::vector<double> own;             // per kind: variance of ln k nothing else shares
   std::vector<double> by_kind;         // per kind: rate of all its sites, before the limit
   std::vector<double> row;             // per kind: shared covariance with the total, sum over kinds l of C_kl w_l
+  double whole = 0;                    // sum over kinds of w_k row_k
+  int top = -1;                        // the fastest site
+  double top_row = 0, top_whole = 0;   // row of its kind and whole, of the total without that site
   double total = 0;                    // sum over all sites, before the limit, cm3 molecule-1 s-1
   double damping = 1;                  // what the encounter limit leaves of every rate, 0..1
   double ea_shift = 0;                 // what the limit adds to every activation energy, kJ/mol

@@ -71,6 +71,21 @@ struct Species {
   int radical = -1;       // atom with the free valence
 };
 
+struct Parent {
+  Molecule molecule;
+  int atom = 0;
+};
+
+// A closed-shell species of the reaction that becomes `radical` by losing one H.
+std::optional<Parent> parent_in(const std::vector<Species>& all, const Molecule& radical) {
+  for (const auto& s : all) {
+    if (s.radical >= 0 || s.m->atom_count() != radical.atom_count()) continue;
+    const int atom = find_site(*s.m, symmetry_classes(*s.m), radical);
+    if (atom >= 0) return Parent{*s.m, atom};
+  }
+  return std::nullopt;
+}
+
 // A linear combination of named quantities; equal names cancel.
 class Hess {
  public:
@@ -134,9 +149,6 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
     hess.term("formation enthalpy of " + key, nu, e != nullptr ? e->dfh298 : std::nullopt,
               e != nullptr ? thermo_.sources(*e) : std::vector<int>{});
   };
-  const auto present = [&](const std::string& key) {
-    return std::any_of(all.begin(), all.end(), [&](const Species& s) { return s.key == key && s.radical < 0; });
-  };
 
   for (const auto& s : all) {
     const auto& m = *s.m;
@@ -160,24 +172,26 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
     }
     const bool polyatomic = m.atom_count() > 1 || m.atom(0).hydrogens > 0;
     if (s.radical >= 0 && polyatomic) {
-      const auto parent = filled(m, s.radical);
+      // R = RH + D(R-H) - H: with the RH of the reaction itself, whichever resonance form R is written in; with any RH
+      // where the table does not know R.
+      auto parent = parent_in(all, m);
+      const bool own = parent.has_value();
       const auto* known = thermo_.find_radical(m, s.key);
-      const std::string pk = parent ? canonical_smiles(*parent, false) : std::string();
-      if (parent && (present(pk) || known == nullptr || !known->dfh298)) {
-        // R = RH + D(R-H) - H
-        const Analysis a(*parent);
+      if (!own && (known == nullptr || !known->dfh298)) {
+        if (auto f = filled(m, s.radical)) parent = Parent{std::move(*f), s.radical};
+      }
+      if (parent) {
+        const Analysis a(parent->molecule);
         const auto site = std::find_if(a.sites().begin(), a.sites().end(), [&](const HydrogenSite& h) {
-          return std::find(h.atoms.begin(), h.atoms.end(), s.radical) != h.atoms.end();
+          return std::find(h.atoms.begin(), h.atoms.end(), parent->atom) != h.atoms.end();
         });
-        if (site != a.sites().end()) {
-          const auto d = bonds_.hydrogen(a, *site, false);
-          if (d.d) {
-            formation(pk, s.nu, nullptr);
-            formation("[H]", -s.nu, nullptr);
-            hess.term("D of " + pk + " to " + s.key, s.nu, d.d, bonds_.sources(a, *site, d));
-            by_bond = true;
-            continue;
-          }
+        const auto d = site != a.sites().end() ? bonds_.hydrogen(a, *site, false) : BondValue{};
+        if (d.d) {
+          formation(a.key(), s.nu, nullptr);
+          formation("[H]", -s.nu, nullptr);
+          hess.term(fmt::format("D of {} at atom {}", a.key(), site->atom), s.nu, d.d, bonds_.sources(a, *site, d));
+          by_bond = true;
+          continue;
         }
       }
       formation(s.key, s.nu, &m);

@@ -254,10 +254,12 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<Sit
       }
       const auto* h = thermo_.find("[H]");
       std::optional<Quantity> dfh_r;
-      if (d.d->d && rh_entry != nullptr && rh_entry->dfh298 && h != nullptr && h->dfh298) {
-        dfh_r = Quantity{rh_entry->dfh298->value + d.d->d->value - h->dfh298->value, std::hypot(rh_entry->dfh298->u, d.d->d->u)};
-      } else if (d.r_entry != nullptr) {
+      // The same order as in a free query, so that both give one number.
+      if (d.r_entry != nullptr && d.r_entry->dfh298) {
         dfh_r = d.r_entry->dfh298;
+      } else if (d.d->d && rh_entry != nullptr && rh_entry->dfh298 && h != nullptr && h->dfh298) {
+        dfh_r = Quantity{rh_entry->dfh298->value + d.d->d->value - h->dfh298->value,
+                         std::hypot(rh_entry->dfh298->u, d.d->d->u, h->dfh298->u)};
       }
       if (dfh_r && d.rr_entry != nullptr && d.rr_entry->dfh298) {
         d.d_rr = Quantity{2 * dfh_r->value - d.rr_entry->dfh298->value, std::hypot(2 * dfh_r->u, d.rr_entry->dfh298->u)};

@@ -109,6 +109,14 @@ void normalise_nitro(std::vector<Atom>& atoms, std::vector<Bond>& bonds) {
   }
 }
 
+// [O][O] is dioxygen, whose usual text is O=O.
+void normalise_dioxygen(std::vector<Atom>& atoms, std::vector<Bond>& bonds) {
+  const auto open_oxygen = [](const Atom& a) { return a.element == element::O && a.unpaired == 1 && a.charge == 0 && a.hydrogens == 0; };
+  if (atoms.size() != 2 || bonds.size() != 1 || !open_oxygen(atoms[0]) || !open_oxygen(atoms[1])) return;
+  bonds[0].order = BondOrder::dbl;
+  atoms[0].unpaired = atoms[1].unpaired = 0;
+}
+
 bool nonmetal(int z) {
   static constexpr int kKnown[] = {1, 5, 6, 7, 8, 9, 14, 15, 16, 17, 32, 33, 34, 35, 53};
   return std::find(std::begin(kKnown), std::end(kKnown), z) != std::end(kKnown);
@@ -175,6 +183,7 @@ Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
   std::vector<DoubleBondStereo> doubles;
   read_stereo(mol, to, bonds, tetrahedral, doubles);
   normalise_nitro(atoms, bonds);
+  normalise_dioxygen(atoms, bonds);
   if (source_atom != nullptr) *source_atom = std::move(source);
   return Molecule::from_graph(std::move(atoms), std::move(bonds), std::move(tetrahedral), std::move(doubles));
 }

@@ -22,44 +22,52 @@ compiler=$(sed -n 's/^CMAKE_CXX_COMPILER:[A-Z]*=//p' "$build/CMakeCache.txt")
 }
 command_cost=$(/usr/bin/python3 "$here/command_cost.py" "$build/halostep")
 
-echo "- machine: $(sed -n 's/^model name[^:]*: //p' /proc/cpuinfo | head -n 1), $(nproc) cores, load average before the run $load"
+model=$(sed -n 's/^model name[^:]*: //p' /proc/cpuinfo | head -n 1)
+echo "- machine: $model, $(nproc) cores, load average before the run $load"
 echo "- compiler: $("$compiler" --version | head -n 1), build type $type"
 echo "- table: $("$build/halostep" table | sed -n 's/^content hash *\(.\{16\}\).*/content hash \1/p')"
 echo
 
 # Columns of Google Benchmark: name, iterations, real_time, cpu_time, time_unit, bytes/s, items/s, ...
 awk -F, -v command_cost="$command_cost" '
-  /_median"?,/ {
+  /_(median|fastest)"?,/ {
     gsub(/"/, "", $1)
-    sub(/_median$/, "", $1)
     scale = $5 == "ns" ? 1e-6 : $5 == "us" ? 1e-3 : 1
+    if (sub(/_fastest$/, "", $1)) {
+      least[$1] = $4 * scale
+      next
+    }
+    sub(/_median$/, "", $1)
     ms[$1] = $4 * scale
     rate[$1] = $7
   }
   function target(what, figure, unit, limit) {
-    printf "| %s | %.*f%s | %s%s | %s |\n", what, figure < 10 ? 2 : 1, figure, unit, limit, unit, figure <= limit ? "met" : "not met"
+    verdict = figure <= limit ? "met" : "not met"
+    printf "| %s | %.*f%s | %s%s | %s |\n", what, figure < 10 ? 2 : 1, figure, unit, limit, unit, verdict
   }
   END {
     split(command_cost, command, " ")
     base = "nci/babel_parse_symmetry"
     print "| target | figure | limit | |"
     print "|---|---|---|---|"
-    target("NCI, parse and study, over Open Babel parse and symmetry", ms["nci/parse_study"] / ms[base], "", 1.5)
+    target("NCI, parse and study over Open Babel parse and symmetry", ms["nci/parse_study"] / ms[base], "", 1.5)
+    target("the same, fastest repetitions", least["nci/parse_study"] / least[base], "", 1.5)
     target("C4000 alkane, study after parsing", ms["c4000/study"], " ms", 50)
     target("peak memory of one outcome query", command[2], " MB", 80)
     target("cold start, one substrate, median of 21", command[1], " ms", 60)
     print ""
-    print "| case | ms | µs per structure | structures per s | over the yardstick |"
-    print "|---|---|---|---|---|"
+    print "| case | ms | fastest ms | µs per structure | structures per s | over the yardstick |"
+    print "|---|---|---|---|---|---|"
     n = split("nci/babel_parse nci/babel_parse_symmetry nci/parse nci/bonds nci/study nci/parse_study nci/symmetry " \
               "nci/canonical c4000/parse c4000/study c4000/symmetry c4000/canonical open_engine", order, " ")
     for (i = 1; i <= n; ++i) {
       name = order[i]
       if (!(name in ms))
-        printf "| %s | not run | | | |\n", name
+        printf "| %s | not run | | | | |\n", name
       else if (name ~ /^nci/)
-        printf "| %s | %.3g | %.3g | %.4g | %.2f |\n", name, ms[name], 1e6 / rate[name], rate[name], ms[name] / ms[base]
+        printf "| %s | %.3g | %.3g | %.3g | %.4g | %.2f |\n", name, ms[name], least[name], 1e6 / rate[name], rate[name],
+               ms[name] / ms[base]
       else
-        printf "| %s | %.3g | | | |\n", name, ms[name]
+        printf "| %s | %.3g | %.3g | | | |\n", name, ms[name], least[name]
     }
   }' "$results"

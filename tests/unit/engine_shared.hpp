@@ -36,10 +36,11 @@ inline std::string same_as(std::string_view smiles) { return canonical_smiles(re
 
 /// Substrates of every kind the typed model covers.
 inline constexpr std::string_view kSubstrates[] = {
-    "C",         "CC",         "CCC",          "CCCC",       "CC(C)C",       "CC(C)(C)C",     "CC(C)C(C)C",   "CCCCCCCC",
-    "C1CC1",     "C1CCCC1",    "C1CCCCC1",     "CC1CCCCC1",  "C1CC2CCC1C2",  "C1C2CC3CC1CC(C2)C3", "Cc1ccccc1", "CCc1ccccc1",
-    "CC(C)c1ccccc1", "CC=C",   "CC(C)=C",      "CC#C",       "CO",           "CCO",           "COC",          "C1CCOC1",
-    "CC=O",      "CC(C)=O",    "CC(=O)OC",     "CC(=O)O",    "CC#N",         "CN(C)C",        "CSC",          "CF",
-    "CCl",       "ClCCl",      "ClC(Cl)Cl",    "CC(F)(F)F",  "CCCl",         "CCBr",          "FCCF",         "C[N+](=O)[O-]"};
+    "C",         "CC",         "CCC",           "CCCC",     "CC(C)C",       "CC(C)(C)C",   "CC(C)C(C)C",
+    "CCCCCCCC",  "C1CC1",      "C1CCCC1",       "C1CCCCC1", "CC1CCCCC1",    "C1CC2CCC1C2", "C1C2CC3CC1CC(C2)C3",
+    "Cc1ccccc1", "CCc1ccccc1", "CC(C)c1ccccc1", "CC=C",     "CC(C)=C",      "CC#C",        "CO",
+    "CCO",       "COC",        "C1CCOC1",       "CC=O",     "CC(C)=O",      "CC(=O)OC",    "CC(=O)O",
+    "CC#N",      "CN(C)C",     "CSC",           "CF",       "CCl",          "ClCCl",       "ClC(Cl)Cl",
+    "CC(F)(F)F", "CCCl",       "CCBr",          "FCCF",     "C[N+](=O)[O-]"};
 
 }  // namespace halostep

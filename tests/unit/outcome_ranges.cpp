@@ -66,7 +66,8 @@ void add_model(Table& t, const std::string& name, const Question& q, std::vector
   auto& m = model(t, name);
   const std::size_t n = m.values.size();
   std::vector<std::vector<double>> j;
-  for (std::size_t i = 0; i < n; ++i) j.push_back(slope(t, m.values[i], 1e-4 * std::max(1.0, std::abs(m.values[i])), q));
+  for (std::size_t i = 0; i < n; ++i)
+    j.push_back(slope(t, m.values[i], 1e-4 * std::max(1.0, std::abs(m.values[i])), q));
   for (std::size_t s = 0; s < variance.size(); ++s) {
     for (std::size_t i = 0; i < n; ++i) {
       for (std::size_t k = 0; k < n; ++k) variance[s] += j[i][s] * j[k][s] * m.covariance[i * n + k];
@@ -93,8 +94,8 @@ void add_bonds(Table& t, const Question& q, std::vector<double>& variance) {
   }
 }
 
-// Adds what only one site has: scatter of the rate model and, on the typed route, of the bond model. Each kind of C-H of
-// the molecules asked about here is one site. d ln k / dD = -position / RT holds without tightness.
+// Adds what only one site has: scatter of the rate model and, on the typed route, of the bond model. Each kind of C-H
+// of the molecules asked about here is one site. d ln k / dD = -position / RT holds without tightness.
 void add_own(Table& t, const Question& q, const std::vector<SiteOutcome>& sites, std::vector<double>& variance) {
   const double kinetic = setting(model(t, std::string("kinetics.") + halogen_name(q.halogen)), "scatter");
   const double bond = setting(model(t, "bonds"), "scatter");
@@ -126,7 +127,8 @@ void expect_range(const Question& q) {
     const double u = std::sqrt(variance[s]);
     EXPECT_NEAR((logit(sites[s].share_high) - logit(sites[s].share_low)) / (2 * 1.96) / u, 1, 2e-3)
         << canonical_smiles(q.molecule) << " " << halogen_name(q.halogen) << " site " << s;
-    EXPECT_NEAR(logit(sites[s].share_high) + logit(sites[s].share_low), 2 * logit(sites[s].share), 1e-6) << "even on the logit scale";
+    EXPECT_NEAR(logit(sites[s].share_high) + logit(sites[s].share_low), 2 * logit(sites[s].share), 1e-6)
+        << "even on the logit scale";
   }
 }
 

@@ -3,7 +3,6 @@
 
 #include <cmath>
 #include <map>
-#include <thread>
 
 #include "engine_shared.hpp"
 
@@ -57,6 +56,23 @@ TEST(Shares, SumToOneAndStayInsideTheirRange) {
   }
 }
 
+// Of two sites one's share is what the other leaves, and so are the ends of the ranges, also where one takes nearly
+// all.
+TEST(Shares, TwoSitesMirrorEachOther) {
+  int pairs = 0;
+  for (const auto smiles : kSubstrates) {
+    for (const double t : {298.15, 450.0}) {
+      for (const auto& h : outcome(smiles, t)) {
+        if (h.sites.size() != 2) continue;
+        ++pairs;
+        EXPECT_NEAR(h.sites[0].share_low + h.sites[1].share_high, 1, 1e-6) << where(smiles, h);
+        EXPECT_NEAR(h.sites[0].share_high + h.sites[1].share_low, 1, 1e-6) << where(smiles, h);
+      }
+    }
+  }
+  EXPECT_GT(pairs, 40);
+}
+
 TEST(Shares, OneSiteTakesAll) {
   for (const auto* smiles : {"C", "CC", "CC(C)(C)C", "C1CCCCC1", "COC", "CC(C)=O", "CCl", "ClC(Cl)Cl"}) {
     for (const auto& h : outcome(smiles)) {
@@ -90,8 +106,8 @@ TEST(Selectivity, PartsAddUpToTheRatioOfTheRates) {
   }
 }
 
-// Between two alkyl sites only enthalpy, its curvature and the number of H can differ, but for the carbons on the centre
-// (polar, alkyl); no A-factor class is involved.
+// Between two alkyl sites only enthalpy, its curvature and the number of H can differ, but for the carbons on the
+// centre (polar, alkyl); no A-factor class is involved.
 TEST(Selectivity, AlkylSitesHaveNoClassPart) {
   for (const auto* smiles : {"CC(C)C", "CCC", "CC(C)C(C)C"}) {
     for (const auto& h : outcome(smiles)) {
@@ -105,8 +121,8 @@ TEST(Selectivity, AlkylSitesHaveNoClassPart) {
   }
 }
 
-// Hammond, J. Am. Chem. Soc. 1955, 77, 334: the more endothermic the step, the later its transition state. By halogen on
-// one bond, and for one halogen from the weaker to the stronger bond of an alkane.
+// Hammond, J. Am. Chem. Soc. 1955, 77, 334: the more endothermic the step, the later its transition state. By halogen
+// on one bond, and for one halogen from the weaker to the stronger bond of an alkane.
 TEST(Hammond, TransitionStateIsLaterWhereTheStepIsMoreEndothermic) {
   for (const auto* smiles : {"CC(C)C", "CCC", "CC(C)C(C)C"}) {
     const auto all = outcome(smiles);
@@ -150,8 +166,10 @@ std::map<std::string, SiteOutcome> by_radical(const HalogenOutcome& h) {
 
 TEST(Shares, DoNotDependOnTheOrderOfAtoms) {
   const std::pair<const char*, const char*> pairs[] = {
-      {"CCC(C)C", "CC(C)CC"},   {"CCCCO", "OCCCC"},           {"Cc1ccccc1CC", "CCc1ccccc1C"}, {"ClCCCC", "CCCCCl"},
-      {"C1CCOC1", "O1CCCC1"},   {"CC(=O)OCC", "C(C)OC(C)=O"}, {"C1CC2CCC1C2", "C1C2CCC1CC2"}, {"CC(C)(C)CC(C)C", "C(C(C)C)C(C)(C)C"},
+      {"CCC(C)C", "CC(C)CC"},         {"CCCCO", "OCCCC"},
+      {"Cc1ccccc1CC", "CCc1ccccc1C"}, {"ClCCCC", "CCCCCl"},
+      {"C1CCOC1", "O1CCCC1"},         {"CC(=O)OCC", "C(C)OC(C)=O"},
+      {"C1CC2CCC1C2", "C1C2CCC1CC2"}, {"CC(C)(C)CC(C)C", "C(C(C)C)C(C)(C)C"},
       {"C[C@H](F)CC", "CC[C@H](C)F"}};
   for (const auto& [forward, backward] : pairs) {
     const auto a = outcome(forward, 350), b = outcome(backward, 350);
@@ -240,135 +258,6 @@ TEST(Outside, DeuteriumIsNoSite) {
   for (const auto& h : outcome("[2H]C(C)(C)C")) {
     ASSERT_EQ(h.sites.size(), 1U);
     EXPECT_EQ(h.sites[0].h_count, 9);
-  }
-}
-
-void expect_same(const SiteOutcome& a, const SiteOutcome& b) {
-  EXPECT_EQ(a.radical, b.radical);
-  EXPECT_EQ(a.type, b.type);
-  EXPECT_EQ(a.atoms, b.atoms);
-  EXPECT_EQ(a.k_cm3_s, b.k_cm3_s);
-  EXPECT_EQ(a.ea, b.ea);
-  EXPECT_EQ(a.share, b.share);
-  EXPECT_EQ(a.share_low, b.share_low);
-  EXPECT_EQ(a.share_high, b.share_high);
-  EXPECT_EQ(a.dh.value, b.dh.value);
-  EXPECT_EQ(a.dh.u, b.dh.u);
-  EXPECT_EQ(a.u_log10_k, b.u_log10_k);
-  EXPECT_EQ(a.why_extrapolated, b.why_extrapolated);
-}
-
-void expect_same(const HalogenOutcome& a, const HalogenOutcome& b) {
-  ASSERT_EQ(a.sites.size(), b.sites.size());
-  for (std::size_t i = 0; i < a.sites.size(); ++i) expect_same(a.sites[i], b.sites[i]);
-  EXPECT_EQ(a.notes, b.notes);
-  EXPECT_EQ(a.sources, b.sources);
-  EXPECT_EQ(a.k_total, b.k_total);
-}
-
-void expect_same(const StepAnswer& a, const StepAnswer& b) {
-  EXPECT_EQ(a.reaction, b.reaction);
-  EXPECT_EQ(a.radical, b.radical);
-  EXPECT_EQ(a.kind, b.kind);
-  EXPECT_EQ(a.dh.has_value(), b.dh.has_value());
-  if (a.dh && b.dh) {
-    EXPECT_EQ(a.dh->value, b.dh->value);
-    EXPECT_EQ(a.dh->u, b.dh->u);
-  }
-  EXPECT_EQ(a.ds, b.ds);
-  EXPECT_EQ(a.dg, b.dg);
-  EXPECT_EQ(a.log10_k, b.log10_k);
-  EXPECT_EQ(a.ea, b.ea);
-  EXPECT_EQ(a.k_cm3_s, b.k_cm3_s);
-  EXPECT_EQ(a.sources, b.sources);
-  EXPECT_EQ(a.why_dh + a.why_ds + a.why_ea, b.why_dh + b.why_ds + b.why_ea);
-}
-
-void expect_same(const BondAnswer& a, const BondAnswer& b) {
-  EXPECT_EQ(a.bond, b.bond);
-  EXPECT_EQ(a.radical, b.radical);
-  EXPECT_EQ(a.type, b.type);
-  EXPECT_EQ(a.h_count, b.h_count);
-  EXPECT_EQ(a.d298.has_value(), b.d298.has_value());
-  if (a.d298 && b.d298) {
-    EXPECT_EQ(a.d298->value, b.d298->value);
-  }
-  EXPECT_EQ(a.route, b.route);
-  EXPECT_EQ(a.sources, b.sources);
-  EXPECT_EQ(a.contributions.size(), b.contributions.size());
-}
-
-void expect_same(const Study& a, const Study& b) {
-  ASSERT_EQ(a.bonds.size(), b.bonds.size());
-  ASSERT_EQ(a.steps.size(), b.steps.size());
-  ASSERT_EQ(a.halogens.size(), b.halogens.size());
-  for (std::size_t i = 0; i < a.bonds.size(); ++i) expect_same(a.bonds[i], b.bonds[i]);
-  for (std::size_t i = 0; i < a.steps.size(); ++i) expect_same(a.steps[i], b.steps[i]);
-  for (std::size_t i = 0; i < a.halogens.size(); ++i) expect_same(a.halogens[i], b.halogens[i]);
-}
-
-TEST(StudyOfAll, EqualsTheThreeCalls) {
-  for (const auto smiles : kSubstrates) {
-    const Molecule m = read(smiles);
-    for (const bool typed : {false, true}) {
-      const auto study = engine().study(m, kAllHalogens, 350, {typed, true});
-      const auto bonds = engine().bonds(m, {typed, true});
-      const auto steps = engine().steps(m, kAllHalogens, 350, {typed, true});
-      const auto shares = engine().outcome(m, kAllHalogens, 350, {typed, true});
-      ASSERT_EQ(study.ok(), bonds.ok()) << smiles;
-      ASSERT_TRUE(study.ok() && steps.ok()) << smiles;
-      expect_same(study.value(), {bonds.value(), steps.value(), shares.ok() ? shares.value() : std::vector<HalogenOutcome>{}});
-    }
-  }
-}
-
-TEST(StudyOfAll, WithoutDetailsTheNumbersAreTheSame) {
-  for (const auto smiles : kSubstrates) {
-    const Molecule m = read(smiles);
-    const auto full = engine().study(m, kAllHalogens, 350, {false, true}), lean = engine().study(m, kAllHalogens, 350, {false, false});
-    ASSERT_TRUE(full.ok() && lean.ok()) << smiles;
-    ASSERT_EQ(full.value().steps.size(), lean.value().steps.size());
-    for (std::size_t i = 0; i < lean.value().bonds.size(); ++i) {
-      const auto &a = full.value().bonds[i], &b = lean.value().bonds[i];
-      EXPECT_EQ(a.d298.has_value(), b.d298.has_value()) << smiles;
-      if (a.d298 && b.d298) {
-        EXPECT_EQ(a.d298->value, b.d298->value) << smiles;
-      }
-    }
-    for (std::size_t x = 0; x < lean.value().halogens.size(); ++x) {
-      for (std::size_t i = 0; i < lean.value().halogens[x].sites.size(); ++i) {
-        EXPECT_EQ(full.value().halogens[x].sites[i].share, lean.value().halogens[x].sites[i].share) << smiles;
-      }
-    }
-  }
-}
-
-// Eight threads on a fresh engine, so that what is built at the first question is built under contention too.
-TEST(Threads, EightAskingAtOnceGetTheSameAnswers) {
-  auto fresh = Engine::open();
-  ASSERT_TRUE(fresh.ok());
-  const auto& shared = fresh.value();
-  std::vector<Molecule> molecules;
-  for (const auto smiles : kSubstrates) molecules.push_back(read(smiles));
-  std::vector<std::vector<Study>> answers(8);
-  {
-    std::vector<std::jthread> threads;
-    for (std::size_t k = 0; k < answers.size(); ++k) {
-      threads.emplace_back([&, k] {
-        for (std::size_t i = 0; i < molecules.size(); ++i) {
-          const std::size_t j = (i + k * 5) % molecules.size();  // not all on the same molecule
-          auto s = shared.study(molecules[j], kAllHalogens, 298.15);
-          answers[k].push_back(s.ok() ? std::move(s).value() : Study{});
-        }
-      });
-    }
-  }
-  for (std::size_t k = 0; k < answers.size(); ++k) {
-    for (std::size_t i = 0; i < molecules.size(); ++i) {
-      const auto alone = engine().study(molecules[(i + k * 5) % molecules.size()], kAllHalogens, 298.15);
-      ASSERT_TRUE(alone.ok());
-      expect_same(answers[k][i], alone.value());
-    }
   }
 }
 

@@ -13,17 +13,47 @@ namespace halostep {
 namespace {
 
 TEST(ParseNumber, WholeTextOrNothing) {
-  const std::pair<std::string_view, double> good[] = {
-      {"0", 0},           {"-0", 0},        {"+1.5", 1.5},    {".5", 0.5},         {"5.", 5},
-      {"439.30", 439.3},  {"-132.5", -132.5}, {"1e3", 1000},  {"1.03E-13", 1.03e-13}, {"6.02214076e23", 6.02214076e23},
-      {"0.1", 0.1},       {"123456789012345678", 123456789012345678.0}};
+  const std::pair<std::string_view, double> good[] = {{"0", 0},
+                                                      {"-0", 0},
+                                                      {"+1.5", 1.5},
+                                                      {".5", 0.5},
+                                                      {"5.", 5},
+                                                      {"439.30", 439.3},
+                                                      {"-132.5", -132.5},
+                                                      {"1e3", 1000},
+                                                      {"1.03E-13", 1.03e-13},
+                                                      {"6.02214076e23", 6.02214076e23},
+                                                      {"0.1", 0.1},
+                                                      {"123456789012345678", 123456789012345678.0}};
   for (const auto& [text, value] : good) {
     const auto r = parse_number(text);
     ASSERT_TRUE(r.ok()) << text;
     EXPECT_EQ(r.value(), value) << text;
   }
-  for (const std::string_view bad : {"", " ", "+", "-", ".", "e5", "1,5", "1.5 ", " 1.5", "1.5x", "0x10", "1e", "--1", "+-1",
-                                     "-+1", "++1", "inf", "-inf", "nan", "1e400", "1.2.3", "\xE2\x88\x92""1", "1\n"}) {
+  for (const std::string_view bad : {"",
+                                     " ",
+                                     "+",
+                                     "-",
+                                     ".",
+                                     "e5",
+                                     "1,5",
+                                     "1.5 ",
+                                     " 1.5",
+                                     "1.5x",
+                                     "0x10",
+                                     "1e",
+                                     "--1",
+                                     "+-1",
+                                     "-+1",
+                                     "++1",
+                                     "inf",
+                                     "-inf",
+                                     "nan",
+                                     "1e400",
+                                     "1.2.3",
+                                     "\xE2\x88\x92"
+                                     "1",
+                                     "1\n"}) {
     const auto r = parse_number(bad);
     ASSERT_FALSE(r.ok()) << "'" << bad << "'";
     EXPECT_EQ(r.error().cls, ErrorClass::syntax);
@@ -41,7 +71,8 @@ TEST(ParseTemperature, UnitsAndLimits) {
     ASSERT_TRUE(r.ok()) << text;
     EXPECT_NEAR(r.value(), kelvin, 1e-9) << text;
   }
-  for (const std::string_view bad : {"", "C", "K", "warm", "77F", "25c", "25CC", "25KC", "1,5C", "C25", "298.15k", "nanK"}) {
+  for (const std::string_view bad :
+       {"", "C", "K", "warm", "77F", "25c", "25CC", "25KC", "1,5C", "C25", "298.15k", "nanK"}) {
     const auto r = parse_temperature(bad);
     ASSERT_FALSE(r.ok()) << bad;
     EXPECT_EQ(r.error().cls, ErrorClass::usage);
@@ -99,7 +130,8 @@ TEST(Sha256, Fips180) {
       {"abc", "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"},
       {"abcdbcdecdefdefgefghfghighijhijkijkljklmklmnlmnomnopnopq",
        "248d6a61d20638b8e5c026930c3e6039a33ce45964ff2167f6ecedd419db06c1"},
-      {"abcdefghbcdefghicdefghijdefghijkefghijklfghijklmghijklmnhijklmnoijklmnopjklmnopqklmnopqrlmnopqrsmnopqrstnopqrstu",
+      {"abcdefghbcdefghicdefghijdefghijkefghijklfghijklmghijklmnhijklmnoijklmnopjklmnopqklmnopqrlmnopqrsmnopqrstnopqrst"
+       "u",
        "cf5b16a778af8380036ce59e7b0492370b249b11e8f07a51afac45037afee9d1"},
       {std::string(1000000, 'a'), "cdc76e5c9914fb9281a1c7e284d73e67f1809a48a497200e046d39ccc7112cd0"}};
   for (const auto& [text, digest] : vectors) EXPECT_EQ(sha256_hex(text), digest) << text.size() << " bytes";
@@ -135,7 +167,8 @@ TEST(LocaleIndependence, CppLocaleWithAComma) {
 TEST(LocaleIndependence, CLocaleWithAComma) {
   const std::string before = std::setlocale(LC_ALL, nullptr);
   bool found = false;
-  for (const char* name : {"de_DE.UTF-8", "de_DE.utf8", "fr_FR.UTF-8", "fr_FR.utf8", "nl_NL.UTF-8", "cs_CZ.UTF-8", "de_DE"}) {
+  for (const char* name :
+       {"de_DE.UTF-8", "de_DE.utf8", "fr_FR.UTF-8", "fr_FR.utf8", "nl_NL.UTF-8", "cs_CZ.UTF-8", "de_DE"}) {
     if (std::setlocale(LC_ALL, name) == nullptr || std::localeconv()->decimal_point[0] != ',') continue;
     found = true;
     expect_plain_numbers();

@@ -12,7 +12,8 @@ namespace {
 
 using testing::HasSubstr;
 
-std::vector<StepAnswer> steps(std::string_view smiles, Halogen x, double t = kReferenceTemperature, bool typed = false) {
+std::vector<StepAnswer> steps(std::string_view smiles, Halogen x, double t = kReferenceTemperature,
+                              bool typed = false) {
   auto r = engine().steps(read(smiles), {&x, 1}, t, {typed, true});
   if (!r.ok()) {
     ADD_FAILURE() << smiles << ": " << r.error().message;
@@ -21,7 +22,8 @@ std::vector<StepAnswer> steps(std::string_view smiles, Halogen x, double t = kRe
   return std::move(r).value();
 }
 
-const StepAnswer& find(const std::vector<StepAnswer>& all, StepKind kind, const std::string& radical, std::size_t which = 0) {
+const StepAnswer& find(const std::vector<StepAnswer>& all, StepKind kind, const std::string& radical,
+                       std::size_t which = 0) {
   static const StepAnswer none;
   for (const auto& s : all) {
     if (s.kind == kind && s.radical == radical && which-- == 0) return s;
@@ -79,7 +81,8 @@ TEST(Chain, TerminationIsTheBondOfTheHalide) {
         ASSERT_TRUE(bonds.ok()) << halide;
         bool found = false;
         for (const auto& b : bonds.value()) {
-          if (b.partner < 0 || b.radical != radical || b.bond != std::string("C-") + halogen_name(x) || !b.d298) continue;
+          if (b.partner < 0 || b.radical != radical || b.bond != std::string("C-") + halogen_name(x) || !b.d298)
+            continue;
           EXPECT_NEAR(b.d298->value, -e.dh->value, 1e-6) << halide << " > " << radical;
           EXPECT_NEAR(b.d298->u, e.dh->u, 1e-6) << halide << " > " << radical;
           found = true;
@@ -147,7 +150,8 @@ TEST(Thermo, EntropyEnthalpyAndEquilibriumAgree) {
   int checked = 0;
   for (const auto* smiles : {"C", "CC", "CC(C)C", "CCC", "Cc1ccccc1", "CCl"}) {
     for (const auto x : kAllHalogens) {
-      const auto cold = steps(smiles, x, 298.15), hot = steps(smiles, x, 500), hotter = steps(smiles, x, 500.01), below = steps(smiles, x, 499.99);
+      const auto cold = steps(smiles, x, 298.15), hot = steps(smiles, x, 500), hotter = steps(smiles, x, 500.01),
+                 below = steps(smiles, x, 499.99);
       for (std::size_t i = 0; i < hot.size(); ++i) {
         if (!hot[i].dg) continue;
         ++checked;
@@ -170,7 +174,8 @@ TEST(Thermo, EntropiesAddUp) {
       for (const double t : {298.15, 450.0}) {
         const auto all = steps(smiles, x, t);
         for (const auto& r : radicals(all)) {
-          const auto &a = find(all, StepKind::abstraction, r), &b = find(all, StepKind::transfer, r), &n = find(all, StepKind::net, r);
+          const auto &a = find(all, StepKind::abstraction, r), &b = find(all, StepKind::transfer, r),
+                     &n = find(all, StepKind::net, r);
           if (!a.ds || !b.ds || !n.ds) continue;
           EXPECT_NEAR(*a.ds + *b.ds, *n.ds, 1e-9) << smiles;
           EXPECT_NEAR(*a.log10_k + *b.log10_k, *n.log10_k, 1e-9) << smiles;
@@ -184,7 +189,8 @@ TEST(Thermo, EntropiesAddUp) {
 TEST(Chain, NetIsKnownBetterThanItsPartsWhereTheyShareABond) {
   const auto all = steps("CCCCCCCC", Halogen::Cl);
   for (const auto& r : radicals(all)) {
-    const auto &a = find(all, StepKind::abstraction, r), &t = find(all, StepKind::transfer, r), &n = find(all, StepKind::net, r);
+    const auto &a = find(all, StepKind::abstraction, r), &t = find(all, StepKind::transfer, r),
+               &n = find(all, StepKind::net, r);
     EXPECT_LT(n.dh->u, std::hypot(a.dh->u, t.dh->u)) << r;
   }
 }

@@ -254,6 +254,8 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
   set(kp::saturation, cl ? (*cl)[kp::saturation] : 20.0, cl ? 3.0 : 3.0);
   set(kp::screen, cl ? (*cl)[kp::screen] : 0.6, cl ? 0.1 : 0.2);
   set(kp::bare, 0.0, 1.0);
+  // The late transition states of Br and I loosen with each alkyl group; those of F and Cl are loose from the start.
+  set(kp::a_alkyl, 0.0, carrier > 1 ? 0.5 : 1e-6);
   for (int c = 1; c < kAClasses; ++c) {
     set(kp::a_class + c - 1, 0.0, 0.7);
     set(kp::shift_class + c - 1, 0.0, 4.0);
