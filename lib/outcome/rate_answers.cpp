@@ -61,6 +61,7 @@ Projection project(const KindRates& r, const CarbonSites& s, const Carrier& c, c
 
 void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
   const std::size_t n = s.kinds.size();
+  if (n == 0) return;
   r.own.resize(n);
   r.shared.resize(n);
   for (std::size_t k = 0; k < n; ++k) {

@@ -146,8 +146,35 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
   bool by_bond = false, by_formation = false;
   const auto formation = [&](const std::string& key, double nu, const Molecule* radical) {
     const auto* e = radical != nullptr ? thermo_.find_radical(*radical, key) : thermo_.find(key);
-    hess.term("formation enthalpy of " + key, nu, e != nullptr ? e->dfh298 : std::nullopt,
+    hess.term("formation enthalpy of " + (e != nullptr ? e->smiles : key), nu, e != nullptr ? e->dfh298 : std::nullopt,
               e != nullptr ? thermo_.sources(*e) : std::vector<int>{});
+  };
+
+  // R = RH + D(R-H) - H: with the RH of the reaction itself, whichever resonance form R is written in; with any RH where
+  // the table does not know R.
+  const auto add_radical = [&](const Molecule& m, const std::string& key, int centre, double nu) {
+    auto parent = parent_in(all, m);
+    const auto* known = thermo_.find_radical(m, key);
+    if (!parent && (known == nullptr || !known->dfh298)) {
+      if (auto f = filled(m, centre)) parent = Parent{std::move(*f), centre};
+    }
+    if (parent) {
+      const Analysis a(parent->molecule);
+      const auto site = std::find_if(a.sites().begin(), a.sites().end(), [&](const HydrogenSite& h) {
+        return std::find(h.atoms.begin(), h.atoms.end(), parent->atom) != h.atoms.end();
+      });
+      const auto d = site != a.sites().end() ? bonds_.hydrogen(a, *site, false) : BondValue{};
+      if (d.d) {
+        formation(a.key(), nu, nullptr);
+        formation("[H]", -nu, nullptr);
+        const auto radical = canonical_smiles(parent->molecule.without_hydrogen(site->atom), false);
+        hess.term(fmt::format("D of {} to {}", a.key(), radical), nu, d.d, bonds_.sources(a, *site, d));
+        by_bond = true;
+        return;
+      }
+    }
+    formation(key, nu, &m);
+    by_formation = true;
   };
 
   for (const auto& s : all) {
@@ -172,30 +199,7 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
     }
     const bool polyatomic = m.atom_count() > 1 || m.atom(0).hydrogens > 0;
     if (s.radical >= 0 && polyatomic) {
-      // R = RH + D(R-H) - H: with the RH of the reaction itself, whichever resonance form R is written in; with any RH
-      // where the table does not know R.
-      auto parent = parent_in(all, m);
-      const bool own = parent.has_value();
-      const auto* known = thermo_.find_radical(m, s.key);
-      if (!own && (known == nullptr || !known->dfh298)) {
-        if (auto f = filled(m, s.radical)) parent = Parent{std::move(*f), s.radical};
-      }
-      if (parent) {
-        const Analysis a(parent->molecule);
-        const auto site = std::find_if(a.sites().begin(), a.sites().end(), [&](const HydrogenSite& h) {
-          return std::find(h.atoms.begin(), h.atoms.end(), parent->atom) != h.atoms.end();
-        });
-        const auto d = site != a.sites().end() ? bonds_.hydrogen(a, *site, false) : BondValue{};
-        if (d.d) {
-          formation(a.key(), s.nu, nullptr);
-          formation("[H]", -s.nu, nullptr);
-          hess.term(fmt::format("D of {} at atom {}", a.key(), site->atom), s.nu, d.d, bonds_.sources(a, *site, d));
-          by_bond = true;
-          continue;
-        }
-      }
-      formation(s.key, s.nu, &m);
-      by_formation = true;
+      add_radical(m, s.key, s.radical, s.nu);
       continue;
     }
     // RX beside its radical R: RX = R + X - D(R-X).
@@ -214,7 +218,7 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
         return q.partner >= 0 && q.d298 && q.atom == c && m.atom(q.partner).element == m.atom(i).element;
       });
       if (b == list.end()) continue;
-      formation(rk, s.nu, &rad);
+      add_radical(rad, rk, radical_atom(rad), s.nu);
       formation(kAtom[x], s.nu, nullptr);
       hess.term("D of " + s.key, -s.nu, b->d298, b->sources);
       by_bond = done = true;
