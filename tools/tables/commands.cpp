@@ -7,6 +7,7 @@
 #include <filesystem>
 #include <optional>
 
+#include "tables/adjust_network.hpp"
 #include "tables/columns.hpp"
 #include "tables/fit.hpp"
 #include "tables/fitted_file.hpp"
@@ -123,6 +124,11 @@ int refit_command(const std::string& dir) {
 int crossval_command(const std::string& dir) {
   const auto curated = checked(dir);
   return curated ? crossval(curated->table) : 1;
+}
+
+int adjust_command(const std::string& dir, const std::string& csv) {
+  const auto curated = checked(dir);
+  return curated ? adjust_report(curated->table, csv) : 1;
 }
 
 }  // namespace halostep

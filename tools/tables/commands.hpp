@@ -13,5 +13,7 @@ int compile_command(const std::string& dir, const std::string& out);
 int refit_command(const std::string& dir);
 /// Checks, then calls crossval() of tables/fit.hpp.
 int crossval_command(const std::string& dir);
+/// Checks, then adjusts all enthalpies jointly and prints the result; `csv` (may be empty): where the system goes.
+int adjust_command(const std::string& dir, const std::string& csv);
 
 }  // namespace halostep

@@ -19,6 +19,10 @@ int main(int argc, char** argv) {
   compile->callback([&] { code = halostep::compile_command(dir, out); });
   command("refit", "check, fit, and write fitted.json")->callback([&] { code = halostep::refit_command(dir); });
   command("crossval", "predict rows left out of the fit")->callback([&] { code = halostep::crossval_command(dir); });
+  auto* adjust = command("adjust", "adjust all enthalpies of formation and bond energies jointly and print the result");
+  std::string csv;
+  adjust->add_option("--csv", csv, "write the system and its solution to this file");
+  adjust->callback([&] { code = halostep::adjust_command(dir, csv); });
   app.footer(
       "Exit code: 0 done, 1 faults found (one a line on stderr: file:line: reason), 2 wrong usage.\n"
       "Example: halostep-tables compile bde_tables halostep.sqlite");
