@@ -130,6 +130,12 @@ void cases() {
     const auto text = bench::alkane(4000);
     for (auto _ : s) benchmark::DoNotOptimize(parse_smiles(text));
   });
+  // One long structure must not slow the reading of those after it.
+  add("c4000/then_nci_parse", [](benchmark::State& s) {
+    accepted_smiles();
+    benchmark::DoNotOptimize(parse_smiles(bench::alkane(4000)));
+    parse(s);
+  });
   add("c4000/study", [](benchmark::State& s) { one(s, bench::alkane(4000), study); });
   add("c4000/symmetry", [](benchmark::State& s) { one(s, bench::alkane(4000), symmetry_classes); });
   add("c4000/canonical", [](benchmark::State& s) { one(s, bench::alkane(4000), canonical); });
