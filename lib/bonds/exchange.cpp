@@ -9,14 +9,14 @@ namespace {
 enum E : int {
   x_base, x_vinyl, x_aryl, x_alkynyl, x_acyl, x_alkyl, x_alkyl2, x_conj, x_carbonyl, x_cyano, x_oxygen, x_nitrogen,
   x_sulfur, x_silyl, x_f, x_f2, x_cl, x_hal2, x_br_i, x_beta_halogen, x_beta_branch, x_small_ring,
-  x_acyl_other, x_acyl_halogen, x_vinyl_halogen, x_total
+  x_acyl_alkyl, x_acyl_other, x_acyl_halogen, x_vinyl_halogen, x_total
 };
 constexpr std::array<std::string_view, x_total> kNames = {
     "base: sp3 carbon", "vinylic carbon", "aromatic carbon", "alkynyl carbon", "acyl carbon", "alkyl on the carbon",
     "pair alkyl,alkyl", "C=C, aryl or C#C on the carbon", "C=O on the carbon", "CN or NO2 on the carbon",
     "O on the carbon", "N on the carbon", "S on the carbon", "Si on the carbon", "F on the carbon", "pair F,F",
     "Cl on the carbon", "pair of halogens, not F,F", "Br or I on the carbon", "beta halogen", "beta branching",
-    "ring of three or four", "acyl: O or N on the carbon", "acyl: halogen on the carbon",
+    "ring of three or four", "acyl: carbon on the carbon", "acyl: O or N on the carbon", "acyl: halogen on the carbon",
     "vinyl: halogen on the carbon"};
 
 using Counts = std::array<double, x_total>;
@@ -64,6 +64,7 @@ void unsaturated(const Molecule& m, const std::vector<AtomInfo>& info, int i, Co
     if (n[x_acyl] > 0) {
       n[x_acyl_halogen] += is_halogen(z);
       n[x_acyl_other] += z == element::O || z == element::N;
+      n[x_acyl_alkyl] += z == element::C;
       if (info[static_cast<std::size_t>(nb.atom)].kind != Substituent::alkyl) continue;
       for (const auto& e : m.neighbours(nb.atom)) n[x_beta_halogen] += e.atom != i && is_halogen(m.atom(e.atom).element);
     } else if (n[x_vinyl] > 0) {

@@ -24,6 +24,8 @@ struct Projection {
   double whole = 0;
 };
 
+constexpr double kNearlyAll = 0.99;
+
 struct Carrier {
   const RateBook& rates;
   const BondModel& model;
@@ -74,16 +76,22 @@ void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
   auto all = project(r, s, c, r.by_kind);
   r.row = std::move(all.row);
   r.whole = all.whole;
-  // Where one site takes nearly all, differences from the total lose their digits: its rest is summed by itself.
   for (std::size_t i = 0; i < s.sites.size(); ++i) {
     if (inside(s, i) && (r.top < 0 || raw(s, r, i) > raw(s, r, static_cast<std::size_t>(r.top)))) r.top = static_cast<int>(i);
   }
+  const auto top = static_cast<std::size_t>(r.top);
+  const double w = raw(s, r, top);
+  const std::size_t k_top = kind_of(s, top);
+  r.top_row = r.row[k_top] - w * r.shared[k_top];
+  r.top_whole = r.whole - 2 * w * r.row[k_top] + w * w * r.shared[k_top];
+  // Where one site takes nearly all, those differences lose their digits: its rest is then summed by itself.
+  if (w < kNearlyAll * r.total) return;
   std::vector<double> rest(n, 0.0);
   for (std::size_t i = 0; i < s.sites.size(); ++i) {
     if (inside(s, i) && static_cast<int>(i) != r.top) rest[kind_of(s, i)] += raw(s, r, i);
   }
   const auto others = project(r, s, c, rest);
-  r.top_row = others.row[kind_of(s, static_cast<std::size_t>(r.top))];
+  r.top_row = others.row[k_top];
   r.top_whole = others.whole;
 }
 

@@ -38,7 +38,11 @@ Parser::Parser() {
 bool Parser::read_smiles(OpenBabel::OBMol& m, const std::string& text) {
   log_.str({});
   m.Clear();
-  return smiles_.ReadString(&m, text);
+  // Past OBConversion::Read, which sets the locale at each call; SMILES holds no decimal numbers.
+  in_.clear();
+  in_.str(text);
+  smiles_.SetInStream(&in_);
+  return smiles_.GetInFormat()->ReadMolecule(&m, &smiles_);
 }
 
 bool Parser::read_mol(OpenBabel::OBMol& m, const std::string& block) {
@@ -97,7 +101,7 @@ Result<Molecule> parse_smiles(std::string_view input, ParseMode mode) {
   {
     const std::lock_guard guard(parser_lock());
     auto& p = parser();
-    static thread_local OpenBabel::OBMol mol;
+    OpenBabel::OBMol mol;  // a kept one would drag the room of the longest structure through every later read
     if (!p.read_smiles(mol, std::string(text)) || mol.NumAtoms() == 0) {
       return Error{ErrorClass::syntax, "not readable as SMILES", place_in(text, 0)};
     }

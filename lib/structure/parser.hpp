@@ -23,6 +23,7 @@ class Parser {
  private:
   OpenBabel::OBConversion smiles_, mol_;
   bool mol_ready_ = false;
+  std::istringstream in_;
   std::ostringstream log_;
 };
 

@@ -198,7 +198,7 @@ Result<Molecule> parse_mol(const std::string& text, ParseMode mode) {
   {
     const std::lock_guard guard(parser_lock());
     auto& p = parser();
-    static thread_local OpenBabel::OBMol mol;
+    OpenBabel::OBMol mol;
     set_isotopes(record);
     if (!p.read_mol(mol, write_record(record)) || mol.NumAtoms() != record.atoms.size() ||
         mol.NumBonds() != record.bonds.size()) {

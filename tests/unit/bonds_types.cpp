@@ -245,7 +245,7 @@ TEST(ExchangeFeatures, RepresentativeCarbons) {
   EXPECT_EQ(exchange_of("CC(C)C", 1), (Counts{{base, 1}, {"alkyl on the carbon", 3}, {"pair alkyl,alkyl", 3}}));
   EXPECT_EQ(exchange_of("Cc1ccccc1", 0), (Counts{{base, 1}, {"C=C, aryl or C#C on the carbon", 1}}));
   EXPECT_EQ(exchange_of("c1ccccc1", 0), (Counts{{base, 1}, {"aromatic carbon", 1}}));
-  EXPECT_EQ(exchange_of("CC=O", 1), (Counts{{base, 1}, {"acyl carbon", 1}}));
+  EXPECT_EQ(exchange_of("CC=O", 1), (Counts{{base, 1}, {"acyl carbon", 1}, {"acyl: carbon on the carbon", 1}}));
   EXPECT_EQ(exchange_of("FC(F)F", 1), (Counts{{base, 1}, {"F on the carbon", 3}, {"pair F,F", 3}}));
   EXPECT_EQ(
       exchange_of("ClC(Cl)Br", 1),

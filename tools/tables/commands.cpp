@@ -13,6 +13,7 @@
 #include "tables/fitted_file.hpp"
 #include "tables/read_tables.hpp"
 #include "tables/table_io.hpp"
+#include "tables/validate.hpp"
 
 namespace halostep {
 namespace {
@@ -121,9 +122,9 @@ int refit_command(const std::string& dir) {
   return tell(dir, faults);
 }
 
-int crossval_command(const std::string& dir) {
+int validate_command(const std::string& dir, const std::string& markdown, const std::string& json) {
   const auto curated = checked(dir);
-  return curated ? crossval(curated->table) : 1;
+  return curated ? validate(curated->table, markdown, json) : 1;
 }
 
 int adjust_command(const std::string& dir, const std::string& csv) {

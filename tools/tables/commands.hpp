@@ -11,8 +11,8 @@ int check_command(const std::string& dir);
 int compile_command(const std::string& dir, const std::string& out);
 /// Checks, fits and writes fitted.json.
 int refit_command(const std::string& dir);
-/// Checks, then calls crossval() of tables/fit.hpp.
-int crossval_command(const std::string& dir);
+/// Checks, then judges the engine on molecules held out of every file; writes to the files named, if any.
+int validate_command(const std::string& dir, const std::string& markdown, const std::string& json);
 /// Checks, then adjusts all enthalpies jointly and prints the result; `csv` (may be empty): where the system goes.
 int adjust_command(const std::string& dir, const std::string& csv);
 

@@ -10,7 +10,4 @@ namespace halostep {
 /// Errors: those of the solvers.
 Result<std::vector<FittedModel>> fit_models(const Table& table);
 
-/// Prints how well the models meet molecules they have not seen; exit code of the command.
-int crossval(const Table& table);
-
 }  // namespace halostep

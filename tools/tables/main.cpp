@@ -18,7 +18,11 @@ int main(int argc, char** argv) {
   compile->add_option("OUT", out, "the table to write")->required();
   compile->callback([&] { code = halostep::compile_command(dir, out); });
   command("refit", "check, fit, and write fitted.json")->callback([&] { code = halostep::refit_command(dir); });
-  command("crossval", "predict rows left out of the fit")->callback([&] { code = halostep::crossval_command(dir); });
+  auto* check_engine = command("validate", "judge the engine on molecules held out of every file, and print the report");
+  std::string markdown, json;
+  check_engine->add_option("--markdown", markdown, "write the report to this file");
+  check_engine->add_option("--json", json, "write the figures to this file");
+  check_engine->callback([&] { code = halostep::validate_command(dir, markdown, json); });
   auto* adjust = command("adjust", "adjust all enthalpies of formation and bond energies jointly and print the result");
   std::string csv;
   adjust->add_option("--csv", csv, "write the system and its solution to this file");
