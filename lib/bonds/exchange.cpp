@@ -80,6 +80,11 @@ const std::vector<std::string_view>& exchange_feature_names() {
   return names;
 }
 
+double exchange_prior(int f) noexcept {
+  if (f == x_base) return 1000.0;
+  return f == x_alkyl2 || f == x_beta_branch || f == x_small_ring ? 5.0 : 15.0;  // small corrections
+}
+
 std::vector<FeatureCount> exchange_features(const Molecule& m, const std::vector<AtomInfo>& info, int i) {
   std::array<double, x_total> n{};
   const auto& a = info[static_cast<std::size_t>(i)];

@@ -22,7 +22,7 @@ enum F : int {
   // rings
   ring3, ring4, ring5, ring5_conj, ring7, bridgehead5, bridgehead6, on_ring3,
   // other carbon centres
-  v_alkyl, v_halogen, v_ring, a_hetero5, a_f, k_alkyl, f_alkyl, f_conj, f_o, f_n, f_f, f_hal, f_alpha_halogen,
+  v_alkyl, v_halogen, v_ring, a_hetero5, a_f, a_ring_n, k_alkyl, f_alkyl, f_conj, f_o, f_n, f_f, f_hal, f_alpha_halogen,
   // O, N, S, Si
   o_alkyl, o_peracid, ph_alkyl, ph_ortho_tbu, ph_donor, n_alkyl, n_aryl_alkyl, n_fluoro, n_ring, t_alkyl, si_alkyl, si_aryl, si_si, si_f, si_cl,
   feature_total
@@ -41,10 +41,10 @@ constexpr std::array<std::string_view, feature_total> kFeatureNames = {
     "beta F", "beta Cl/Br/I", "beta O/N", "beta conjugating group", "beta branching", "gamma F",
     "longer conjugation", "alkyl on the far end of the allyl system", "alkyl on the middle of the allyl system",
     "ring fused to the aryl group", "five-membered heteroaryl", "two conjugating groups held in a ring",
-    "three-membered ring", "four-membered ring", "five-membered ring", "five-membered ring, conjugated", "seven-membered ring or larger",
+    "three-membered ring", "four-membered ring", "five-membered ring", "five-membered ring, conjugated", "seven-membered ring or larger, conjugated",
     "bridgehead in a ring of five or less", "bridgehead in a ring of six or more", "cyclopropyl on the centre",
     "vinyl C-H: alkyl on the carbon", "vinyl C-H: halogen on the carbon", "vinyl C-H: small ring",
-    "aryl C-H: five-membered heteroaryl", "aryl C-H: F on the ring", "alkynyl C-H: alkyl", "acyl C-H: alkyl",
+    "aryl C-H: five-membered heteroaryl", "aryl C-H: F on the ring", "aryl C-H: beside ring N", "alkynyl C-H: alkyl", "acyl C-H: alkyl",
     "acyl C-H: conjugating group", "acyl C-H: O", "acyl C-H: N", "acyl C-H: F", "acyl C-H: Cl/Br/I",
     "acyl C-H: alpha halogen",
     "O-H: alkyl on the carbon", "O-H: peracid", "phenol: alkyl on the ring", "phenol: tertiary alkyl at ortho", "phenol: O/N on the ring",
@@ -71,6 +71,17 @@ bool heavy_halogen(Substituent s) {
   return s == Substituent::chloro || s == Substituent::bromo || s == Substituent::iodo;
 }
 
+// A bridgehead cannot flatten. An atom at which two rings are fused can: another such atom stands beside it.
+bool bridgehead(const Molecule& m, const std::vector<AtomInfo>& info, int atom) {
+  const auto& a = info[static_cast<std::size_t>(atom)];
+  if (a.ring_bonds < 3) return false;
+  bool fused = false;
+  for (const auto& n : m.neighbours(atom)) {
+    fused = fused || (m.bond(n.bond).in_ring && info[static_cast<std::size_t>(n.atom)].ring_bonds >= 3);
+  }
+  return !fused || a.ring <= 4;
+}
+
 class Builder {
  public:
   Builder(const Molecule& m, const std::vector<AtomInfo>& info, int centre) : m_(m), info_(info), c_(centre) {}
@@ -90,6 +101,7 @@ class Builder {
   void aryl();
   void acyl();
   void oxygen();
+  [[nodiscard]] std::vector<int> ortho_and_para(int x) const;
   void nitrogen();
   void sulfur();
   void silicon();
@@ -188,7 +200,7 @@ void Builder::pairs() {
 
 void Builder::rings() {
   const auto& a = at(c_);
-  if (a.ring_bonds >= 3) {
+  if (bridgehead(m_, info_, c_)) {
     add(a.ring <= 5 ? bridgehead5 : bridgehead6);
     if (a.ring <= 4) refuse("a bridgehead in a three- or four-membered ring");
     return;
@@ -198,7 +210,7 @@ void Builder::rings() {
   if (a.ring == 3) add(ring3);
   else if (a.ring == 4) conjugated ? refuse("an allylic or benzylic C-H in a four-membered ring") : add(ring4);
   else if (a.ring == 5) add(conjugated ? ring5_conj : ring5);
-  else if (a.ring >= 7) add(ring7);
+  else if (a.ring >= 7 && conjugated) add(ring7);  // large saturated rings are like open chains
 }
 
 void Builder::sp3() {
@@ -240,6 +252,7 @@ void Builder::aryl() {
   add(base_aryl);
   if (at(c_).ring == 5) add(a_hetero5);
   for (const auto& n : m_.neighbours(c_)) {
+    if (m_.atom(n.atom).element == element::N) add(a_ring_n);
     for (const auto& e : m_.neighbours(n.atom)) {
       if (e.atom != c_ && at(e.atom).kind == Substituent::fluoro) add(a_f);
     }
@@ -292,16 +305,34 @@ void Builder::oxygen() {
   if (at(x).hybrid != Hybrid::aromatic) return refuse("an enol O-H");
   out_.centre = CentreType::o_phenol;
   add(base_phenol);
-  for (const auto& ring : m_.neighbours(x)) {
-    if (!m_.bond(ring.bond).in_ring) continue;
-    for (const auto& s : m_.neighbours(ring.atom)) {
+  for (const int ring : ortho_and_para(x)) {
+    for (const auto& s : m_.neighbours(ring)) {
       if (m_.bond(s.bond).in_ring && m_.bond(s.bond).order == BondOrder::aromatic) continue;
+      if (donor(at(s.atom).kind)) add(ph_donor);
       if (at(s.atom).kind != Substituent::alkyl) continue;
       int carbons = 0;
       for (const auto& e : m_.neighbours(s.atom)) carbons += m_.atom(e.atom).element == element::C;
       add(carbons == 4 ? ph_ortho_tbu : ph_alkyl);
     }
   }
+}
+
+// Aromatic ring atoms an odd number of bonds (1 or 3) from `x` in its ring: where a substituent meets the odd electron.
+std::vector<int> Builder::ortho_and_para(int x) const {
+  std::vector<int> depth(static_cast<std::size_t>(m_.atom_count()), -1), queue = {x}, out;
+  depth[static_cast<std::size_t>(x)] = 0;
+  for (std::size_t head = 0; head < queue.size(); ++head) {
+    const int u = queue[head], d = depth[static_cast<std::size_t>(u)];
+    if (d % 2 == 1) out.push_back(u);
+    if (d == 3) continue;
+    for (const auto& n : m_.neighbours(u)) {
+      auto& seen = depth[static_cast<std::size_t>(n.atom)];
+      if (seen >= 0 || m_.bond(n.bond).order != BondOrder::aromatic) continue;
+      seen = d + 1;
+      queue.push_back(n.atom);
+    }
+  }
+  return out;
 }
 
 void Builder::nitrogen() {
@@ -396,6 +427,9 @@ const std::vector<std::string_view>& feature_names() {
 }
 
 double feature_prior(int f) noexcept {
+  // Single rows stand behind these; they must not turn one bond into a rule for all.
+  if (f == ph_alkyl || f == ph_ortho_tbu || f == ph_donor) return 8.0;
+  if (f == a_ring_n) return 15.0;
   if (f <= base_si) return 1000.0;             // bases are free
   if (f <= s_i) return 25.0;                   // substituents
   if (f <= p_hal_hal) return 8.0;              // pairs
@@ -450,7 +484,7 @@ std::string_view site_type(const Molecule& m, const std::vector<AtomInfo>& info,
   if (s) return "C-H alpha to S";
   if (hal) return "C-H alpha to halogen";
   if (other) return "C-H, other substituent";
-  if (at(i).ring_bonds >= 3) return "bridgehead C-H";
+  if (bridgehead(m, info, i)) return "bridgehead C-H";
   if (at(i).ring == 3) return "cyclopropyl C-H";
   if (at(i).ring == 4) return "cyclobutyl C-H";
   return kPlain[std::min<std::size_t>(carbons, 3)];

@@ -38,6 +38,8 @@ std::string_view site_type(const Molecule& m, const std::vector<AtomInfo>& info,
 
 /// Features of the exchange R-H -> R-X at atom `i`, for the substitution enthalpy (docs/model.md).
 const std::vector<std::string_view>& exchange_feature_names();
+/// Prior standard deviation of an exchange feature's value, kJ/mol.
+double exchange_prior(int feature) noexcept;
 std::vector<FeatureCount> exchange_features(const Molecule& m, const std::vector<AtomInfo>& info, int i);
 
 }  // namespace halostep

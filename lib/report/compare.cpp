@@ -101,7 +101,7 @@ std::string reason_for(const Comparison& c) {
 }  // namespace
 
 Result<Comparison> compare_site(std::span<const HalogenOutcome> outcomes, std::span<const StepAnswer> steps, int atom,
-                                std::string chosen_by) {
+                                std::string chosen_by, std::optional<Halogen> only) {
   Comparison c;
   c.chosen_by = std::move(chosen_by);
   for (const auto& outcome : outcomes) {
@@ -116,12 +116,18 @@ Result<Comparison> compare_site(std::span<const HalogenOutcome> outcomes, std::s
   if (c.rows.empty()) {
     return Error{ErrorClass::domain, "the wanted site has no rate coefficient for any halogen asked for", "--compare"};
   }
-  const auto best = std::min_element(c.rows.begin(), c.rows.end(), better);
-  if (best->propagates) {
-    c.best = static_cast<int>(best - c.rows.begin());
+  const CompareRow* best = nullptr;
+  for (const auto& row : c.rows) {
+    if ((!only || row.halogen == *only) && (best == nullptr || better(row, *best))) best = &row;
+  }
+  if (best == nullptr) {
+    c.why = fmt::format("none: the product holds {}, which was not asked for", halogen_name(*only));
+  } else if (best->propagates) {
+    c.best = static_cast<int>(best - c.rows.data());
     c.why = reason_for(c);
   } else {
-    c.why = "none: no halogen asked for carries a chain here (" + best->verdict + ")";
+    c.why = only ? fmt::format("none: {} carries no chain here ({})", halogen_name(*only), best->verdict)
+                 : fmt::format("none: no halogen asked for carries a chain here ({})", best->verdict);
   }
   return c;
 }

@@ -157,7 +157,7 @@ void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t,
   finish(net, sn, t);
 }
 
-void StepBook::terminations(const SiteData& d, std::size_t transfer_at, int x, double t, const BondOptions& o,
+void StepBook::terminations(const Analysis& a, const SiteData& d, std::size_t transfer_at, int x, double t, const BondOptions& o,
                             std::vector<StepAnswer>& out) const {
   // R + X is the transfer's bond; taken from the answer just made, so the two agree.
   const std::size_t at = out.size();
@@ -181,7 +181,8 @@ void StepBook::terminations(const SiteData& d, std::size_t transfer_at, int x, d
   rx.reaction = fmt::format("{}.{}>>{}", d.radical, kAtom[x], product);
   rr.reaction = fmt::format("{}.{}>>{}", d.radical, d.radical, d.dimer);
   rr.route = "formation enthalpies";
-  const auto* rx_entry = thermo_.find(product);
+  const bool plain = a.deuterium_count() == 0;
+  const auto* rx_entry = plain ? thermo_.find(canonical_smiles(a.original().with_substituent(d.site->atom, kNumber[x]), false)) : nullptr;
   if (!rx.dh) rx.why_dh = transfer->why_dh;
   if (!rr.dh) rr.why_dh = "the table has no formation enthalpy of the dimer or of the radical";
   rx.why_ea = rr.why_ea = "recombination, no barrier";
@@ -190,7 +191,7 @@ void StepBook::terminations(const SiteData& d, std::size_t transfer_at, int x, d
   ThermoSum sx, sr;
   thermo_.add(sx, d.r_entry, -1, d.radical);
   thermo_.add(sx, h.atom, -1, kAtom[x]);
-  thermo_.add(sx, rx_entry, 1, "the halide");
+  thermo_.add(sx, rx_entry, 1, product);
   thermo_.add(sr, d.r_entry, -2, d.radical);
   thermo_.add(sr, d.rr_entry, 1, d.dimer);
   finish(rx, sx, t);
@@ -284,7 +285,7 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<Sit
       xx.reaction = fmt::format("{}.{}>>{}", kAtom[x], kAtom[x], kMolecule[x]);
       xx.why_ea = "recombination on a third body, no barrier";
     }
-    for (std::size_t i = 0; i < data.size(); ++i) terminations(data[i], first + 3 * i + 2, x, t, o, out);
+    for (std::size_t i = 0; i < data.size(); ++i) terminations(a, data[i], first + 3 * i + 2, x, t, o, out);
     out.push_back(std::move(xx));
   }
   return out;

@@ -31,7 +31,7 @@ class StepBook {
   void initiation(int x, double t, bool details, std::vector<StepAnswer>& out) const;
   void site_steps(const Analysis& a, const SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
   /// `transfer_at`: where the transfer step of the site stands in `out`; its bond is R-X here.
-  void terminations(const SiteData& s, std::size_t transfer_at, int x, double t, const BondOptions& o,
+  void terminations(const Analysis& a, const SiteData& s, std::size_t transfer_at, int x, double t, const BondOptions& o,
                     std::vector<StepAnswer>& out) const;
   const Table& table_;
   const BondModel& model_;

@@ -65,7 +65,11 @@ TEST(SiteType, Rings) {
                 {"C1CCC1", 0, "cyclobutyl C-H", with(secondary, "four-membered ring")},
                 {"C1CCCC1", 0, "secondary C-H", with(secondary, "five-membered ring")},
                 {"C1CCCCC1", 0, "secondary C-H", secondary},
-                {"C1CCCCCC1", 0, "secondary C-H", with(secondary, "seven-membered ring or larger")},
+                {"C1CCCCCC1", 0, "secondary C-H", secondary},
+                {"C1CCCCCCCCCCC1", 0, "secondary C-H", secondary},
+                // Fused rings flatten; only bridged ones cannot.
+                {"C1CCC2CCCCC2C1", 3, "tertiary C-H", tertiary},
+                {"C1CC2CCCC2C1", 2, "tertiary C-H", with(tertiary, "five-membered ring")},
                 {"C1CC2CCC1C2", 2, "bridgehead C-H", with(tertiary, "bridgehead in a ring of five or less")},
                 {"C1CC2CCC1CC2", 2, "bridgehead C-H", with(tertiary, "bridgehead in a ring of six or more")},
                 {"C1C2CC3CC1CC(C2)C3", 1, "bridgehead C-H", with(tertiary, "bridgehead in a ring of six or more")},

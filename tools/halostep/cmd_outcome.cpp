@@ -10,6 +10,7 @@ namespace {
 struct Wanted {
   int atom = -1;
   std::string chosen_by;
+  std::optional<Halogen> halogen;  // of the wanted product
 };
 
 /// The site whose radical is the one asked for.
@@ -24,13 +25,13 @@ Result<int> site_of_radical(const Molecule& m, std::span<const SiteOutcome> site
 }
 
 /// The site where a halogen in place of H gives the product asked for.
-Result<int> site_of_product(const Molecule& m, std::span<const SiteOutcome> sites, const std::string& text) {
+Result<Wanted> site_of_product(const Molecule& m, std::span<const SiteOutcome> sites, const std::string& text) {
   const auto product = parse_smiles(text);
   if (!product.ok()) return product.error();
   const auto hash = structure_hash(product.value());
   for (const auto& site : sites) {
     for (const Halogen x : kAllHalogens) {
-      if (structure_hash(m.with_substituent(site.atom, halogen_element(x))) == hash) return site.atom;
+      if (structure_hash(m.with_substituent(site.atom, halogen_element(x))) == hash) return Wanted{site.atom, "product", x};
     }
   }
   return Error{ErrorClass::domain, "no C-H site of the substrate gives " + text + " by taking up one halogen",
@@ -46,14 +47,10 @@ Result<Wanted> wanted_site(const Molecule& m, const HalogenOutcome& outcome, con
   if (!options.site.empty()) {
     const auto atom = site_of_radical(m, outcome.sites, options.site);
     if (!atom.ok()) return atom.error();
-    return Wanted{atom.value(), "site"};
+    return Wanted{atom.value(), "site", std::nullopt};
   }
-  if (!options.product.empty()) {
-    const auto atom = site_of_product(m, outcome.sites, options.product);
-    if (!atom.ok()) return atom.error();
-    return Wanted{atom.value(), "product"};
-  }
-  return Wanted{weakest_site(outcome.sites), "weakest C-H"};
+  if (!options.product.empty()) return site_of_product(m, outcome.sites, options.product);
+  return Wanted{weakest_site(outcome.sites), "weakest C-H", std::nullopt};
 }
 
 std::optional<Error> compare(const Engine& engine, const Molecule& m, const Options& options, const Settings& settings,
@@ -64,7 +61,8 @@ std::optional<Error> compare(const Engine& engine, const Molecule& m, const Opti
   // The net enthalpy is the same at every temperature.
   const auto steps = engine.steps(m, settings.halogens, settings.temperatures.front(), {options.typed, true});
   if (!steps.ok()) return steps.error();
-  auto comparison = compare_site(record.halogens, steps.value(), wanted.value().atom, wanted.value().chosen_by);
+  auto comparison = compare_site(record.halogens, steps.value(), wanted.value().atom, wanted.value().chosen_by,
+                                 wanted.value().halogen);
   if (!comparison.ok()) return comparison.error();
   record.comparison = std::move(comparison).value();
   return std::nullopt;

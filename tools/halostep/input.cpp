@@ -2,6 +2,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <filesystem>
 #include <fstream>
 #include <iostream>
 #include <iterator>
@@ -111,6 +112,11 @@ void read_file(const std::string& name, bool reactions, std::vector<Input>& out)
   if (name == "-") {
     text.assign(std::istreambuf_iterator<char>(std::cin), {});
   } else {
+    std::error_code ec;
+    if (std::filesystem::is_directory(name, ec)) {
+      out.push_back(unread_file(name, ErrorClass::io, "a directory, not a file"));
+      return;
+    }
     std::ifstream in(name, std::ios::binary);
     if (in) text.assign(std::istreambuf_iterator<char>(in), {});
     if (!in.is_open() || in.bad()) {

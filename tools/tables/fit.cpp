@@ -109,10 +109,14 @@ Result<std::vector<FittedModel>> fit_models(const Table& table) {
   }
   const auto samples = rate_samples(table, bond_model(table, out));
   std::vector<double> chlorine;
+  double floor = 0.02;
   for (const int x : {1, 0, 2, 3}) {
-    auto m = fit_kinetics(samples, x, x == 1 ? nullptr : &chlorine);
+    auto m = fit_kinetics(samples, x, x == 1 ? nullptr : &chlorine, floor);
     if (!m.ok()) return m.error();
-    if (x == 1) chlorine = m.value().values;
+    if (x == 1) {
+      chlorine = m.value().values;
+      for (const auto& [name, v] : m.value().settings) floor = name == "scatter" ? v : floor;
+    }
     add_range(m.value(), table, samples, x);
     out.push_back(std::move(m).value());
   }

@@ -188,8 +188,8 @@ Result<FittedModel> fit_exchange(const std::vector<ExchangeSample>& samples, int
     us.push_back(std::max(s.u, kFloor));
   }
   const auto& names = exchange_feature_names();
-  Eigen::VectorXd prior = Eigen::VectorXd::Constant(static_cast<Eigen::Index>(names.size()), 15.0);
-  prior[0] = 1000.0;
+  Eigen::VectorXd prior(static_cast<Eigen::Index>(names.size()));
+  for (Eigen::Index f = 0; f < prior.size(); ++f) prior[f] = exchange_prior(static_cast<int>(f));
   auto s = solve(x, Eigen::Map<Eigen::VectorXd>(ys.data(), static_cast<Eigen::Index>(ys.size())),
                  Eigen::Map<Eigen::VectorXd>(us.data(), static_cast<Eigen::Index>(us.size())), prior);
   if (!s.ok()) return s.error();

@@ -300,7 +300,8 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
   return k;
 }
 
-Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* cl) {
+Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* cl,
+                                 double floor) {
   std::vector<const RateSample*> mine;
   for (const auto& s : samples) {
     if (s.carrier == carrier) mine.push_back(&s);
@@ -318,7 +319,7 @@ Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int car
     p.scale[i] = 0;
     for (const auto& r : s.sites) p.scale[i] = std::max(p.scale[i], scatter_share(r.site));
   }
-  p.scatter_floor = 0.02;
+  p.scatter_floor = floor;
   p.residual = [&](const Eigen::VectorXd& b) {
     const std::vector<double> v(b.data(), b.data() + b.size());
     Eigen::VectorXd r(n);

@@ -38,6 +38,8 @@ struct KineticStart {
 KineticStart kinetic_start(int carrier, const std::vector<double>* chlorine);
 /// Model value matching sample.ln_value.
 double model_ln(const std::vector<double>& p, const KineticForm& form, const RateSample& s);
-Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* chlorine);
+/// `floor`: least scatter of ln k the model may claim; a carrier with few rows takes chlorine's.
+Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* chlorine,
+                                 double floor = 0.02);
 
 }  // namespace halostep

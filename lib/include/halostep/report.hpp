@@ -73,10 +73,11 @@ inline constexpr double kChainHeatLimit = 350.0;
 /// Abstraction endothermic by more than this does not carry a chain (iodine + alkanes: about 105 to 140 kJ/mol).
 inline constexpr double kAbstractionLimit = 100.0;
 
-/// Builds the comparison. `atom` is an atom of the wanted site; `steps` are those of the same substrate.
+/// Builds the comparison. `atom` is an atom of the wanted site; `steps` are those of the same substrate. With `only` the
+/// best is sought among the rows of that halogen (the one in the wanted product); the others stand for comparison.
 /// Errors: domain (the wanted site has no rate).
 Result<Comparison> compare_site(std::span<const HalogenOutcome> outcomes, std::span<const StepAnswer> steps, int atom,
-                                std::string chosen_by);
+                                std::string chosen_by, std::optional<Halogen> only = std::nullopt);
 
 struct TextOptions {
   EnergyUnit unit = EnergyUnit::kj;
