@@ -37,7 +37,7 @@ const std::string& Analysis::key() const {
   return key_;
 }
 
-Analysis::Analysis(const Molecule& m) : original_(m) {
+Analysis::Analysis(const Molecule& m, bool whole) : original_(m) {
   bool labelled = false;
   for (int i = 0; i < m.atom_count(); ++i) {
     const auto& a = m.atom(i);
@@ -45,8 +45,10 @@ Analysis::Analysis(const Molecule& m) : original_(m) {
     if (a.isotope != 0) labelled = true;
     if (a.element == element::H && m.degree(i) == 1) ++deuterium_;
   }
-  classes_ = symmetry_classes(m);
-  sites_ = hydrogen_sites(m, classes_);
+  if (whole) {
+    classes_ = symmetry_classes(m);
+    sites_ = hydrogen_sites(m, classes_);
+  }
   if (labelled) {
     map_.assign(static_cast<std::size_t>(m.atom_count()), -1);
     std::vector<Atom> atoms;
@@ -75,7 +77,7 @@ Analysis::Analysis(const Molecule& m) : original_(m) {
   }
   info_ = environment(plain());
   signature_ = heavy_signature(m);
-  for (int i = 0; i < m.bond_count(); ++i) {
+  for (int i = 0; i < m.bond_count() && whole; ++i) {
     const auto& b = m.bond(i);
     if (!spoken_of(m, b)) continue;
     const int ca = classes_[static_cast<std::size_t>(b.a)], cb = classes_[static_cast<std::size_t>(b.b)];

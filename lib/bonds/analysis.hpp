@@ -19,7 +19,8 @@ struct HeavyBond {
 /// Isotope labels of heavy atoms and deuterium do not change the type: `plain` has none, D counted as H there.
 class Analysis {
  public:
-  explicit Analysis(const Molecule& m);
+  /// Without `whole` there are no classes, sites and heavy bonds: enough for questions about one known atom.
+  explicit Analysis(const Molecule& m, bool whole = true);
 
   [[nodiscard]] const Molecule& original() const { return original_; }
   [[nodiscard]] const Molecule& plain() const { return has_plain_ ? plain_ : original_; }

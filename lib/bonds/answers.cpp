@@ -232,7 +232,7 @@ void BondBook::typed_halide(const Analysis& a, const HeavyBond& h, int x, const 
     b.why = parent.error();
     return;
   }
-  const Analysis pa(parent.value());
+  const Analysis pa(parent.value(), false);
   const HydrogenSite site{c, 1, {c}};
   const auto value = hydrogen(pa, site, o.typed);
   const auto f = exchange_features(pa.plain(), pa.info(), c);

@@ -1,5 +1,6 @@
 #include "outcome/rate_answers.hpp"
 
+#include <algorithm>
 #include <cmath>
 
 namespace halostep {
@@ -73,6 +74,10 @@ void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
     r.shared[k] = c.rates.variance(c.x, r.gradient[k]) +
                   g * g * (c.d_hx.u * c.d_hx.u + c.model.bonds().covariance_of(kind.features, kind.features));
   }
+  r.row.assign(n, 0.0);
+  // One site takes all, whatever the errors.
+  const auto within = std::count_if(s.sites.begin(), s.sites.end(), [](const CarbonSite& q) { return q.kind >= 0; });
+  if (within < 2) return;
   auto all = project(r, s, c, r.by_kind);
   r.row = std::move(all.row);
   r.whole = all.whole;
