@@ -211,23 +211,9 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
 
 // R-X from R-H of the parent: the molecule with a hydrogen instead of the halogen.
 void BondBook::typed_halide(const Analysis& a, const HeavyBond& h, int x, const BondOptions& o, BondAnswer& b) const {
-  std::vector<Atom> atoms;
-  std::vector<Bond> bonds;
-  const int gone = a.to_plain(h.partner);
-  const auto& p = a.plain();
-  for (int i = 0; i < p.atom_count(); ++i) {
-    if (i != gone) atoms.push_back(p.atom(i));
-  }
-  const int c = a.to_plain(h.centre) - (a.to_plain(h.centre) > gone);
-  ++atoms[static_cast<std::size_t>(c)].hydrogens;
-  for (int i = 0; i < p.bond_count(); ++i) {
-    Bond q = p.bond(i);
-    if (q.a == gone || q.b == gone) continue;
-    q.a -= q.a > gone;
-    q.b -= q.b > gone;
-    bonds.push_back(q);
-  }
-  const auto parent = Molecule::from_graph(std::move(atoms), std::move(bonds));
+  const int gone = a.to_plain(h.partner), centre = a.to_plain(h.centre);
+  const int c = centre - (centre > gone);
+  const auto parent = parent_of_halide(a.plain(), gone);
   if (!parent.ok()) {
     b.why = parent.error();
     return;

@@ -52,4 +52,34 @@ int find_site(const Molecule& m, const std::vector<int>& classes, const Molecule
   return -1;
 }
 
+Result<Molecule> parent_of_halide(const Molecule& m, int x) {
+  std::vector<Atom> atoms;
+  std::vector<Bond> bonds;
+  const int c = m.neighbours(x)[0].atom;
+  for (int i = 0; i < m.atom_count(); ++i) {
+    if (i == x) continue;
+    atoms.push_back(m.atom(i));
+    if (i == c) ++atoms.back().hydrogens;
+  }
+  for (int i = 0; i < m.bond_count(); ++i) {
+    Bond b = m.bond(i);
+    if (b.a == x || b.b == x) continue;
+    b.a -= b.a > x;
+    b.b -= b.b > x;
+    bonds.push_back(b);
+  }
+  return Molecule::from_graph(std::move(atoms), std::move(bonds));
+}
+
+Result<Molecule> parent_of_radical(const Molecule& m, int atom) {
+  std::vector<Atom> atoms;
+  std::vector<Bond> bonds;
+  for (int i = 0; i < m.atom_count(); ++i) atoms.push_back(m.atom(i));
+  for (int i = 0; i < m.bond_count(); ++i) bonds.push_back(m.bond(i));
+  auto& a = atoms[static_cast<std::size_t>(atom)];
+  a.unpaired = 0;
+  ++a.hydrogens;
+  return Molecule::from_graph(std::move(atoms), std::move(bonds));
+}
+
 }  // namespace halostep

@@ -15,6 +15,11 @@ std::string skeleton_key(const Molecule& m);
 /// resonance; -1 when there is none. `classes` are the symmetry classes of `m`.
 int find_site(const Molecule& m, const std::vector<int>& classes, const Molecule& radical);
 
+/// R-H from R-X: the end atom `x` becomes a hydrogen of its neighbour. Atoms behind `x` move up by one; stereo is dropped.
+Result<Molecule> parent_of_halide(const Molecule& m, int x);
+/// R-H from R: the radical atom takes a hydrogen. Stereo is dropped.
+Result<Molecule> parent_of_radical(const Molecule& m, int atom);
+
 /// Representative atoms that carry ordinary hydrogen, one per class, in order, and the H of the whole class.
 struct HydrogenSite {
   int atom = 0;

@@ -51,19 +51,6 @@ int radical_atom(const Molecule& m) {
   return at;
 }
 
-std::optional<Molecule> filled(const Molecule& m, int atom) {
-  std::vector<Atom> atoms;
-  std::vector<Bond> bonds;
-  for (int i = 0; i < m.atom_count(); ++i) atoms.push_back(m.atom(i));
-  for (int i = 0; i < m.bond_count(); ++i) bonds.push_back(m.bond(i));
-  auto& a = atoms[static_cast<std::size_t>(atom)];
-  a.unpaired = 0;
-  ++a.hydrogens;
-  auto r = Molecule::from_graph(std::move(atoms), std::move(bonds));
-  if (!r.ok()) return std::nullopt;
-  return std::move(r).value();
-}
-
 struct Species {
   const Molecule* m = nullptr;
   std::string key, text;
@@ -156,7 +143,7 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
     auto parent = parent_in(all, m);
     const auto* known = thermo_.find_radical(m, key);
     if (!parent && (known == nullptr || !known->dfh298)) {
-      if (auto f = filled(m, centre)) parent = Parent{std::move(*f), centre};
+      if (auto f = parent_of_radical(m, centre); f.ok()) parent = Parent{std::move(f).value(), centre};
     }
     if (parent) {
       const Analysis a(parent->molecule);

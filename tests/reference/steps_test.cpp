@@ -6,6 +6,7 @@
 #include <cmath>
 
 #include "adjust/combine.hpp"
+#include "bonds/locate.hpp"
 #include "halostep/engine.hpp"
 #include "halostep/structure.hpp"
 
@@ -75,20 +76,11 @@ TEST(Steps, NetFromBondsClosesTheFormationCycle) {
     const auto x = parse_halogen(b.leaving.size() > 2 ? b.leaving.substr(1, b.leaving.size() - 2) : "");
     const auto rx = parse_smiles(b.molecule, ParseMode::species), radical = parse_smiles(b.radical, ParseMode::species);
     if (!x.ok() || !rx.ok() || !radical.ok()) continue;
-    // R-H of R-X: the radical's own atom takes a hydrogen.
-    std::vector<Atom> atoms;
-    std::vector<Bond> bonds;
     int centre = -1;
-    for (int i = 0; i < radical.value().atom_count(); ++i) {
-      atoms.push_back(radical.value().atom(i));
-      if (atoms.back().unpaired != 1) continue;
-      centre = i;
-      atoms.back().unpaired = 0;
-      ++atoms.back().hydrogens;
-    }
-    for (int i = 0; i < radical.value().bond_count(); ++i) bonds.push_back(radical.value().bond(i));
-    const auto rh = Molecule::from_graph(std::move(atoms), std::move(bonds));
-    if (centre < 0 || !rh.ok() || rh.value().atom(centre).element != element::C) continue;
+    for (int i = 0; i < radical.value().atom_count(); ++i) centre = radical.value().atom(i).unpaired == 1 ? i : centre;
+    if (centre < 0) continue;
+    const auto rh = parent_of_radical(radical.value(), centre);
+    if (!rh.ok() || rh.value().atom(centre).element != element::C) continue;
     const std::string name = halogen_name(x.value());
     const auto h_rx = dfh(b.molecule), h_rh = dfh(canonical_smiles(rh.value(), false)), h_hx = dfh(name), h_xx = dfh(name + name);
     if (!h_rx || !h_rh || !h_hx || !h_xx) continue;

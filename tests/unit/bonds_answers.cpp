@@ -11,25 +11,6 @@ namespace {
 
 using testing::HasSubstr;
 
-std::vector<BondAnswer> bonds(std::string_view smiles, bool typed = false) {
-  auto r = engine().bonds(read(smiles), {typed, true});
-  if (!r.ok()) {
-    ADD_FAILURE() << smiles << ": " << r.error().message;
-    return {};
-  }
-  return std::move(r).value();
-}
-
-const BondAnswer& find(const std::vector<BondAnswer>& all, std::string_view bond, std::string_view radical) {
-  static const BondAnswer none;
-  const auto wanted = same_as(radical);
-  for (const auto& b : all) {
-    if (b.bond == bond && b.radical == wanted) return b;
-  }
-  ADD_FAILURE() << "no " << bond << " to " << radical;
-  return none;
-}
-
 // D298 against evaluated values; tolerance: the spread between the compilations (kJ/mol). Blanksby and Ellison, Acc.
 // Chem. Res. 2003, 36, 255, from memory, unless another is named.
 TEST(Measured, KnownBonds) {

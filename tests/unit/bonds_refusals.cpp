@@ -8,25 +8,6 @@ namespace {
 
 using testing::HasSubstr;
 
-std::vector<BondAnswer> bonds(std::string_view smiles, bool typed = false) {
-  auto r = engine().bonds(read(smiles), {typed, true});
-  if (!r.ok()) {
-    ADD_FAILURE() << smiles << ": " << r.error().message;
-    return {};
-  }
-  return std::move(r).value();
-}
-
-const BondAnswer& find(const std::vector<BondAnswer>& all, std::string_view bond, std::string_view radical) {
-  static const BondAnswer none;
-  const auto wanted = same_as(radical);
-  for (const auto& b : all) {
-    if (b.bond == bond && b.radical == wanted) return b;
-  }
-  ADD_FAILURE() << "no " << bond << " to " << radical;
-  return none;
-}
-
 TEST(Deuterium, IsRefusedWithItsOwnClass) {
   const auto only = engine().bonds(read("[2H]C([2H])([2H])[2H]"));
   ASSERT_FALSE(only.ok());

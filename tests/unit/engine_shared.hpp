@@ -34,6 +34,27 @@ inline Molecule read(std::string_view smiles) {
 
 inline std::string same_as(std::string_view smiles) { return canonical_smiles(read(smiles)); }
 
+/// All bonds of a structure that must be answered.
+inline std::vector<BondAnswer> bonds(std::string_view smiles, bool typed = false) {
+  auto r = engine().bonds(read(smiles), {typed, true});
+  if (!r.ok()) {
+    ADD_FAILURE() << smiles << ": " << r.error().message;
+    return {};
+  }
+  return std::move(r).value();
+}
+
+/// The bond that gives this radical; a failure and an empty answer when there is none.
+inline const BondAnswer& find(const std::vector<BondAnswer>& all, std::string_view bond, std::string_view radical) {
+  static const BondAnswer none;
+  const auto wanted = same_as(radical);
+  for (const auto& b : all) {
+    if (b.bond == bond && b.radical == wanted) return b;
+  }
+  ADD_FAILURE() << "no " << bond << " to " << radical;
+  return none;
+}
+
 /// Substrates of every kind the typed model covers.
 inline constexpr std::string_view kSubstrates[] = {
     "C",         "CC",         "CCC",           "CCCC",     "CC(C)C",       "CC(C)(C)C",   "CC(C)C(C)C",

@@ -39,28 +39,6 @@ std::vector<int> support_of(const std::vector<std::vector<FeatureCount>>& x, std
   return s;
 }
 
-// R-H from R-X: the halogen atom `x` of `m` becomes a hydrogen.
-Result<Molecule> parent_of_halide(const Molecule& m, int x) {
-  std::vector<Atom> atoms;
-  std::vector<Bond> bonds;
-  const int c = m.neighbours(x)[0].atom;
-  for (int i = 0; i < m.atom_count(); ++i) {
-    if (i == x) continue;
-    Atom a = m.atom(i);
-    if (i == c) ++a.hydrogens;
-    atoms.push_back(a);
-  }
-  const auto moved = [x](int i) { return i > x ? i - 1 : i; };
-  for (int i = 0; i < m.bond_count(); ++i) {
-    Bond b = m.bond(i);
-    if (b.a == x || b.b == x) continue;
-    b.a = moved(b.a);
-    b.b = moved(b.b);
-    bonds.push_back(b);
-  }
-  return Molecule::from_graph(std::move(atoms), std::move(bonds));
-}
-
 }  // namespace
 
 FittedModel pack_model(std::string name, std::vector<std::string> parameters, const Eigen::VectorXd& values,
@@ -160,13 +138,7 @@ std::vector<ExchangeSample> exchange_samples(const Table& t) {
     if (!r.ok()) continue;
     for (int i = 0; i < r.value().atom_count(); ++i) {
       if (r.value().atom(i).unpaired != 1 || r.value().atom(i).element != element::C) continue;
-      std::vector<Atom> atoms;
-      std::vector<Bond> bonds;
-      for (int k = 0; k < r.value().atom_count(); ++k) atoms.push_back(r.value().atom(k));
-      for (int k = 0; k < r.value().bond_count(); ++k) bonds.push_back(r.value().bond(k));
-      atoms[static_cast<std::size_t>(i)].unpaired = 0;
-      ++atoms[static_cast<std::size_t>(i)].hydrogens;
-      const auto parent = Molecule::from_graph(std::move(atoms), std::move(bonds));
+      const auto parent = parent_of_radical(r.value(), i);
       if (!parent.ok()) continue;
       const auto found = dh.find(canonical_smiles(parent.value(), false) + ">" + b.radical);
       if (found == dh.end()) continue;
