@@ -1,4 +1,4 @@
--- Layout 1 of halostep.sqlite. The CSV files are the source; the table compiler fills this schema.
+-- Layout 2 of halostep.sqlite. The CSV files are the source; the table compiler fills this schema.
 -- Energies in kJ/mol (298.15 K), entropies and heat capacities in J mol-1 K-1, temperatures in K.
 -- `id` is the 0-based row number of the arrays the library loads; `source` refers to source.id.
 
@@ -38,10 +38,32 @@ CREATE TABLE bond (
   molecule TEXT NOT NULL,
   radical  TEXT NOT NULL,
   leaving  TEXT NOT NULL,
-  d298     REAL NOT NULL CHECK (d298 BETWEEN 50 AND 1200),
+  combined REAL NOT NULL CHECK (combined BETWEEN 50 AND 1200), -- weighted mean of its own rows
+  combined_u REAL NOT NULL CHECK (combined_u > 0),
+  d298     REAL NOT NULL CHECK (d298 BETWEEN 50 AND 1200),     -- of the joint adjustment
   u        REAL NOT NULL CHECK (u > 0),
+  at_molecule INTEGER NOT NULL, -- adjusted.id, or -1
+  at_radical  INTEGER NOT NULL,
+  at_leaving  INTEGER NOT NULL,
   UNIQUE (molecule, radical, leaving)
 ) STRICT;
+
+-- One joint adjustment of all enthalpies: values and covariance.
+CREATE TABLE adjusted (
+  id     INTEGER PRIMARY KEY,
+  key    TEXT NOT NULL UNIQUE,
+  smiles TEXT NOT NULL,
+  dfh298 REAL NOT NULL,
+  datum  INTEGER NOT NULL, -- -1, or the species whose enthalpy was taken as zero: only differences to it are known
+  weight REAL NOT NULL
+) STRICT;
+
+CREATE TABLE adjusted_link (
+  species    INTEGER NOT NULL REFERENCES adjusted (id),
+  other      INTEGER NOT NULL CHECK (other BETWEEN 0 AND species),
+  covariance REAL NOT NULL,
+  PRIMARY KEY (species, other)
+) STRICT, WITHOUT ROWID;
 
 CREATE TABLE bond_member (
   bond INTEGER NOT NULL REFERENCES bond (id),
@@ -74,10 +96,15 @@ CREATE TABLE species (
   smiles TEXT NOT NULL,
   name   TEXT NOT NULL,
   phase  TEXT NOT NULL CHECK (phase IN ('g', 'l', 'c')),
+  combined   REAL,
+  combined_u REAL CHECK (combined_u >= 0),
   dfh298 REAL,
   u      REAL CHECK (u >= 0),
+  at     INTEGER NOT NULL, -- adjusted.id, or -1
   s298   REAL CHECK (s298 > 0),
   cp298  REAL CHECK (cp298 > 0),
+  u_s298  REAL NOT NULL CHECK (u_s298 >= 0),
+  u_cp298 REAL NOT NULL CHECK (u_cp298 >= 0),
   UNIQUE (smiles, phase),
   CHECK ((dfh298 IS NULL) = (u IS NULL))
 ) STRICT;

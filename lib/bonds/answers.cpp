@@ -7,10 +7,13 @@
 
 #include "adjust/combine.hpp"
 #include "halostep/structure.hpp"
+#include "signature.hpp"
 
 namespace halostep {
 namespace {
 
+// A shift of the joint adjustment smaller than this is not worth a line, kJ/mol.
+constexpr double kNoMove = 0.005;
 constexpr const char* kHalogenAtoms[] = {"[F]", "[Cl]", "[Br]", "[I]"};
 constexpr int kHalogenNumbers[] = {9, 17, 35, 53};
 
@@ -18,6 +21,8 @@ int halogen_index(int z) {
   const auto* p = std::find(std::begin(kHalogenNumbers), std::end(kHalogenNumbers), z);
   return p == std::end(kHalogenNumbers) ? -1 : static_cast<int>(p - std::begin(kHalogenNumbers));
 }
+
+std::string species_key_of_atom(int x) { return std::string("1 unpaired: ") + kHalogenAtoms[x]; }
 
 Error domain(std::string message) { return {ErrorClass::domain, std::move(message), {}}; }
 
@@ -40,30 +45,61 @@ std::vector<int> BondBook::entry_sources(int entry) const {
   return s;
 }
 
+EnthalpySum BondBook::entry_sum(int entry) const {
+  const auto& e = table_.bonds[static_cast<std::size_t>(entry)];
+  EnthalpySum sum;
+  if (e.at_molecule < 0 || e.at_radical < 0 || e.at_leaving < 0) return sum;
+  add_term(sum, e.at_radical, 1);
+  add_term(sum, e.at_leaving, 1);
+  add_term(sum, e.at_molecule, -1);
+  return sum;
+}
+
+int BondBook::adjusted_index(const Analysis& a) const {
+  return adjusted_.possible(a.signature()) ? adjusted_.find(a.key()) : -1;
+}
+
 std::vector<int> BondBook::sources(const Analysis& a, const HydrogenSite& s, const BondValue& v) const {
   if (v.entry >= 0) return entry_sources(v.entry);
+  if (!v.sum.empty()) return adjusted_.sources(v.sum);
   return evidence_.hydrogen(site_features(a.plain(), a.info(), a.to_plain(s.atom)).features);
 }
 
 std::vector<int> BondBook::halide_sources(const Analysis& a, const HydrogenSite& s, int x, const BondValue& v) const {
   if (v.entry >= 0) return entry_sources(v.entry);
+  if (!v.sum.empty()) return adjusted_.sources(v.sum);
+  if (!v.exchange.empty()) return adjusted_.sources(v.exchange);
   return evidence_.exchange(x, exchange_features(a.plain(), a.info(), a.to_plain(s.atom)));
 }
 
-BondValue BondBook::measured(const Analysis& a, int atom) const {
+BondValue BondBook::known(const Analysis& a, int atom) const {
   BondValue v;
-  if (!model_.possible(a.signature()) || !model_.known(a.key())) return v;
-  v.entry = model_.measured(a.key(), canonical_smiles(a.plain().without_hydrogen(atom), false), "[H]");
-  if (v.entry < 0) return v;
-  v.route = Route::measured;
-  v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
+  const int molecule = adjusted_index(a);
+  if (molecule < 0 && (!model_.possible(a.signature()) || !model_.known(a.key()))) return v;
+  const auto radical = a.plain().without_hydrogen(atom);
+  v.entry = model_.measured(a.key(), canonical_smiles(radical, false), "[H]");
+  if (v.entry >= 0) {
+    v.route = Route::measured;
+    v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
+    v.sum = entry_sum(v.entry);
+    return v;
+  }
+  const int r = molecule < 0 ? -1 : adjusted_.find(species_key(radical));
+  if (r < 0) return v;
+  EnthalpySum sum{{r, 1}, {hydrogen_, 1}, {molecule, -1}};
+  const auto d = adjusted_.value(sum);
+  // Enthalpies known badly give way to the typed model.
+  if (!d || d->u > kAdjustedLimit) return v;
+  v.route = Route::adjusted;
+  v.d = d;
+  v.sum = std::move(sum);
   return v;
 }
 
 BondValue BondBook::hydrogen(const Analysis& a, const HydrogenSite& s, bool typed_only) const {
   const int atom = a.to_plain(s.atom);
   if (!typed_only) {
-    if (auto v = measured(a, atom); v.entry >= 0) return v;
+    if (auto v = known(a, atom); v.d) return v;
   }
   return typed_value(model_.typed(site_features(a.plain(), a.info(), atom)));
 }
@@ -74,8 +110,8 @@ std::vector<SiteBond> BondBook::sites(const Analysis& a, bool typed_only) const 
   for (const auto& s : a.sites()) {
     SiteBond b;
     const int atom = a.to_plain(s.atom);
-    if (!typed_only) b.value = measured(a, atom);
-    if (b.value.entry < 0) {
+    if (!typed_only) b.value = known(a, atom);
+    if (!b.value.d) {
       auto f = site_features(a.plain(), a.info(), atom);
       b.value = typed_value(model_.typed(f));
       b.features = std::move(f.features);
@@ -97,22 +133,45 @@ std::vector<SiteBond> BondBook::sites(const Analysis& a, bool typed_only) const 
 BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, const Quantity& delta,
                            bool typed_only) const {
   BondValue v;
-  // Only molecules of the table's size can be in it; larger ones skip the text of the halide.
-  if (!typed_only && parent.route == Route::measured) {
+  const int parent_index = typed_only ? -1 : adjusted_index(a);
+  // Only molecules of the table's composition can be in it; others skip the text of the halide.
+  if (!typed_only && adjusted_.possible(a.signature() + element_signature(kHalogenNumbers[x]))) {
     const int atom = a.to_plain(s.atom);
-    const auto rx = a.plain().with_substituent(atom, kHalogenNumbers[x]);
-    const auto key = canonical_smiles(rx, false);
-    if (model_.known(key)) {
-      v.entry = model_.measured(key, canonical_smiles(a.plain().without_hydrogen(atom), false), kHalogenAtoms[x]);
-      if (v.entry >= 0) {
-        v.route = Route::measured;
-        v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
+    const auto key = canonical_smiles(a.plain().with_substituent(atom, kHalogenNumbers[x]), false);
+    const auto radical = a.plain().without_hydrogen(atom);
+    if (model_.known(key)) v.entry = model_.measured(key, canonical_smiles(radical, false), kHalogenAtoms[x]);
+    if (v.entry >= 0) {
+      v.route = Route::measured;
+      v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
+      v.sum = entry_sum(v.entry);
+      return v;
+    }
+    const int halide = adjusted_.find(key), free = adjusted_.find(species_key_of_atom(x));
+    if (halide >= 0 && free >= 0 && parent_index >= 0 && parent.d && adjusted_.firm(halide)) {
+      EnthalpySum exchange{{parent_index, 1}, {free, 1}, {halide, -1}, {hydrogen_, -1}};
+      const auto known_delta = adjusted_.value(exchange);
+      if (known_delta) {
+        if (!parent.sum.empty()) {
+          v.sum = parent.sum;
+          add_terms(v.sum, exchange, 1);
+          v.d = adjusted_.value(v.sum);
+          v.route = Route::adjusted;
+        } else {
+          v.d = Quantity{parent.d->value + known_delta->value, std::hypot(parent.d->u, known_delta->u)};
+          v.extrapolated = parent.extrapolated;
+        }
+        v.exchange = std::move(exchange);
         return v;
       }
     }
   }
   if (!parent.d || model_.exchange_model(x).empty()) {
     v.refusal = parent.d ? "the table holds no exchange model for this halogen" : parent.refusal;
+    return v;
+  }
+  if (a.original().atom(s.atom).element != element::C) {
+    v.refusal = fmt::format("the table has no {}-{} bond of this molecule, and the exchange model covers C-X only",
+                            element_symbol(a.original().atom(s.atom).element), element_symbol(kHalogenNumbers[x]));
     return v;
   }
   v.d = Quantity{parent.d->value + delta.value, std::hypot(parent.d->u, delta.u)};
@@ -137,6 +196,23 @@ void BondBook::explain_entry(int entry, BondAnswer& out) const {
     const auto& src = table_.sources[static_cast<std::size_t>(r->source)];
     out.contributions.push_back({fmt::format("{}: {}, {}", src.id, r->method, r->provenance == "memory" ? "from memory" : "read"),
                                  combine_weight({r->d298, r->u}, all), {r->d298, r->u}, 1});
+  }
+  const double moved = e.d298.value - all.value.value;
+  if (std::abs(moved) > kNoMove || e.d298.u < all.value.u) {
+    out.contributions.push_back({"other rows of the table, by the joint adjustment", 1, {moved, e.d298.u}, 1});
+  }
+}
+
+void BondBook::explain_sum(const EnthalpySum& sum, BondAnswer& out) const {
+  out.sources = adjusted_.sources(sum);
+  for (const auto& t : sum) {
+    const auto& s = adjusted_.species(t.species);
+    const double u = std::sqrt(std::max(0.0, adjusted_.covariance({{t.species, 1}}, {{t.species, 1}})));
+    const auto name = s.datum < 0            ? fmt::format("formation enthalpy of {}", s.smiles)
+                      : s.datum == t.species ? fmt::format("formation enthalpy of {}, taken as zero", s.smiles)
+                                             : fmt::format("enthalpy of {} over that of {}", s.smiles, adjusted_.species(s.datum).smiles);
+    out.contributions.push_back({name, t.factor, {t.factor * s.dfh298, std::abs(t.factor) * u},
+                                 static_cast<int>(adjusted_.sources(t.species).size())});
   }
 }
 
@@ -168,6 +244,8 @@ BondAnswer BondBook::hydrogen_answer(const Analysis& a, const HydrogenSite& s, c
   b.type = site_type(a.plain(), a.info(), a.to_plain(s.atom));
   if (v.entry >= 0) {
     explain_entry(v.entry, b);
+  } else if (!v.sum.empty()) {
+    explain_sum(v.sum, b);
   } else if (v.d) {
     explain_typed(model_.bonds(), feature_names(), site.features, b);
     b.sources = evidence_.hydrogen(site.features);
@@ -190,18 +268,31 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
     b.type = x >= 0 ? fmt::format("{}, {}", b.bond, h.count == 1 ? "one" : fmt::format("{} equivalent", h.count))
                     : fmt::format("{}, weak bond", b.bond);
   }
-  if (!o.typed && model_.possible(a.signature()) && model_.known(a.key())) {
+  if (!o.typed && (adjusted_.possible(a.signature()) || model_.possible(a.signature()))) {
     const int pa = a.to_plain(h.centre), pb = a.to_plain(h.partner);
     const int bond = a.plain().bond_between(pa, pb);
     const auto plain = a.plain().broken(bond);
     const bool plain_first = a.plain().bond(bond).a == pa;
-    const int e = model_.measured(a.key(), canonical_smiles(plain_first ? plain.first : plain.second, false),
-                                  canonical_smiles(plain_first ? plain.second : plain.first, false));
+    const auto &own = plain_first ? plain.first : plain.second, &other = plain_first ? plain.second : plain.first;
+    const int e = model_.known(a.key()) ? model_.measured(a.key(), canonical_smiles(own, false), canonical_smiles(other, false)) : -1;
     if (e >= 0) {
       b.route = Route::measured;
       b.d298 = table_.bonds[static_cast<std::size_t>(e)].d298;
       explain_entry(e, b);
       return b;
+    }
+    const int m_at = adjusted_index(a), own_at = adjusted_.find(species_key(own)), other_at = adjusted_.find(species_key(other));
+    if (m_at >= 0 && own_at >= 0 && other_at >= 0) {
+      EnthalpySum sum;
+      add_term(sum, own_at, 1);
+      add_term(sum, other_at, 1);
+      add_term(sum, m_at, -1);
+      if (const auto d = adjusted_.value(sum); d && d->u <= kAdjustedLimit) {
+        b.route = Route::adjusted;
+        b.d298 = d;
+        explain_sum(sum, b);
+        return b;
+      }
     }
   }
   if (x >= 0) typed_halide(a, h, x, o, b);
@@ -222,7 +313,7 @@ void BondBook::typed_halide(const Analysis& a, const HeavyBond& h, int x, const 
   const HydrogenSite site{c, 1, {c}};
   const auto value = hydrogen(pa, site, o.typed);
   const auto f = exchange_features(pa.plain(), pa.info(), c);
-  const auto rx = halide(pa, site, x, value, model_.exchange(x, f), true);
+  const auto rx = halide(pa, site, x, value, model_.exchange(x, f), o.typed);
   b.d298 = rx.d;
   b.extrapolated = rx.extrapolated;
   if (!rx.d) {
@@ -232,6 +323,14 @@ void BondBook::typed_halide(const Analysis& a, const HeavyBond& h, int x, const 
   if (!o.details) return;
   b.contributions.push_back({fmt::format("C-H of the parent, {}", route_name(value.route)), 1.0, *value.d, 1});
   b.sources = sources(pa, site, value);
+  if (!rx.exchange.empty()) {
+    const auto own = b.sources;
+    explain_sum(rx.exchange, b);
+    b.sources.insert(b.sources.end(), own.begin(), own.end());
+    std::sort(b.sources.begin(), b.sources.end());
+    b.sources.erase(std::unique(b.sources.begin(), b.sources.end()), b.sources.end());
+    return;
+  }
   explain_typed(model_.exchange_model(x), exchange_feature_names(), f, b);
   for (const int q : evidence_.exchange(x, f)) {
     if (std::find(b.sources.begin(), b.sources.end(), q) == b.sources.end()) b.sources.push_back(q);

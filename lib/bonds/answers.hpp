@@ -3,6 +3,7 @@
 #include <array>
 #include <vector>
 
+#include "adjusted.hpp"
 #include "analysis.hpp"
 #include "bond_model.hpp"
 #include "evidence.hpp"
@@ -16,6 +17,8 @@ struct BondValue {
   Route route = Route::typed;
   bool extrapolated = false;
   int entry = -1;                 // measured: index into Table::bonds
+  EnthalpySum sum;                // measured, adjusted: d as a sum of adjusted enthalpies
+  EnthalpySum exchange;           // R-X with d from D(R-H): the adjusted D(R-X) - D(R-H), where known
   std::string refusal;
 };
 
@@ -29,7 +32,14 @@ struct SiteBond {
 
 class BondBook {
  public:
-  BondBook(const Table& table, const BondModel& model) : table_(table), model_(model), evidence_(table) {}
+  BondBook(const Table& table, const BondModel& model)
+      : table_(table), model_(model), adjusted_(table), evidence_(table), hydrogen_(adjusted_.find("1 unpaired: [H]")) {}
+
+  [[nodiscard]] const AdjustedBook& adjusted() const { return adjusted_; }
+  /// D of an entry of the table as a sum of adjusted enthalpies; empty where a part is not in the adjustment.
+  [[nodiscard]] EnthalpySum entry_sum(int entry) const;
+  /// Index of the molecule in the joint adjustment, or -1.
+  [[nodiscard]] int adjusted_index(const Analysis& a) const;
 
   /// All X-H sites, in the order of Analysis::sites().
   [[nodiscard]] std::vector<SiteBond> sites(const Analysis& a, bool typed_only) const;
@@ -47,17 +57,21 @@ class BondBook {
   [[nodiscard]] std::vector<int> entry_sources(int entry) const;
 
  private:
-  [[nodiscard]] BondValue measured(const Analysis& a, int atom) const;
+  /// Measured or adjusted value of X-H at an atom of plain(); without value where the table has neither.
+  [[nodiscard]] BondValue known(const Analysis& a, int atom) const;
   [[nodiscard]] BondAnswer hydrogen_answer(const Analysis& a, const HydrogenSite& s, const SiteBond& b, const BondOptions& o) const;
   [[nodiscard]] BondAnswer heavy_answer(const Analysis& a, const HeavyBond& h, const BondOptions& o) const;
   void typed_halide(const Analysis& a, const HeavyBond& h, int x, const BondOptions& o, BondAnswer& b) const;
   void deuterium(const Analysis& a, std::vector<BondAnswer>& out) const;
   void explain_entry(int entry, BondAnswer& out) const;
+  void explain_sum(const EnthalpySum& sum, BondAnswer& out) const;
   void explain_typed(const LinearModel& m, const std::vector<std::string_view>& names,
                      const std::vector<FeatureCount>& f, BondAnswer& out) const;
   const Table& table_;
   const BondModel& model_;
+  AdjustedBook adjusted_;
   Evidence evidence_;
+  int hydrogen_;  // the atom, in the adjustment
 };
 
 }  // namespace halostep

@@ -22,6 +22,11 @@ std::string skeleton_key(const Molecule& m) {
   return skeleton.ok() ? canonical_smiles(skeleton.value(), false) : std::string();
 }
 
+std::string species_key(const Molecule& m) {
+  const int unpaired = m.unpaired();
+  return unpaired == 0 ? canonical_smiles(m, false) : std::to_string(unpaired) + " unpaired: " + skeleton_key(m);
+}
+
 std::vector<HydrogenSite> hydrogen_sites(const Molecule& m, const std::vector<int>& classes) {
   std::vector<HydrogenSite> out;
   std::vector<int> slot(classes.size(), -1);

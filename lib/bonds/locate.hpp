@@ -11,6 +11,10 @@ namespace halostep {
 /// orders ignored. Equal for the resonance forms of one radical.
 std::string skeleton_key(const Molecule& m);
 
+/// Key of a species in the joint adjustment: canonical text of a closed shell, number of free valences and skeleton of
+/// a radical.
+std::string species_key(const Molecule& m);
+
 /// Representative atom (first of its class) whose loss of one H gives `radical`, directly or, failing that, up to
 /// resonance; -1 when there is none. `classes` are the symmetry classes of `m`.
 int find_site(const Molecule& m, const std::vector<int>& classes, const Molecule& radical);

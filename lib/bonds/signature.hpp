@@ -11,5 +11,7 @@ namespace halostep {
 std::uint64_t heavy_signature(const Molecule& m) noexcept;
 /// The same from a SMILES text.
 std::uint64_t heavy_signature(std::string_view smiles) noexcept;
+/// What one more atom of element `z` adds to a signature.
+std::uint64_t element_signature(int z) noexcept;
 
 }  // namespace halostep

@@ -6,7 +6,7 @@ namespace halostep {
 namespace {
 
 bool same(const SiteKind& a, const SiteKind& b) {
-  return a.entry == b.entry && a.d.value == b.d.value && a.d.u == b.d.u && a.rate.a_class == b.rate.a_class &&
+  return a.sum.empty() == b.sum.empty() && a.d.value == b.d.value && a.d.u == b.d.u && a.rate.a_class == b.rate.a_class &&
          a.rate.carbons == b.rate.carbons && a.rate.small_ring == b.rate.small_ring && a.rate.count == b.rate.count;
 }
 
@@ -31,13 +31,14 @@ CarbonSites carbon_sites(const Analysis& a, const std::vector<SiteBond>& bonds, 
     }
     if (c.refusal.empty()) {
       k.d = *b.value.d;
-      k.entry = b.value.entry;
+      k.sum = b.value.sum;
       const auto it = std::find_if(out.kinds.begin(), out.kinds.end(), [&](const SiteKind& q) { return same(q, k); });
       c.kind = static_cast<int>(it - out.kinds.begin());
       if (it == out.kinds.end()) {
         k.features = b.features;
         const double own = scatter_share(b.features) * model.bonds().scatter;
-        k.own_u2 = k.entry < 0 ? own * own : k.d.u * k.d.u;
+        // A measured bond outside the adjustment shares nothing.
+        k.own_u2 = !k.sum.empty() ? 0.0 : b.value.route == Route::typed ? own * own : k.d.u * k.d.u;
         out.kinds.push_back(std::move(k));
       }
     }

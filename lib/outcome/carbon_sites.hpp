@@ -12,9 +12,9 @@ namespace halostep {
 struct SiteKind {
   Quantity d;                          // D(R-H), kJ/mol
   double own_u2 = 0;                   // part of u(d)^2 no other kind shares
+  EnthalpySum sum;                     // measured, adjusted: d as adjusted enthalpies, which kinds share
   std::vector<FeatureCount> features;  // typed route: shares the fitted corrections with other kinds
   RateSite rate;
-  int entry = -1;                      // measured route: index into Table::bonds
 };
 
 struct CarbonSite {

@@ -73,7 +73,7 @@ std::vector<HalogenRates> Engine::Impl::halogen_rates(const Analysis& a, const C
     const int x = static_cast<int>(halogen);
     HalogenRates r{halogen, std::nullopt};
     if (carrier(x) != nullptr) {
-      r.rates = kind_rates(c, rates, model, x, *steps.halogen(x).d_hx, a.heavy_atoms(), temperature, with_errors);
+      r.rates = kind_rates(c, rates, model, bonds.adjusted(), x, *steps.halogen(x).d_hx, a.heavy_atoms(), temperature, with_errors);
     }
     out.push_back(std::move(r));
   }
@@ -87,18 +87,27 @@ std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const std:
   for (const auto& r : rated) halogens.push_back(r.halogen);
   auto list = steps.chain(a, sites, halogens, temperature, o);
   // chain() gives the abstractions of one halogen after the other, each in the order of the sites.
-  std::size_t n = 0;
+  std::size_t n = 0, site = 0;
   for (auto& s : list) {
     if (s.kind != StepKind::abstraction) continue;
-    const auto& r = rated[n / c.sites.size()];
-    const std::size_t site = n++ % c.sites.size();
-    if (!r.rates) {
+    const auto& r = rated[n / sites.size()];
+    const std::size_t any = n++ % sites.size();
+    if (any == 0) site = 0;
+    const bool carbon = a.original().atom(a.sites()[any].atom).element == element::C;
+    if (carbon) ++site;
+    if (!carbon) {
+      if (o.details) s.why_ea = "the rate model covers C-H only";
+    } else if (!r.rates) {
       if (o.details) s.why_ea = "the table holds no rate model for this halogen";
-    } else if (c.sites[site].kind < 0) {
-      if (o.details) s.why_ea = c.sites[site].refusal;
+    } else if (c.sites[site - 1].kind < 0) {
+      if (o.details) s.why_ea = c.sites[site - 1].refusal;
     } else {
-      s.ea = site_ea(c, *r.rates, *carrier(static_cast<int>(r.halogen)), site, temperature);
-      s.k_cm3_s = site_k(c, *r.rates, site);
+      const int x = static_cast<int>(r.halogen);
+      s.ea = Quantity{site_ea(c, *r.rates, *carrier(x), site - 1, temperature), 0};
+      s.k_cm3_s = site_k(c, *r.rates, site - 1);
+      if (!o.details) continue;
+      s.ea->u = barrier_errors(c, rates, x, *steps.halogen(x).d_hx, site - 1, temperature).u_ea;
+      s.u_log10_k_cm3_s = u_log10_k(*r.rates, c, site - 1);
     }
   }
   return list;
@@ -129,8 +138,8 @@ Result<std::vector<StepAnswer>> Engine::steps(const Molecule& m, std::span<const
   const Analysis a(m);
   const auto sites = impl_->bonds.sites(a, o.typed);
   const auto c = carbon_sites(a, sites, impl_->model);
-  if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
-  return impl_->step_answers(a, sites, c, impl_->halogen_rates(a, c, halogens, temperature, false), temperature, o);
+  if (sites.empty()) return Error{ErrorClass::domain, "no X-H bond in this structure", {}};
+  return impl_->step_answers(a, sites, c, impl_->halogen_rates(a, c, halogens, temperature, o.details), temperature, o);
 }
 
 Result<StepAnswer> Engine::reaction(std::string_view text, double temperature) const {

@@ -78,7 +78,7 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
       o.h_count = s.site->h_count;
       o.dh = {c.kinds[k].d.value - d_hx.value, std::hypot(c.kinds[k].d.u, d_hx.u)};
       o.k_cm3_s = site_k(c, r, i);
-      o.u_log10_k = std::sqrt(std::max(0.0, r.shared[k] + r.own[k])) / std::log(10.0);
+      o.u_log10_k = u_log10_k(r, c, i);
       o.ea = site_ea(c, r, *m, i, temperature);
       o.a_cm3_s = o.k_cm3_s * std::exp(o.ea / (kGasConstant * temperature));
       o.ts_position = r.at[k].position;
@@ -88,6 +88,9 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
       const char* thin = rates.thin(x, c.kinds[k].rate);
       o.extrapolated = thin != nullptr || s.extrapolated || temperature < m->t_low || temperature > m->t_high;
       if (details) {
+        const auto u = barrier_errors(c, rates, x, d_hx, i, temperature);
+        o.u_ea = u.u_ea;
+        o.u_ts_position = u.u_position;
         o.atoms = s.site->atoms;
         o.radical = canonical_smiles(a.original().without_hydrogen(s.site->atom));
         o.type = site_type(a.plain(), a.info(), a.to_plain(s.site->atom));

@@ -30,6 +30,7 @@ constexpr double kNearlyAll = 0.99;
 struct Carrier {
   const RateBook& rates;
   const BondModel& model;
+  const AdjustedBook& adjusted;
   int x;
   const Quantity& d_hx;
 };
@@ -38,10 +39,12 @@ Projection project(const KindRates& r, const CarbonSites& s, const Carrier& c, c
   const auto& bonds = c.model.bonds();
   std::vector<double> total(c.rates.carrier(c.x)->p.size(), 0.0), corrections(bonds.value.size(), 0.0);
   double by_hx = 0;
+  EnthalpySum enthalpies;
   for (std::size_t k = 0; k < weight.size(); ++k) {
     const double w = weight[k], g = r.gradient[k].dh;
     for (const auto& p : r.gradient[k].parameters) total[static_cast<std::size_t>(p.parameter)] += w * p.value;
     for (const auto& f : s.kinds[k].features) corrections[static_cast<std::size_t>(f.feature)] += w * g * f.count;
+    if (!s.kinds[k].sum.empty()) add_terms(enthalpies, s.kinds[k].sum, w * g);
     by_hx += w * g * c.d_hx.u * c.d_hx.u;
   }
   const auto c_total = c.rates.times_covariance(c.x, total);
@@ -56,6 +59,7 @@ Projection project(const KindRates& r, const CarbonSites& s, const Carrier& c, c
     double sum = g * by_hx;
     for (const auto& p : r.gradient[k].parameters) sum += p.value * c_total[static_cast<std::size_t>(p.parameter)];
     if (!s.kinds[k].features.empty()) sum += g * bonds.covariance_of(s.kinds[k].features, mixed);
+    if (!s.kinds[k].sum.empty()) sum += g * c.adjusted.covariance(s.kinds[k].sum, enthalpies);
     out.row[k] = sum;
     out.whole += weight[k] * sum;
   }
@@ -72,7 +76,8 @@ void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
     const double g = r.gradient[k].dh, own = c.rates.carrier(c.x)->scatter * scatter_share(kind.rate);
     r.own[k] = own * own + g * g * kind.own_u2;
     r.shared[k] = c.rates.variance(c.x, r.gradient[k]) +
-                  g * g * (c.d_hx.u * c.d_hx.u + c.model.bonds().covariance_of(kind.features, kind.features));
+                  g * g * (c.d_hx.u * c.d_hx.u + c.model.bonds().covariance_of(kind.features, kind.features) +
+                           c.adjusted.covariance(kind.sum, kind.sum));
   }
   r.row.assign(n, 0.0);
   // One site takes all, whatever the errors.
@@ -111,8 +116,8 @@ double same_kind(const CarbonSites& s, const std::vector<double>& w, std::size_t
 
 }  // namespace
 
-KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondModel& model, int x, const Quantity& d_hx,
-                     int heavy_atoms, double temperature, bool with_errors) {
+KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondModel& model, const AdjustedBook& adjusted, int x,
+                     const Quantity& d_hx, int heavy_atoms, double temperature, bool with_errors) {
   KindRates r;
   const auto& m = *rates.carrier(x);
   for (const auto& k : s.kinds) {
@@ -132,7 +137,7 @@ KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondMode
     r.damping = limited_total(r.total, r.total / q) / r.total;
     r.ea_shift = -q3 / (1 + q3) * ea_sum / r.total;
   }
-  if (with_errors) add_errors(r, s, {rates, model, x, d_hx});
+  if (with_errors) add_errors(r, s, {rates, model, adjusted, x, d_hx});
   return r;
 }
 
@@ -140,6 +145,56 @@ double site_k(const CarbonSites& s, const KindRates& r, std::size_t site) { retu
 
 double site_ea(const CarbonSites& s, const KindRates& r, const CarrierModel& m, std::size_t site, double temperature) {
   return raw_ea(m, r.at[kind_of(s, site)], temperature) + r.ea_shift;
+}
+
+double u_log10_k(const KindRates& r, const CarbonSites& s, std::size_t site) {
+  const std::size_t k = kind_of(s, site);
+  return std::sqrt(std::max(0.0, r.shared[k] + r.own[k])) / std::log(10.0);
+}
+
+namespace {
+
+// Derivatives of Ea and of the position of the transition state by what they hang on.
+struct BarrierGradient {
+  RateGradient ea, position;
+};
+
+BarrierGradient barrier_gradient(const CarrierModel& m, const RateSite& site, double dh, double temperature) {
+  constexpr double kStep = 1e-4, kSpan = 1.0;  // relative; K
+  std::vector<double> p = m.p;
+  const auto both = [&](double d) {
+    const auto ln_k = [&](double t) { return site_rate(p, m.form, site, d, t).ln_k; };
+    const double ea = kGasConstant * temperature * temperature * (ln_k(temperature + kSpan) - ln_k(temperature - kSpan)) / (2 * kSpan);
+    return std::pair(ea, site_rate(p, m.form, site, d, temperature).position);
+  };
+  BarrierGradient g;
+  for (std::size_t i = 0; i < p.size(); ++i) {
+    const double was = p[i], step = kStep * std::max(1.0, std::abs(was));
+    p[i] = was + step;
+    const auto up = both(dh);
+    p[i] = was - step;
+    const auto down = both(dh);
+    p[i] = was;
+    if (up.first != down.first) g.ea.parameters.push_back({static_cast<int>(i), (up.first - down.first) / (2 * step)});
+    if (up.second != down.second) g.position.parameters.push_back({static_cast<int>(i), (up.second - down.second) / (2 * step)});
+  }
+  const auto up = both(dh + kStep), down = both(dh - kStep);
+  g.ea.dh = (up.first - down.first) / (2 * kStep);
+  g.position.dh = (up.second - down.second) / (2 * kStep);
+  return g;
+}
+
+}  // namespace
+
+BarrierErrors barrier_errors(const CarbonSites& s, const RateBook& rates, int x, const Quantity& d_hx, std::size_t site, double temperature) {
+  const auto& m = *rates.carrier(x);
+  const auto& kind = s.kinds[kind_of(s, site)];
+  const auto g = barrier_gradient(m, kind.rate, kind.d.value - d_hx.value, temperature);
+  const double u_dh = std::hypot(kind.d.u, d_hx.u);
+  // What the model leaves of k is taken for a fault of the barrier: the larger of the two ways to read it.
+  const double own = m.scatter * scatter_share(kind.rate) * kGasConstant * temperature;
+  return {std::sqrt(std::max(0.0, rates.variance(x, g.ea)) + g.ea.dh * g.ea.dh * u_dh * u_dh + own * own),
+          std::sqrt(std::max(0.0, rates.variance(x, g.position)) + g.position.dh * g.position.dh * u_dh * u_dh)};
 }
 
 std::vector<Share> shares(const CarbonSites& s, const KindRates& r) {

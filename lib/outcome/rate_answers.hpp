@@ -24,13 +24,21 @@ struct KindRates {
 };
 
 /// D(H-X) of the halogen; false `with_errors` leaves the error parts empty.
-KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondModel& model, int x, const Quantity& d_hx,
-                     int heavy_atoms, double temperature, bool with_errors);
+KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondModel& model, const AdjustedBook& adjusted, int x,
+                     const Quantity& d_hx, int heavy_atoms, double temperature, bool with_errors);
 
 /// k of all H of a site, cm3 molecule-1 s-1.
 double site_k(const CarbonSites& s, const KindRates& r, std::size_t site);
 /// Arrhenius activation energy of a site at T, kJ/mol: R T^2 d ln k / dT, the limit included.
 double site_ea(const CarbonSites& s, const KindRates& r, const CarrierModel& m, std::size_t site, double temperature);
+
+/// Standard uncertainty of log10 k of a site; needs `with_errors`.
+double u_log10_k(const KindRates& r, const CarbonSites& s, std::size_t site);
+/// Standard uncertainties of Ea (kJ/mol) and of the position of the transition state of a site, to first order.
+struct BarrierErrors {
+  double u_ea = 0, u_position = 0;
+};
+BarrierErrors barrier_errors(const CarbonSites& s, const RateBook& rates, int x, const Quantity& d_hx, std::size_t site, double temperature);
 
 /// Share of each site (0 for sites outside) with its 95 % range, on the logit scale so that it stays within 0 and 1.
 struct Share {

@@ -54,9 +54,11 @@ void Engine::Impl::add_rate(StepAnswer& s, std::string_view text) const {
     return;
   }
   const double t = s.temperature;
-  const auto r = kind_rates(c, rates, model, f.x, *steps.halogen(f.x).d_hx, a.heavy_atoms(), t, false);
+  const auto r = kind_rates(c, rates, model, bonds.adjusted(), f.x, *steps.halogen(f.x).d_hx, a.heavy_atoms(), t, true);
   const auto i = static_cast<std::size_t>(site - c.sites.begin());
-  double ea = site_ea(c, r, *carrier(f.x), i, t), k = site_k(c, r, i);
+  const auto& d_hx = *steps.halogen(f.x).d_hx;
+  Quantity ea{site_ea(c, r, *carrier(f.x), i, t), barrier_errors(c, rates, f.x, d_hx, i, t).u_ea};
+  double k = site_k(c, r, i), u_log10 = u_log10_k(r, c, i);
   s.why_ea.clear();
   // Detailed balance; two species on either side, so Kc = Kp and dU = dH.
   if (reverse) {
@@ -64,11 +66,13 @@ void Engine::Impl::add_rate(StepAnswer& s, std::string_view text) const {
       s.why_ea = "the reverse of an abstraction needs its equilibrium constant; " + s.why_ds;
       return;
     }
-    ea += *s.dg + t * *s.ds / 1000.0;
-    k *= std::pow(10.0, *s.log10_k);
+    ea = {ea.value + s.dg->value + t * s.ds->value / 1000.0, std::hypot(ea.u, s.dh ? s.dh->u : 0.0)};
+    k *= std::pow(10.0, s.log10_k->value);
+    u_log10 = std::hypot(u_log10, s.log10_k->u);
   }
   s.ea = ea;
   s.k_cm3_s = k;
+  s.u_log10_k_cm3_s = u_log10;
   for (const int q : rate_evidence.sources(f.x, a.key(), {c.kinds[static_cast<std::size_t>(site->kind)].rate.a_class})) {
     if (std::find(s.sources.begin(), s.sources.end(), q) == s.sources.end()) s.sources.push_back(q);
   }

@@ -39,8 +39,10 @@ Json json_site(const SiteOutcome& site) {
   record.put_number("k_cm3_s", site.k_cm3_s, kRateDigits);
   record.put_number("u_log10_k", site.u_log10_k, kRateDigits);
   record.put_number("ea_kj_mol", site.ea, kEnergyDigits);
+  record.put_number("u_ea_kj_mol", site.u_ea, kEnergyDigits);
   record.put_number("a_cm3_s", site.a_cm3_s, kRateDigits);
   record.put_number("ts_position", site.ts_position, kRateDigits);
+  record.put_number("u_ts_position", site.u_ts_position, kRateDigits);
   record.put_number("share", site.share, 15);
   record.put_number("share_low", site.share_low, 15);
   record.put_number("share_high", site.share_high, 15);
@@ -116,11 +118,16 @@ Json json_step(const Table& table, const StepAnswer& step) {
   record.put_number("temperature_k", step.temperature, kEnergyDigits);
   record.put_number("dh_kj_mol", value_of(step.dh), kEnergyDigits, no_dh);
   record.put_number("u_kj_mol", u_of(step.dh), kEnergyDigits, no_dh);
-  record.put_number("ds_j_mol_k", step.ds, kEnergyDigits, no_ds);
-  record.put_number("dg_kj_mol", step.dg, kEnergyDigits, step.dh ? no_ds : no_dh);
-  record.put_number("log10_k", step.log10_k, kEnergyDigits, step.dh ? no_ds : no_dh);
-  record.put_number("ea_kj_mol", step.ea, kEnergyDigits, no_ea);
+  const auto pair = [&](const char* key, const char* u_key, const std::optional<Quantity>& q, const std::string& why) {
+    record.put_number(key, value_of(q), kEnergyDigits, why);
+    record.put_number(u_key, u_of(q), kEnergyDigits, why);
+  };
+  pair("ds_j_mol_k", "u_ds_j_mol_k", step.ds, no_ds);
+  pair("dg_kj_mol", "u_dg_kj_mol", step.dg, step.dh ? no_ds : no_dh);
+  pair("log10_k", "u_log10_k", step.log10_k, step.dh ? no_ds : no_dh);
+  pair("ea_kj_mol", "u_ea_kj_mol", step.ea, no_ea);
   record.put_number("k_cm3_s", step.k_cm3_s, kRateDigits, no_ea);
+  record.put_number("u_log10_k_cm3_s", step.k_cm3_s ? std::optional(step.u_log10_k_cm3_s) : std::nullopt, kRateDigits, no_ea);
   record.put_text("route", step.route, no_dh);
   record.put("sources", json_sources(table, step.sources));
   return record.finish();

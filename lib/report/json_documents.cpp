@@ -26,8 +26,8 @@ Json refused_reaction(const ReactionRecord& reaction) {
   record.put("kind", step_kind_name(StepKind::elementary));
   record.put("reaction", reaction.input);
   put_balance(record, error);
-  for (const char* key : {"radical", "temperature_k", "dh_kj_mol", "u_kj_mol", "ds_j_mol_k", "dg_kj_mol", "log10_k",
-                          "ea_kj_mol", "k_cm3_s", "route"}) {
+  for (const char* key : {"radical", "temperature_k", "dh_kj_mol", "u_kj_mol", "ds_j_mol_k", "u_ds_j_mol_k", "dg_kj_mol",
+                          "u_dg_kj_mol", "log10_k", "u_log10_k", "ea_kj_mol", "u_ea_kj_mol", "k_cm3_s", "u_log10_k_cm3_s", "route"}) {
     record.put_null(key, reason);
   }
   record.put("sources", Json::array());

@@ -20,10 +20,10 @@ std::string sites_text(const HalogenOutcome& outcome, EnergyUnit unit) {
   for (const auto& s : outcome.sites) {
     std::vector<std::string> row{s.radical, std::to_string(s.h_count), s.type};
     add_quantity(row, s.dh, unit);
-    row.push_back(energy_cell(s.ea, unit));
+    row.push_back(energy_cell(s.ea, unit) + " ± " + energy_cell(s.u_ea, unit));
     row.push_back(format_scientific(s.k_cm3_s, 3));
     row.push_back(format_fixed(s.u_log10_k, 2));
-    row.push_back(format_fixed(s.ts_position, 2));
+    row.push_back(format_fixed(s.ts_position, 2) + " ± " + format_fixed(s.u_ts_position, 2));
     row.push_back(percent(s.share));
     row.push_back(percent_range(s.share_low, s.share_high));
     row.push_back(s.extrapolated ? "extrapolated" : "");
@@ -118,12 +118,12 @@ std::vector<std::vector<std::string>> outcome_rows(const OutcomeRecord& record, 
       }
       rows.push_back({halogen_name(outcome.halogen), csv_number(outcome.temperature), s.radical,
                       std::to_string(s.h_count), s.type, csv_energy(s.dh.value, unit), csv_energy(s.dh.u, unit),
-                      csv_number(s.k_cm3_s), csv_number(s.u_log10_k), csv_energy(s.ea, unit), csv_number(s.ts_position),
+                      csv_number(s.k_cm3_s), csv_number(s.u_log10_k), csv_energy(s.ea, unit), csv_energy(s.u_ea, unit), csv_number(s.ts_position), csv_number(s.u_ts_position),
                       csv_number(s.share), csv_number(s.share_low), csv_number(s.share_high),
                       s.extrapolated ? "true" : "false", best});
     }
   }
-  if (rows.empty()) rows.emplace_back(16);
+  if (rows.empty()) rows.emplace_back(18);
   return rows;
 }
 
@@ -155,7 +155,7 @@ std::string outcome_csv(const Table&, std::span<const OutcomeRecord> records, En
   const std::string suffix = unit_suffix(unit);
   add_columns(grid.columns,
               {"halogen", "temperature_k", "radical", "h_count", "type", "dh_" + suffix, "u_dh_" + suffix, "k_cm3_s",
-               "u_log10_k", "ea_" + suffix, "ts_position", "share", "share_low", "share_high", "extrapolated", "best"});
+               "u_log10_k", "ea_" + suffix, "u_ea_" + suffix, "ts_position", "u_ts_position", "share", "share_low", "share_high", "extrapolated", "best"});
   for (auto& column : error_columns()) grid.columns.push_back(column);
   for (const auto& record : records) {
     for (auto& cells : outcome_rows(record, unit)) {

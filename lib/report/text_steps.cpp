@@ -9,8 +9,12 @@ namespace halostep {
 
 namespace {
 
-std::string optional_cell(std::optional<double> value, int decimals) {
-  return value && std::isfinite(*value) ? format_fixed(*value, decimals) : "-";
+/// "12.3 ± 0.4"; a small u gets the decimals it needs.
+std::string pair_cell(const std::optional<Quantity>& q, double scale, int decimals) {
+  if (!q || !std::isfinite(q->value)) return "-";
+  const double u = scale * q->u;
+  while (decimals < 3 && u > 0 && u < 0.5 * std::pow(10.0, -decimals)) ++decimals;
+  return format_fixed(scale * q->value, decimals) + " ± " + format_fixed(u, decimals);
 }
 
 Grid steps_grid(EnergyUnit unit) {
@@ -20,7 +24,7 @@ Grid steps_grid(EnergyUnit unit) {
   grid.columns = {{"X", false},           {"step", false},         {"reaction", false},
                   {"T K", true},          {"dH298 " + name, true}, {"u " + name, true},
                   {"dS J/(mol K)", true}, {"dG " + name, true},    {"log10 K", true},
-                  {"Ea " + name, true},   {"k cm3/s", true}};
+                  {"Ea " + name, true},   {"k cm3/s", true}, {"u log10 k", true}};
   return grid;
 }
 
@@ -28,11 +32,13 @@ void add_step(Grid& grid, const StepAnswer& s, EnergyUnit unit) {
   std::vector<std::string> row{s.halogen ? halogen_name(*s.halogen) : "", step_kind_name(s.kind), s.reaction,
                                format_fixed(s.temperature, 2)};
   add_quantity(row, s.dh, unit);
-  row.push_back(optional_cell(s.ds, 1));
-  row.push_back(energy_cell(s.dg, unit));
-  row.push_back(optional_cell(s.log10_k, 2));
-  row.push_back(s.ea ? energy_cell(s.ea, unit) : "");
+  const double scale = from_kj(1.0, unit);
+  row.push_back(pair_cell(s.ds, 1, 1));
+  row.push_back(pair_cell(s.dg, scale, 1));
+  row.push_back(pair_cell(s.log10_k, 1, 2));
+  row.push_back(s.ea ? pair_cell(s.ea, scale, 1) : "");
   row.push_back(s.k_cm3_s ? format_scientific(*s.k_cm3_s, 3) : "");
+  row.push_back(s.k_cm3_s ? format_fixed(s.u_log10_k_cm3_s, 2) : "");
   grid.rows.push_back(std::move(row));
 }
 
@@ -75,6 +81,11 @@ std::string block(const Table& table, std::span<const StepAnswer> steps, const T
   return out;
 }
 
+std::optional<double> value(const std::optional<Quantity>& q) { return q ? std::optional(q->value) : std::nullopt; }
+std::optional<double> u(const std::optional<Quantity>& q) { return q ? std::optional(q->u) : std::nullopt; }
+
+constexpr std::size_t kStepCells = 19;
+
 std::vector<std::string> step_cells(const Table& table, const StepAnswer& s, EnergyUnit unit) {
   return {s.halogen ? halogen_name(*s.halogen) : "",
           step_kind_name(s.kind),
@@ -83,11 +94,16 @@ std::vector<std::string> step_cells(const Table& table, const StepAnswer& s, Ene
           csv_number(s.temperature),
           csv_energy(s.dh ? std::optional(s.dh->value) : std::nullopt, unit),
           csv_energy(s.dh ? std::optional(s.dh->u) : std::nullopt, unit),
-          csv_number(s.ds),
-          csv_energy(s.dg, unit),
-          csv_number(s.log10_k),
-          csv_energy(s.ea, unit),
+          csv_number(value(s.ds)),
+          csv_number(u(s.ds)),
+          csv_energy(value(s.dg), unit),
+          csv_energy(u(s.dg), unit),
+          csv_number(value(s.log10_k)),
+          csv_number(u(s.log10_k)),
+          csv_energy(value(s.ea), unit),
+          csv_energy(u(s.ea), unit),
           csv_number(s.k_cm3_s),
+          csv_number(s.k_cm3_s ? std::optional(s.u_log10_k_cm3_s) : std::nullopt),
           s.route,
           source_ids(table, s.sources)};
 }
@@ -116,7 +132,8 @@ std::string steps_text(const Table& table, std::span<const StepsRecord> records,
   out += legend(
       {"dH298: enthalpy of the step as written, gas, 298.15 K; u: its standard uncertainty. dS, dG, K: at T, "
        "standard state 1 bar; - where the table lacks the data. Ea, k: Arrhenius activation energy (may be "
-       "negative) and rate coefficient of all equivalent hydrogens at T, abstraction only.",
+       "negative) and rate coefficient of all equivalent hydrogens at T, abstraction at carbon only. ±: standard "
+       "uncertainty.",
        "initiation: X2 -> 2 X.; abstraction: X. + RH -> HX + R.; transfer: R. + X2 -> RX + X.; net: RH + X2 -> RX + "
        "HX; a chain needs abstraction not far uphill and net below zero."});
   out += source_list(table, cited) + caution_text() + '\n' + table_line(table);
@@ -129,7 +146,8 @@ std::string steps_csv(const Table& table, std::span<const StepsRecord> records,
   grid.columns = head_columns();
   const std::string suffix = unit_suffix(unit);
   add_columns(grid.columns, {"halogen", "kind", "reaction", "radical", "temperature_k", "dh_" + suffix, "u_" + suffix,
-                             "ds_j_mol_k", "dg_" + suffix, "log10_k", "ea_" + suffix, "k_cm3_s", "route", "sources"});
+                             "ds_j_mol_k", "u_ds_j_mol_k", "dg_" + suffix, "u_dg_" + suffix, "log10_k", "u_log10_k", "ea_" + suffix,
+                             "u_ea_" + suffix, "k_cm3_s", "u_log10_k_cm3_s", "route", "sources"});
   for (auto& column : error_columns()) grid.columns.push_back(column);
   const auto add = [&](std::vector<std::string> row, std::vector<std::string> cells,
                        const std::optional<Error>& error) {
@@ -138,11 +156,11 @@ std::string steps_csv(const Table& table, std::span<const StepsRecord> records,
     grid.rows.push_back(std::move(row));
   };
   for (const auto& record : records) {
-    if (record.steps.empty()) add(head_cells(record.head), std::vector<std::string>(14), record.head.error);
+    if (record.steps.empty()) add(head_cells(record.head), std::vector<std::string>(kStepCells), record.head.error);
     for (const auto& s : record.steps) add(head_cells(record.head), step_cells(table, s, unit), record.head.error);
   }
   for (const auto& r : reactions) {
-    const auto cells = r.step ? step_cells(table, *r.step, unit) : std::vector<std::string>(14);
+    const auto cells = r.step ? step_cells(table, *r.step, unit) : std::vector<std::string>(kStepCells);
     add({r.input, "", "", ""}, cells, r.error);
   }
   return csv(grid);

@@ -73,41 +73,148 @@ std::optional<Parent> parent_in(const std::vector<Species>& all, const Molecule&
   return std::nullopt;
 }
 
-// A linear combination of named quantities; equal names cancel.
-class Hess {
+}  // namespace
+
+// Enthalpy of a reaction as a sum of adjusted enthalpies, of typed bonds, and of species without a known enthalpy, which
+// must cancel.
+class StepBook::Hess {
  public:
-  void term(const std::string& name, double coefficient, std::optional<Quantity> value, const std::vector<int>& sources) {
-    auto& t = terms_[name];
-    t.coefficient += coefficient;
-    t.value = value;
-    t.sources = sources;
+  Hess(const StepBook& steps, const std::vector<Species>& all) : b_(steps), book_(steps.bonds_.adjusted()), all_(all) {}
+
+  void add(const Species& s) {
+    if (s.radical >= 0 && (s.m->atom_count() > 1 || s.m->atom(0).hydrogens > 0)) {
+      add_radical(s);
+    } else {
+      add_closed(*s.m, s.nu);
+    }
   }
-  Result<Quantity> sum(std::vector<int>& sources) const {
-    Quantity q;
-    double u2 = 0;
-    for (const auto& [name, t] : terms_) {
-      if (std::abs(t.coefficient) < 1e-9) continue;
-      if (!t.value) return Error{ErrorClass::no_data, fmt::format("the table has no {}", name), {}};
-      q.value += t.coefficient * t.value->value;
-      u2 += t.coefficient * t.coefficient * t.value->u * t.value->u;
-      for (const int s : t.sources) {
-        if (std::find(sources.begin(), sources.end(), s) == sources.end()) sources.push_back(s);
+
+  Result<Quantity> total(std::vector<int>& sources) const {
+    for (const auto& [name, coefficient] : open_) {
+      if (std::abs(coefficient) > 1e-9) return Error{ErrorClass::no_data, fmt::format("the table has no enthalpy of {}", name), {}};
+    }
+    if (const auto on = book_.missing(sum_); !on.empty()) {
+      return Error{ErrorClass::no_data, fmt::format("the table has no formation enthalpy of {}", on), {}};
+    }
+    auto q = *book_.value(sum_);
+    double u2 = q.u * q.u;
+    sources = book_.sources(sum_);
+    for (const auto& [name, t] : typed_) {
+      if (t.coefficient == 0) continue;
+      q.value += t.coefficient * t.d.value;
+      u2 += t.coefficient * t.coefficient * t.d.u * t.d.u;
+      for (const int x : t.sources) {
+        if (std::find(sources.begin(), sources.end(), x) == sources.end()) sources.push_back(x);
       }
     }
     q.u = std::sqrt(u2);
     return q;
   }
 
+  [[nodiscard]] const char* route() const {
+    const bool typed = std::any_of(typed_.begin(), typed_.end(), [](const auto& t) { return t.second.coefficient != 0; });
+    const bool joint = std::any_of(sum_.begin(), sum_.end(), [&](const EnthalpyTerm& t) {
+      return book_.species(t.species).smiles.size() > 4;  // more than atoms, which every typed bond brings in
+    });
+    return !typed ? kJoint : joint ? kMixed : kTyped;
+  }
+
  private:
-  struct Term {
+  struct Typed {
     double coefficient = 0;
-    std::optional<Quantity> value;
+    Quantity d;
     std::vector<int> sources;
   };
-  std::map<std::string, Term> terms_;
-};
 
-}  // namespace
+  void add_atom(const char* smiles, double nu) {
+    const auto m = parse_smiles(smiles, ParseMode::species);
+    const int i = m.ok() ? book_.find(species_key(m.value())) : -1;
+    if (i >= 0) add_term(sum_, i, nu);
+    else open_[smiles] += nu;
+  }
+
+  void add_typed(const std::string& name, double nu, const Quantity& d, const std::vector<int>& sources) {
+    auto& t = typed_[name];
+    t.coefficient += nu;
+    t.d = d;
+    t.sources = sources;
+  }
+
+  // A closed shell, or an atom: by its enthalpy, or as a halide made from its parent.
+  void add_closed(const Molecule& m, double nu) {
+    const int i = book_.find(species_key(m));
+    if (i >= 0 && book_.firm(i)) {
+      add_term(sum_, i, nu);
+    } else if (add_halide(m, nu, true) || (i < 0 && add_halide(m, nu, false))) {
+      return;
+    } else if (i >= 0) {
+      add_term(sum_, i, nu);
+    } else {
+      open_[canonical_smiles(m, false)] += nu;
+    }
+  }
+
+  // RX = RH - H + X - (D(R-X) - D(R-H)), by the exchange model: for a halogen whose RH or R takes part in the reaction,
+  // or for one whose RH has an enthalpy.
+  bool add_halide(const Molecule& m, double nu, bool in_reaction) {
+    const auto whole = canonical_smiles(m, false);
+    for (int i = 0; i < m.atom_count(); ++i) {
+      const int x = halogen_of(m.atom(i).element);
+      if (x < 0 || m.degree(i) != 1 || m.atom(i).hydrogens != 0) continue;
+      const int c = m.neighbours(i)[0].atom;
+      const auto parent = parent_of_halide(m, i);
+      if (m.atom(c).element != element::C || !parent.ok()) continue;
+      const auto key = canonical_smiles(parent.value(), false);
+      const int at = c - (c > i);
+      const auto radical = canonical_smiles(parent.value().without_hydrogen(at), false);
+      const bool takes_part = std::any_of(all_.begin(), all_.end(), [&](const Species& q) { return q.key == key || q.key == radical; });
+      if (in_reaction ? !takes_part : book_.find(key) < 0) continue;
+      if (b_.model_.measured(whole, radical, kAtom[x]) >= 0) continue;  // its own bond is better
+      const Analysis a(parent.value());
+      const auto delta = b_.model_.exchange(x, exchange_features(a.plain(), a.info(), at));
+      if (!(delta.u > 0)) continue;
+      add_typed(fmt::format("exchange to {}", whole), -nu, delta, b_.bonds_.halide_sources(a, {at, 1, {at}}, x, {}));
+      add_closed(parent.value(), nu);
+      add_atom("[H]", -nu);
+      add_atom(kAtom[x], nu);
+      return true;
+    }
+    return false;
+  }
+
+  // R = RH + D(R-H) - H, with the RH of the reaction itself where there is one: whichever resonance form R is written in.
+  void add_radical(const Species& s) {
+    auto parent = parent_in(all_, *s.m);
+    const int known = book_.find(species_key(*s.m));
+    if (!parent) {
+      if (auto f = parent_of_radical(*s.m, s.radical); f.ok()) parent = Parent{std::move(f).value(), s.radical};
+      if (parent && known >= 0 && book_.find(species_key(parent->molecule)) < 0) parent.reset();
+    }
+    if (parent) {
+      const Analysis a(parent->molecule);
+      const auto site = std::find_if(a.sites().begin(), a.sites().end(), [&](const HydrogenSite& h) {
+        return std::find(h.atoms.begin(), h.atoms.end(), parent->atom) != h.atoms.end();
+      });
+      const auto d = site != a.sites().end() ? b_.bonds_.hydrogen(a, *site, false) : BondValue{};
+      if (d.d) {
+        add_closed(parent->molecule, s.nu);
+        add_atom("[H]", -s.nu);
+        if (!d.sum.empty()) add_terms(sum_, d.sum, s.nu);
+        else add_typed(fmt::format("D of {} to {}", a.key(), species_key(*s.m)), s.nu, *d.d, b_.bonds_.sources(a, *site, d));
+        return;
+      }
+    }
+    if (known >= 0) add_term(sum_, known, s.nu);
+    else open_[s.key] += s.nu;
+  }
+
+  const StepBook& b_;
+  const AdjustedBook& book_;
+  const std::vector<Species>& all_;
+  EnthalpySum sum_;
+  std::map<std::string, Typed> typed_;
+  std::map<std::string, double> open_;
+};
 
 Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature) const {
   auto parsed = parse_reaction(text);
@@ -129,95 +236,12 @@ Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature)
     if (side == &r.left) out.reaction += ">>";
   }
 
-  Hess hess;
-  bool by_bond = false, by_formation = false;
-  const auto formation = [&](const std::string& key, double nu, const Molecule* radical) {
-    const auto* e = radical != nullptr ? thermo_.find_radical(*radical, key) : thermo_.find(key);
-    hess.term("formation enthalpy of " + (e != nullptr ? e->smiles : key), nu, e != nullptr ? e->dfh298 : std::nullopt,
-              e != nullptr ? thermo_.sources(*e) : std::vector<int>{});
-  };
-
-  // R = RH + D(R-H) - H: with the RH of the reaction itself, whichever resonance form R is written in; with any RH where
-  // the table does not know R.
-  const auto add_radical = [&](const Molecule& m, const std::string& key, int centre, double nu) {
-    auto parent = parent_in(all, m);
-    const auto* known = thermo_.find_radical(m, key);
-    if (!parent && (known == nullptr || !known->dfh298)) {
-      if (auto f = parent_of_radical(m, centre); f.ok()) parent = Parent{std::move(f).value(), centre};
-    }
-    if (parent) {
-      const Analysis a(parent->molecule);
-      const auto site = std::find_if(a.sites().begin(), a.sites().end(), [&](const HydrogenSite& h) {
-        return std::find(h.atoms.begin(), h.atoms.end(), parent->atom) != h.atoms.end();
-      });
-      const auto d = site != a.sites().end() ? bonds_.hydrogen(a, *site, false) : BondValue{};
-      if (d.d) {
-        formation(a.key(), nu, nullptr);
-        formation("[H]", -nu, nullptr);
-        const auto radical = canonical_smiles(parent->molecule.without_hydrogen(site->atom), false);
-        hess.term(fmt::format("D of {} to {}", a.key(), radical), nu, d.d, bonds_.sources(a, *site, d));
-        by_bond = true;
-        return;
-      }
-    }
-    formation(key, nu, &m);
-    by_formation = true;
-  };
-
-  for (const auto& s : all) {
-    const auto& m = *s.m;
-    // HX and X2 through their bonds, so that a reaction and the chain's steps give one number.
-    if (m.atom_count() == 1 && m.atom(0).hydrogens == 1 && halogen_of(m.atom(0).element) >= 0) {
-      const auto& h = halogens_[static_cast<std::size_t>(halogen_of(m.atom(0).element))];
-      if (h.entry_hx >= 0) {
-        formation("[H]", s.nu, nullptr);
-        formation(kAtom[halogen_of(m.atom(0).element)], s.nu, nullptr);
-        hess.term("D of " + s.key, -s.nu, h.d_hx, bonds_.entry_sources(h.entry_hx));
-        continue;
-      }
-    }
-    if (m.atom_count() == 2 && m.bond_count() == 1 && m.atom(0).element == m.atom(1).element && halogen_of(m.atom(0).element) >= 0) {
-      const auto& h = halogens_[static_cast<std::size_t>(halogen_of(m.atom(0).element))];
-      if (h.entry_xx >= 0) {
-        formation(kAtom[halogen_of(m.atom(0).element)], 2 * s.nu, nullptr);
-        hess.term("D of " + s.key, -s.nu, h.d_xx, bonds_.entry_sources(h.entry_xx));
-        continue;
-      }
-    }
-    const bool polyatomic = m.atom_count() > 1 || m.atom(0).hydrogens > 0;
-    if (s.radical >= 0 && polyatomic) {
-      add_radical(m, s.key, s.radical, s.nu);
-      continue;
-    }
-    // RX beside its radical R: RX = R + X - D(R-X).
-    bool done = false;
-    for (int i = 0; i < m.atom_count() && !done; ++i) {
-      const int x = halogen_of(m.atom(i).element);
-      if (x < 0 || m.degree(i) != 1 || m.atom(i).hydrogens != 0) continue;
-      const int c = m.neighbours(i)[0].atom, bond = m.neighbours(i)[0].bond;
-      const auto halves = m.broken(bond);
-      const auto& rad = m.bond(bond).a == c ? halves.first : halves.second;
-      const auto rk = canonical_smiles(rad, false);
-      if (std::none_of(all.begin(), all.end(), [&](const Species& q) { return q.key == rk && q.radical >= 0; })) continue;
-      const Analysis a(m);
-      const auto list = bonds_.all(a, bonds_.sites(a, false), {});
-      const auto b = std::find_if(list.begin(), list.end(), [&](const BondAnswer& q) {
-        return q.partner >= 0 && q.d298 && q.atom == c && m.atom(q.partner).element == m.atom(i).element;
-      });
-      if (b == list.end()) continue;
-      add_radical(rad, rk, radical_atom(rad), s.nu);
-      formation(kAtom[x], s.nu, nullptr);
-      hess.term("D of " + s.key, -s.nu, b->d298, b->sources);
-      by_bond = done = true;
-    }
-    if (done) continue;
-    if (polyatomic) by_formation = true;
-    formation(s.key, s.nu, nullptr);
-  }
-  auto dh = hess.sum(out.sources);
+  Hess hess(*this, all);
+  for (const auto& s : all) hess.add(s);
+  const auto dh = hess.total(out.sources);
   if (!dh.ok()) return Error{dh.error().cls, dh.error().message, fmt::format("'{}'", text)};
   out.dh = dh.value();
-  out.route = by_bond && by_formation ? "bonds and formation enthalpies" : by_bond ? "bonds" : "formation enthalpies";
+  out.route = hess.route();
   ThermoSum sum;
   for (const auto& s : all) {
     const auto* e = s.radical >= 0 ? thermo_.find_radical(*s.m, s.key) : thermo_.find(s.key);

@@ -3,6 +3,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 
 #include "halostep/structure.hpp"
@@ -26,6 +27,8 @@ void merge(std::vector<int>& into, const std::vector<int>& more) {
   }
 }
 
+constexpr double kUnknownCp = 10.0;  // J mol-1 K-1
+
 Quantity minus(const Quantity& a, const Quantity& b) { return {a.value - b.value, std::hypot(a.u, b.u)}; }
 
 }  // namespace
@@ -36,12 +39,18 @@ void finish(StepAnswer& s, const ThermoSum& sum, double temperature) {
     s.why_ds = fmt::format("no entropy in the table for {}", sum.missing);
     return;
   }
-  const double dcp = sum.cp_known ? sum.cp : 0.0;
-  s.ds = sum.s + dcp * std::log(temperature / kReferenceTemperature);
+  // Without Cp of all species the change of Cp is taken as zero, with the u of a few J/(mol K) such changes have.
+  const double dcp = sum.cp_known ? sum.cp : 0.0, u_cp = sum.cp_known ? u_of_cp(sum) : kUnknownCp,
+               u_s = u_of_s(sum);
+  const double by_cp = std::log(temperature / kReferenceTemperature);
+  s.ds = Quantity{sum.s + dcp * by_cp, std::hypot(u_s, by_cp * u_cp)};
   if (!s.dh) return;
-  const double dh = s.dh->value + dcp * (temperature - kReferenceTemperature) / 1000.0;
-  s.dg = dh - temperature * *s.ds / 1000.0;
-  s.log10_k = -*s.dg / (kGasConstant * temperature * std::log(10.0));
+  const double warmed = temperature - kReferenceTemperature;
+  const double dh = s.dh->value + dcp * warmed / 1000.0;
+  s.dg = Quantity{dh - temperature * s.ds->value / 1000.0,
+                  std::hypot(s.dh->u, temperature * u_s / 1000.0, (warmed - temperature * by_cp) * u_cp / 1000.0)};
+  const double scale = kGasConstant * temperature * std::log(10.0);
+  s.log10_k = Quantity{-s.dg->value / scale, s.dg->u / scale};
 }
 
 // What the steps of one site share, worked out once for all halogens.
@@ -54,6 +63,7 @@ struct StepBook::SiteData {
   const SpeciesEntry *rh_entry = nullptr, *r_entry = nullptr, *rr_entry = nullptr;
   std::string dimer;
   std::optional<Quantity> d_rr;
+  std::array<std::optional<Quantity>, 4> d_rx;
 };
 
 StepBook::StepBook(const Table& table, const BondModel& model, const BondBook& bonds, const ThermoBook& thermo)
@@ -63,8 +73,14 @@ StepBook::StepBook(const Table& table, const BondModel& model, const BondBook& b
     const auto hx = canonical_of(kHydride[x]), xx = canonical_of(kMolecule[x]);
     h.entry_hx = model_.measured(hx, kAtom[x], "[H]");
     h.entry_xx = model_.measured(xx, kAtom[x], kAtom[x]);
-    if (h.entry_hx >= 0) h.d_hx = table.bonds[static_cast<std::size_t>(h.entry_hx)].d298;
-    if (h.entry_xx >= 0) h.d_xx = table.bonds[static_cast<std::size_t>(h.entry_xx)].d298;
+    if (h.entry_hx >= 0) {
+      h.d_hx = table.bonds[static_cast<std::size_t>(h.entry_hx)].d298;
+      h.sum_hx = bonds.entry_sum(h.entry_hx);
+    }
+    if (h.entry_xx >= 0) {
+      h.d_xx = table.bonds[static_cast<std::size_t>(h.entry_xx)].d298;
+      h.sum_xx = bonds.entry_sum(h.entry_xx);
+    }
     h.atom = thermo.find(kAtom[x]);
     h.molecule = thermo.find(xx);
     h.hydride = thermo.find(hx);
@@ -77,7 +93,7 @@ void StepBook::initiation(int x, double t, bool details, std::vector<StepAnswer>
   s.halogen = static_cast<Halogen>(x);
   s.kind = StepKind::initiation;
   s.dh = h.d_xx;
-  s.route = "bonds";
+  s.route = kJoint;
   if (details) {
     s.reaction = fmt::format("{}>>{}.{}", kMolecule[x], kAtom[x], kAtom[x]);
     if (h.entry_xx >= 0) s.sources = bonds_.entry_sources(h.entry_xx);
@@ -91,7 +107,44 @@ void StepBook::initiation(int x, double t, bool details, std::vector<StepAnswer>
   out.push_back(std::move(s));
 }
 
-void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t, const BondOptions& o,
+// One number for a step whichever way it is asked for: sums of adjusted enthalpies where all parts are in the
+// adjustment, so that what cancels leaves no u behind; else differences of bonds.
+void StepBook::enthalpies(const BondValue& rh, const BondValue& rx, const Quantity& delta, const HalogenData& h,
+                          StepAnswer& abstraction, StepAnswer& transfer, StepAnswer& net) const {
+  const auto& book = bonds_.adjusted();
+  const auto difference = [&](const EnthalpySum& one, const EnthalpySum& other) {
+    auto sum = one;
+    add_terms(sum, other, -1);
+    return book.value(sum);
+  };
+  abstraction.route = rh.sum.empty() ? kTyped : kJoint;
+  if (!rh.sum.empty() && !h.sum_hx.empty()) abstraction.dh = difference(rh.sum, h.sum_hx);
+  else if (rh.d && h.d_hx) abstraction.dh = minus(*rh.d, *h.d_hx);
+  transfer.route = !rx.sum.empty() ? kJoint : !rx.exchange.empty() || rh.route != Route::typed ? kMixed : kTyped;
+  if (!rx.sum.empty() && !h.sum_xx.empty()) transfer.dh = difference(h.sum_xx, rx.sum);
+  else if (rx.d && h.d_xx) transfer.dh = minus(*h.d_xx, *rx.d);
+  if (!abstraction.dh || !transfer.dh) return;
+  // The two bonds share the radical: D(R-X) made from D(R-H) leaves only the exchange.
+  EnthalpySum pair;
+  if (!rh.sum.empty() && !rx.sum.empty()) {
+    pair = rh.sum;
+    add_terms(pair, rx.sum, -1);
+  } else if (!rx.exchange.empty()) {
+    add_terms(pair, rx.exchange, -1);
+  }
+  if (!pair.empty()) {
+    add_terms(pair, h.sum_xx, 1);
+    add_terms(pair, h.sum_hx, -1);
+    net.route = kJoint;
+    net.dh = book.value(pair);
+  }
+  if (net.dh) return;
+  net.route = rh.route == Route::typed || rx.route == Route::typed ? kTyped : kJoint;
+  const double both = rx.route == Route::typed ? delta.u : std::hypot(rh.d->u, rx.d->u);
+  net.dh = Quantity{abstraction.dh->value + transfer.dh->value, std::hypot(both, h.d_hx->u, h.d_xx->u)};
+}
+
+void StepBook::site_steps(const Analysis& a, SiteData& d, int x, double t, const BondOptions& o,
                           std::vector<StepAnswer>& out) const {
   const auto& h = halogens_[static_cast<std::size_t>(x)];
   // chain() has reserved room, so the three stay where they are.
@@ -103,18 +156,12 @@ void StepBook::site_steps(const Analysis& a, const SiteData& d, int x, double t,
   net.kind = StepKind::net;
   for (auto* s : {&abstraction, &transfer, &net}) {
     s->halogen = static_cast<Halogen>(x);
-    s->route = "bonds";
     s->radical = d.radical;
   }
   const Quantity& delta = d.bond->delta[static_cast<std::size_t>(x)];
   const auto rx = bonds_.halide(a, *d.site, x, *d.d, delta, o.typed);
-  if (d.d->d && h.d_hx) abstraction.dh = minus(*d.d->d, *h.d_hx);
-  if (rx.d && h.d_xx) transfer.dh = minus(*h.d_xx, *rx.d);
-  if (abstraction.dh && transfer.dh) {
-    // The two bonds share the radical: with D(R-X) typed from D(R-H), D(R-H) cancels and only the exchange's u is left.
-    const double pair = rx.route == Route::typed ? delta.u : std::hypot(d.d->d->u, rx.d->u);
-    net.dh = Quantity{abstraction.dh->value + transfer.dh->value, std::hypot(pair, h.d_hx->u, h.d_xx->u)};
-  }
+  d.d_rx[static_cast<std::size_t>(x)] = rx.d;
+  enthalpies(*d.d, rx, delta, h, abstraction, transfer, net);
   const SpeciesEntry* rx_entry = nullptr;
   std::string rx_text;
   if (o.details) {
@@ -168,9 +215,9 @@ void StepBook::terminations(const Analysis& a, const SiteData& d, std::size_t tr
   rx.kind = rr.kind = StepKind::termination;
   rx.halogen = rr.halogen = static_cast<Halogen>(x);
   rx.radical = rr.radical = d.radical;
-  rx.route = "bonds";
-  if (transfer->dh && h.d_xx) {
-    rx.dh = Quantity{transfer->dh->value - h.d_xx->value, std::sqrt(std::max(0.0, transfer->dh->u * transfer->dh->u - h.d_xx->u * h.d_xx->u))};
+  rx.route = transfer->route;
+  if (const auto& d_rx = d.d_rx[static_cast<std::size_t>(x)]) {
+    rx.dh = Quantity{-d_rx->value, d_rx->u};
     rx.sources = transfer->sources;
   }
   if (d.d_rr) rr.dh = Quantity{-d.d_rr->value, d.d_rr->u};
@@ -180,7 +227,7 @@ void StepBook::terminations(const Analysis& a, const SiteData& d, std::size_t tr
   const auto product = transfer->reaction.substr(arrow + 2, transfer->reaction.rfind('.') - arrow - 2);
   rx.reaction = fmt::format("{}.{}>>{}", d.radical, kAtom[x], product);
   rr.reaction = fmt::format("{}.{}>>{}", d.radical, d.radical, d.dimer);
-  rr.route = "formation enthalpies";
+  rr.route = d.d->sum.empty() ? kMixed : kJoint;
   const bool plain = a.deuterium_count() == 0;
   const auto* rx_entry = plain ? thermo_.find(canonical_smiles(a.original().with_substituent(d.site->atom, kNumber[x]), false)) : nullptr;
   if (!rx.dh) rx.why_dh = transfer->why_dh;
@@ -230,6 +277,19 @@ std::optional<Molecule> dimer_of(const Molecule& r) {
 
 }  // namespace
 
+// R-R = 2 R - RR with R = RH + D - H.
+std::optional<Quantity> StepBook::dimer_bond(const Analysis& a, const BondValue& d, const std::string& dimer) const {
+  const auto& book = bonds_.adjusted();
+  const int rr = book.find(dimer), rh = bonds_.adjusted_index(a), h = book.find("1 unpaired: [H]");
+  if (rr < 0 || rh < 0 || h < 0 || !d.d) return std::nullopt;
+  EnthalpySum sum{{rh, 2}, {h, -2}};
+  add_term(sum, rr, -1);
+  add_terms(sum, d.sum, 2);
+  auto q = book.value(sum);
+  if (q && d.sum.empty()) q = Quantity{q->value + 2 * d.d->value, std::hypot(q->u, 2 * d.d->u)};
+  return q;
+}
+
 std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<SiteBond>& sites, std::span<const Halogen> halogens, double t, const BondOptions& o) const {
   std::vector<SiteData> data;
   const std::string rh = o.details ? canonical_smiles(a.original()) : std::string();
@@ -237,7 +297,6 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<Sit
   const auto* rh_entry = plain && o.details ? thermo_.find(a.key()) : nullptr;
   for (std::size_t i = 0; i < sites.size(); ++i) {
     const auto& s = a.sites()[i];
-    if (a.original().atom(s.atom).element != element::C) continue;
     SiteData d;
     d.site = &s;
     d.bond = &sites[i];
@@ -252,18 +311,7 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<Sit
       if (const auto rr = dimer_of(r)) {
         d.dimer = canonical_smiles(*rr);
         d.rr_entry = plain ? thermo_.find(canonical_smiles(*rr, false)) : nullptr;
-      }
-      const auto* h = thermo_.find("[H]");
-      std::optional<Quantity> dfh_r;
-      // The same order as in a free query, so that both give one number.
-      if (d.r_entry != nullptr && d.r_entry->dfh298) {
-        dfh_r = d.r_entry->dfh298;
-      } else if (d.d->d && rh_entry != nullptr && rh_entry->dfh298 && h != nullptr && h->dfh298) {
-        dfh_r = Quantity{rh_entry->dfh298->value + d.d->d->value - h->dfh298->value,
-                         std::hypot(rh_entry->dfh298->u, d.d->d->u, h->dfh298->u)};
-      }
-      if (dfh_r && d.rr_entry != nullptr && d.rr_entry->dfh298) {
-        d.d_rr = Quantity{2 * dfh_r->value - d.rr_entry->dfh298->value, std::hypot(2 * dfh_r->u, d.rr_entry->dfh298->u)};
+        if (plain) d.d_rr = dimer_bond(a, *d.d, canonical_smiles(*rr, false));
       }
     }
     data.push_back(std::move(d));
@@ -274,13 +322,12 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<Sit
     const int x = static_cast<int>(halogen);
     const std::size_t first = out.size();  // initiation, then three steps per site
     initiation(x, t, o.details, out);
-    for (const auto& d : data) site_steps(a, d, x, t, o, out);
+    for (auto& d : data) site_steps(a, d, x, t, o, out);
     StepAnswer xx = *std::find_if(out.begin(), out.end(), [&](const StepAnswer& s) { return s.halogen == halogen && s.kind == StepKind::initiation; });
     xx.kind = StepKind::termination;
-    if (xx.dh) xx.dh->value = -xx.dh->value;
-    if (xx.ds) xx.ds = -*xx.ds;
-    if (xx.dg) xx.dg = -*xx.dg;
-    if (xx.log10_k) xx.log10_k = -*xx.log10_k;
+    for (auto* q : {&xx.dh, &xx.ds, &xx.dg, &xx.log10_k}) {
+      if (*q) (*q)->value = -(*q)->value;
+    }
     if (o.details) {
       xx.reaction = fmt::format("{}.{}>>{}", kAtom[x], kAtom[x], kMolecule[x]);
       xx.why_ea = "recombination on a third body, no barrier";

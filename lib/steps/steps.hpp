@@ -13,8 +13,14 @@ namespace halostep {
 struct HalogenData {
   std::optional<Quantity> d_xx, d_hx;        // D(X-X), D(H-X)
   int entry_xx = -1, entry_hx = -1;          // rows of Table::bonds
+  EnthalpySum sum_xx, sum_hx;                // the same as sums of adjusted enthalpies; empty where not in the adjustment
   const SpeciesEntry *atom = nullptr, *molecule = nullptr, *hydride = nullptr;
 };
+
+/// Where the enthalpy of a step comes from: StepAnswer::route.
+inline constexpr const char* kJoint = "joint adjustment";
+inline constexpr const char* kTyped = "typed";
+inline constexpr const char* kMixed = "joint adjustment and typed";
 
 class StepBook {
  public:
@@ -28,8 +34,12 @@ class StepBook {
 
  private:
   struct SiteData;
+  class Hess;
   void initiation(int x, double t, bool details, std::vector<StepAnswer>& out) const;
-  void site_steps(const Analysis& a, const SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
+  void enthalpies(const BondValue& rh, const BondValue& rx, const Quantity& delta, const HalogenData& h, StepAnswer& abstraction,
+                  StepAnswer& transfer, StepAnswer& net) const;
+  [[nodiscard]] std::optional<Quantity> dimer_bond(const Analysis& a, const BondValue& d, const std::string& dimer) const;
+  void site_steps(const Analysis& a, SiteData& s, int x, double t, const BondOptions& o, std::vector<StepAnswer>& out) const;
   /// `transfer_at`: where the transfer step of the site stands in `out`; its bond is R-X here.
   void terminations(const Analysis& a, const SiteData& s, std::size_t transfer_at, int x, double t, const BondOptions& o,
                     std::vector<StepAnswer>& out) const;

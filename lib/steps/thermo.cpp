@@ -1,6 +1,7 @@
 #include "thermo.hpp"
 
 #include <algorithm>
+#include <cmath>
 
 #include "../bonds/locate.hpp"
 #include "halostep/structure.hpp"
@@ -44,9 +45,28 @@ void ThermoBook::add(ThermoSum& sum, const SpeciesEntry* e, double nu, std::stri
     return;
   }
   sum.s += nu * *e->s298;
-  if (e->cp298) sum.cp += nu * *e->cp298;
-  else sum.cp_known = false;
+  const auto same = std::find_if(sum.parts.begin(), sum.parts.end(), [&](const auto& p) { return p.first == e; });
+  if (same != sum.parts.end()) same->second += nu;
+  else sum.parts.emplace_back(e, nu);
+  if (!e->cp298) {
+    sum.cp_known = false;
+    return;
+  }
+  sum.cp += nu * *e->cp298;
 }
+
+namespace {
+
+double root_sum(const ThermoSum& sum, double SpeciesEntry::*u) {
+  double u2 = 0;
+  for (const auto& [e, nu] : sum.parts) u2 += nu * nu * (e->*u) * (e->*u);
+  return std::sqrt(u2);
+}
+
+}  // namespace
+
+double u_of_s(const ThermoSum& sum) { return root_sum(sum, &SpeciesEntry::u_s298); }
+double u_of_cp(const ThermoSum& sum) { return root_sum(sum, &SpeciesEntry::u_cp298); }
 
 std::vector<int> ThermoBook::sources(const SpeciesEntry& e) const {
   std::vector<int> out;

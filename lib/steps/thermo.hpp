@@ -15,9 +15,14 @@ namespace halostep {
 /// Constant-Cp extrapolation from 298.15 K: dH(T) = dH + dCp (T-298.15), dS(T) = dS + dCp ln(T/298.15).
 struct ThermoSum {
   double s = 0, cp = 0;             // J mol-1 K-1, sums with stoichiometric signs
+  std::vector<std::pair<const SpeciesEntry*, double>> parts;  // what was added, with its sign
   bool s_known = true, cp_known = true;
   std::string missing;              // first species without entropy
 };
+
+/// Standard uncertainties of the sums: a species counts with all it was added for.
+double u_of_s(const ThermoSum& sum);
+double u_of_cp(const ThermoSum& sum);
 
 class ThermoBook {
  public:

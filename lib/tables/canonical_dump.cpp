@@ -42,13 +42,17 @@ class Dump {
     *this << r.molecule << r.radical << r.leaving << r.d298 << r.u << r.coverage;
     return tail(r);
   }
-  Dump& operator<<(const BondEntry& r) { return *this << r.molecule << r.radical << r.leaving << r.d298 << r.rows; }
+  Dump& operator<<(const BondEntry& r) { return *this << r.molecule << r.radical << r.leaving << r.combined << r.d298 << r.at_molecule << r.at_radical << r.at_leaving << r.rows; }
   Dump& operator<<(const SpeciesRow& r) {
     *this << r.smiles << r.name << r.phase << r.coverage << r.dfh298 << r.u << r.s298 << r.cp298;
     return tail(r);
   }
   Dump& operator<<(const SpeciesEntry& r) {
-    return *this << r.smiles << r.name << r.phase << r.dfh298 << r.s298 << r.cp298 << r.rows;
+    return *this << r.smiles << r.name << r.phase << r.combined << r.dfh298 << r.at << r.s298 << r.cp298 << r.u_s298 << r.u_cp298 << r.rows;
+  }
+  Dump& operator<<(const AdjustedLink& r) { return *this << r.other << r.covariance; }
+  Dump& operator<<(const AdjustedSpecies& r) {
+    return *this << r.key << r.smiles << r.dfh298 << r.datum << r.weight << r.links;
   }
   Dump& operator<<(const RateRow& r) {
     *this << r.carrier << r.molecule << r.radical << r.reaction << r.type << r.unit << r.h_count << r.a << r.ea
@@ -86,7 +90,7 @@ class Dump {
 std::string canonical_dump(const Table& t) {
   Dump d;
   d.reserve(std::size_t{1} << 21);
-  d << t.layout << t.sources << t.bond_rows << t.bonds << t.species_rows << t.species << t.rates << t.relative_rates
+  d << t.layout << t.sources << t.bond_rows << t.bonds << t.species_rows << t.species << t.adjusted << t.rates << t.relative_rates
     << t.mixtures << t.models;
   return d.take();
 }

@@ -128,17 +128,32 @@ void read_members(sqlite3* db, const char* sql, std::vector<Entry>& entries) {
 }
 
 void read_entries(sqlite3* db, Table& t) {
-  read_into(db, "SELECT molecule,radical,leaving,d298,u FROM bond ORDER BY id", t.bonds, [](Query& q, BondEntry& e) {
-    q >> e.molecule >> e.radical >> e.leaving >> e.d298.value >> e.d298.u;
+  read_into(db, "SELECT molecule,radical,leaving,combined,combined_u,d298,u,at_molecule,at_radical,at_leaving FROM bond ORDER BY id", t.bonds, [](Query& q, BondEntry& e) {
+    q >> e.molecule >> e.radical >> e.leaving >> e.combined.value >> e.combined.u >> e.d298.value >> e.d298.u >>
+        e.at_molecule >> e.at_radical >> e.at_leaving;
   });
   read_members(db, "SELECT bond,row FROM bond_member ORDER BY bond,row", t.bonds);
-  read_into(db, "SELECT smiles,name,phase,dfh298,u,s298,cp298 FROM species ORDER BY id", t.species,
+  read_into(db, "SELECT smiles,name,phase,combined,combined_u,dfh298,u,at,s298,cp298,u_s298,u_cp298 FROM species ORDER BY id", t.species,
             [](Query& q, SpeciesEntry& e) {
-              std::optional<double> dfh, u;
-              q >> e.smiles >> e.name >> e.phase >> dfh >> u >> e.s298 >> e.cp298;
+              std::optional<double> own, own_u, dfh, u;
+              q >> e.smiles >> e.name >> e.phase >> own >> own_u >> dfh >> u >> e.at >> e.s298 >> e.cp298 >> e.u_s298 >> e.u_cp298;
+              if (own && own_u) e.combined = Quantity{*own, *own_u};
               if (dfh && u) e.dfh298 = Quantity{*dfh, *u};
             });
   read_members(db, "SELECT species,row FROM species_member ORDER BY species,row", t.species);
+}
+
+void read_adjusted(sqlite3* db, Table& t) {
+  read_into(db, "SELECT key,smiles,dfh298,datum,weight FROM adjusted ORDER BY id", t.adjusted,
+            [](Query& q, AdjustedSpecies& s) { q >> s.key >> s.smiles >> s.dfh298 >> s.datum >> s.weight; });
+  Query q(db, "SELECT species,other,covariance FROM adjusted_link ORDER BY species,other");
+  while (q.step()) {
+    int species = 0;
+    AdjustedLink l;
+    q >> species >> l.other >> l.covariance;
+    if (species < 0 || static_cast<std::size_t>(species) >= t.adjusted.size()) throw std::runtime_error("a covariance without species");
+    t.adjusted[static_cast<std::size_t>(species)].links.push_back(l);
+  }
 }
 
 std::vector<double> doubles(const std::string& bytes) {
@@ -201,6 +216,7 @@ Table read_rows(sqlite3* db) {
   Table t;
   read_evidence(db, t);
   read_entries(db, t);
+  read_adjusted(db, t);
   read_models(db, t);
   return t;
 }

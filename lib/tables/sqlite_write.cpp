@@ -81,17 +81,27 @@ void write_evidence(SQLite::Database& db, const Table& t) {
 }
 
 void write_entries(SQLite::Database& db, const Table& t) {
-  Insert bond(db, "bond", 6), bond_member(db, "bond_member", 2);
+  Insert bond(db, "bond", 11), bond_member(db, "bond_member", 2);
   each(t.bonds, [&](int id, const BondEntry& e) {
-    bond(id, e.molecule, e.radical, e.leaving, e.d298.value, e.d298.u);
+    bond(id, e.molecule, e.radical, e.leaving, e.combined.value, e.combined.u, e.d298.value, e.d298.u, e.at_molecule,
+         e.at_radical, e.at_leaving);
     for (const int row : e.rows) bond_member(id, row);
   });
-  Insert species(db, "species", 8), species_member(db, "species_member", 2);
+  Insert species(db, "species", 13), species_member(db, "species_member", 2);
   each(t.species, [&](int id, const SpeciesEntry& e) {
-    std::optional<double> dfh, u;
+    std::optional<double> own, own_u, dfh, u;
+    if (e.combined) own = e.combined->value, own_u = e.combined->u;
     if (e.dfh298) dfh = e.dfh298->value, u = e.dfh298->u;
-    species(id, e.smiles, e.name, e.phase, dfh, u, e.s298, e.cp298);
+    species(id, e.smiles, e.name, e.phase, own, own_u, dfh, u, e.at, e.s298, e.cp298, e.u_s298, e.u_cp298);
     for (const int row : e.rows) species_member(id, row);
+  });
+}
+
+void write_adjusted(SQLite::Database& db, const Table& t) {
+  Insert species(db, "adjusted", 6), link(db, "adjusted_link", 3);
+  each(t.adjusted, [&](int id, const AdjustedSpecies& s) {
+    species(id, s.key, s.smiles, s.dfh298, s.datum, s.weight);
+    for (const auto& l : s.links) link(id, l.other, l.covariance);
   });
 }
 
@@ -136,6 +146,7 @@ void write_all(const Table& table, std::string_view schema_sql, const std::strin
   meta(std::string("content_hash"), content_hash(dumped));
   write_evidence(db, table);
   write_entries(db, table);
+  write_adjusted(db, table);
   write_models(db, table);
   db.exec("COMMIT");
 }

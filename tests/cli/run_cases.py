@@ -218,7 +218,7 @@ def write_faults(command):
 def self_test(command):
     """Each kind of check must notice a wrong expectation."""
     good = {"name": "version", "args": ["--version"], "exit": 0, "stdout": ["halostep"]}
-    table = {"name": "table", "args": ["table", "--format", "json"], "exit": 0, "json": {"/table/layout": 1}}
+    table = {"name": "table", "args": ["table", "--format", "json"], "exit": 0, "json": {"/table/layout": 2}}
     bad = [{**good, "exit": 3}, {**good, "stdout": ["nonsense"]}, {**good, "absent": ["halostep"]},
            {**good, "stderr": ["x"]}, {**table, "json": {"/table/layout": 99}}, {**table, "json": {"/nowhere": 1}},
            {**table, "json": {"/counts/sources": {"max": -1}}}, {**good, "csv": {"header": ["nonsense"]}}]

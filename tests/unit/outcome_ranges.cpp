@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "bonds/adjusted.hpp"
 #include "bonds/bond_model.hpp"
 #include "bonds/features.hpp"
 #include "engine_shared.hpp"
@@ -87,10 +88,20 @@ bool is_typed(const Question& q, const SiteOutcome& s) {
 // Adds the uncertainty of single bond energies: those of the molecule (measured route) and of HX.
 void add_bonds(Table& t, const Question& q, std::vector<double>& variance) {
   const std::string key = canonical_smiles(q.molecule, false), hx = same_as(halogen_name(q.halogen));
+  const AdjustedBook book(t);
+  const auto sum = [](const BondEntry& b) { return EnthalpySum{{b.at_radical, 1}, {b.at_leaving, 1}, {b.at_molecule, -1}}; };
+  std::vector<std::pair<EnthalpySum, std::vector<double>>> shared;
   for (auto& b : t.bonds) {
     if (b.leaving != "[H]" || (b.molecule != hx && (q.typed || b.molecule != key))) continue;
     const auto j = slope(t, b.d298.value, 0.01, q);
-    for (std::size_t s = 0; s < variance.size(); ++s) variance[s] += j[s] * j[s] * b.d298.u * b.d298.u;
+    if (b.molecule == key) shared.emplace_back(sum(b), j);
+    for (std::size_t s = 0; s < variance.size() && b.molecule == hx; ++s) variance[s] += j[s] * j[s] * b.d298.u * b.d298.u;
+  }
+  // Bonds of one molecule share its enthalpy: their covariance is that of the joint adjustment.
+  for (const auto& [a, ja] : shared) {
+    for (const auto& [b, jb] : shared) {
+      for (std::size_t s = 0; s < variance.size(); ++s) variance[s] += ja[s] * jb[s] * book.covariance(a, b);
+    }
   }
 }
 

@@ -8,12 +8,21 @@
 namespace halostep {
 namespace {
 
+void same(const std::optional<Quantity>& a, const std::optional<Quantity>& b) {
+  ASSERT_EQ(a.has_value(), b.has_value());
+  if (!a) return;
+  EXPECT_EQ(a->value, b->value);
+  EXPECT_EQ(a->u, b->u);
+}
+
 void expect_same(const SiteOutcome& a, const SiteOutcome& b) {
   EXPECT_EQ(a.radical, b.radical);
   EXPECT_EQ(a.type, b.type);
   EXPECT_EQ(a.atoms, b.atoms);
   EXPECT_EQ(a.k_cm3_s, b.k_cm3_s);
   EXPECT_EQ(a.ea, b.ea);
+  EXPECT_EQ(a.u_ea, b.u_ea);
+  EXPECT_EQ(a.u_ts_position, b.u_ts_position);
   EXPECT_EQ(a.share, b.share);
   EXPECT_EQ(a.share_low, b.share_low);
   EXPECT_EQ(a.share_high, b.share_high);
@@ -40,10 +49,11 @@ void expect_same(const StepAnswer& a, const StepAnswer& b) {
     EXPECT_EQ(a.dh->value, b.dh->value);
     EXPECT_EQ(a.dh->u, b.dh->u);
   }
-  EXPECT_EQ(a.ds, b.ds);
-  EXPECT_EQ(a.dg, b.dg);
-  EXPECT_EQ(a.log10_k, b.log10_k);
-  EXPECT_EQ(a.ea, b.ea);
+  same(a.ds, b.ds);
+  same(a.dg, b.dg);
+  same(a.log10_k, b.log10_k);
+  same(a.ea, b.ea);
+  EXPECT_EQ(a.u_log10_k_cm3_s, b.u_log10_k_cm3_s);
   EXPECT_EQ(a.k_cm3_s, b.k_cm3_s);
   EXPECT_EQ(a.sources, b.sources);
   EXPECT_EQ(a.why_dh + a.why_ds + a.why_ea, b.why_dh + b.why_ds + b.why_ea);

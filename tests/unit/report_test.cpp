@@ -26,7 +26,7 @@ Table small_table() {
                {"old1970", "A book", "", "textbook", 1970}};
   t.bond_rows = {{"C", "[CH3]", "[H]", 439.3, 0.2, "1s", "evaluated", "memory", "", "", false, 0},
                  {"C", "[CH3]", "[H]", 435.0, 4.0, "none", "measured", "memory", "", "older \"scale\", low", true, 1}};
-  t.bonds = {{"C", "[CH3]", "[H]", {439.3, 0.3}, {0, 1}}};
+  t.bonds = {{"C", "[CH3]", "[H]", {439.3, 0.3}, {439.3, 0.3}, -1, -1, -1, {0, 1}}};
   return t;
 }
 

@@ -115,26 +115,31 @@ TEST(Chain, StepsOfEverySiteInOrder) {
 }
 
 // Every reaction the chain writes must balance and be readable by the free query, and where both speak of the same
-// bonds they must give one number. (The net is asked from formation enthalpies there: see tests/reference.)
+// species they must give one number, the net among them.
 TEST(Chain, TheFreeQueryGivesTheSameNumber) {
   int compared = 0;
   for (const auto smiles : kSubstrates) {
     for (const auto x : kAllHalogens) {
       for (const auto& s : steps(smiles, x)) {
-        if (!s.dh || s.kind == StepKind::net) continue;
+        if (!s.dh) continue;
         const auto r = engine().reaction(s.reaction, 298.15);
         if (!r.ok()) {
           ADD_FAILURE() << s.reaction << ": " << r.error().message;
           continue;
         }
         EXPECT_NEAR(r.value().dh->value, s.dh->value, 1e-9) << step_kind_name(s.kind) << " " << s.reaction;
-        EXPECT_NEAR(r.value().dh->u, s.dh->u, 1e-9) << step_kind_name(s.kind) << " " << s.reaction;
+        EXPECT_NEAR(r.value().dh->u, s.dh->u, 1e-3) << step_kind_name(s.kind) << " " << s.reaction;
         EXPECT_EQ(r.value().ds.has_value(), s.ds.has_value()) << step_kind_name(s.kind) << " " << s.reaction;
         if (r.value().ds && s.ds) {
-          EXPECT_NEAR(*r.value().ds, *s.ds, 1e-9) << s.reaction;
+          EXPECT_NEAR(r.value().ds->value, s.ds->value, 1e-9) << s.reaction;
+          EXPECT_NEAR(r.value().ds->u, s.ds->u, 1e-9) << s.reaction;
+          EXPECT_GT(s.ds->u, 0) << s.reaction;
         }
         if (s.kind == StepKind::abstraction && s.ea && r.value().ea) {
-          EXPECT_NEAR(*r.value().ea, *s.ea, 1e-9) << s.reaction;
+          EXPECT_NEAR(r.value().ea->value, s.ea->value, 1e-9) << s.reaction;
+          EXPECT_NEAR(r.value().ea->u, s.ea->u, 1e-9) << s.reaction;
+          EXPECT_GT(s.ea->u, 0) << s.reaction;
+          EXPECT_NEAR(r.value().u_log10_k_cm3_s, s.u_log10_k_cm3_s, 1e-9) << s.reaction;
           EXPECT_NEAR(*r.value().k_cm3_s / *s.k_cm3_s, 1, 1e-9) << s.reaction;
         }
         ++compared;
@@ -156,11 +161,13 @@ TEST(Thermo, EntropyEnthalpyAndEquilibriumAgree) {
         if (!hot[i].dg) continue;
         ++checked;
         ASSERT_TRUE(cold[i].dh && cold[i].ds);
-        EXPECT_NEAR(*cold[i].dg, cold[i].dh->value - 298.15 * *cold[i].ds / 1000, 1e-9) << cold[i].reaction;
-        EXPECT_NEAR(*hot[i].log10_k, -*hot[i].dg / (kGasConstant * 500 * std::log(10.0)), 1e-9);
+        EXPECT_NEAR(cold[i].dg->value, cold[i].dh->value - 298.15 * cold[i].ds->value / 1000, 1e-9) << cold[i].reaction;
+        EXPECT_NEAR(hot[i].log10_k->value, -hot[i].dg->value / (kGasConstant * 500 * std::log(10.0)), 1e-9);
+        EXPECT_NEAR(hot[i].log10_k->u, hot[i].dg->u / (kGasConstant * 500 * std::log(10.0)), 1e-9);
+        EXPECT_GE(hot[i].dg->u, hot[i].dh->u);
         EXPECT_EQ(hot[i].dh->value, cold[i].dh->value) << "dh stays that of 298.15 K";
-        const double helmholtz = (*hotter[i].dg / 500.01 - *below[i].dg / 499.99) / (1 / 500.01 - 1 / 499.99);
-        EXPECT_NEAR(*hot[i].dg + 500 * *hot[i].ds / 1000, helmholtz, 1e-3) << hot[i].reaction;
+        const double helmholtz = (hotter[i].dg->value / 500.01 - below[i].dg->value / 499.99) / (1 / 500.01 - 1 / 499.99);
+        EXPECT_NEAR(hot[i].dg->value + 500 * hot[i].ds->value / 1000, helmholtz, 1e-3) << hot[i].reaction;
       }
     }
   }
@@ -177,8 +184,8 @@ TEST(Thermo, EntropiesAddUp) {
           const auto &a = find(all, StepKind::abstraction, r), &b = find(all, StepKind::transfer, r),
                      &n = find(all, StepKind::net, r);
           if (!a.ds || !b.ds || !n.ds) continue;
-          EXPECT_NEAR(*a.ds + *b.ds, *n.ds, 1e-9) << smiles;
-          EXPECT_NEAR(*a.log10_k + *b.log10_k, *n.log10_k, 1e-9) << smiles;
+          EXPECT_NEAR(a.ds->value + b.ds->value, n.ds->value, 1e-9) << smiles;
+          EXPECT_NEAR(a.log10_k->value + b.log10_k->value, n.log10_k->value, 1e-9) << smiles;
         }
       }
     }
@@ -206,8 +213,8 @@ TEST(Chain, ASiteOutsideSaysWhy) {
   EXPECT_TRUE(inside.dh);
 }
 
-TEST(Chain, NoCarbonHydrogenIsARefusal) {
-  for (const auto* smiles : {"O", "ClC(Cl)(Cl)Cl", "[SiH4]", "N"}) {
+TEST(Chain, NoHydrogenIsARefusal) {
+  for (const auto* smiles : {"ClC(Cl)(Cl)Cl", "FC(F)(F)F"}) {
     const auto r = engine().steps(read(smiles), kAllHalogens, 298.15);
     ASSERT_FALSE(r.ok()) << smiles;
     EXPECT_EQ(r.error().cls, ErrorClass::domain);

@@ -79,8 +79,8 @@ TEST(CombineRows, CurrentRowsOfABondGiveOneValue) {
   ASSERT_TRUE(faults.none());
   const auto* methane = bond(t, "C", "[H]");
   ASSERT_NE(methane, nullptr);
-  EXPECT_DOUBLE_EQ(methane->d298.value, 439.5);
-  EXPECT_DOUBLE_EQ(methane->d298.u, std::sqrt(0.5));
+  EXPECT_DOUBLE_EQ(methane->combined.value, 439.5);
+  EXPECT_DOUBLE_EQ(methane->combined.u, std::sqrt(0.5));
   EXPECT_EQ(methane->rows, (std::vector<int>{0, 1}));
 }
 
@@ -93,7 +93,7 @@ TEST(CombineRows, SupersededRowsAreListedButNotCombined) {
   ASSERT_TRUE(faults.none());
   const auto* methane = bond(t, "C", "[H]");
   ASSERT_NE(methane, nullptr);
-  EXPECT_DOUBLE_EQ(methane->d298.value, 439.5);
+  EXPECT_DOUBLE_EQ(methane->combined.value, 439.5);
   EXPECT_EQ(methane->rows, (std::vector<int>{0, 1, 4}));
   EXPECT_EQ(bond(t, "CC", "[H]"), nullptr) << "a bond without a current row has no value";
   EXPECT_EQ(t.bond_rows.size(), 8u) << "and its row is kept";
@@ -106,8 +106,8 @@ TEST(CombineRows, KilocaloriesBecomeKilojoules) {
   const auto t = small.read(faults).table;
   const auto* hcl = bond(t, "Cl", "[H]");
   ASSERT_NE(hcl, nullptr);
-  EXPECT_NEAR(hcl->d298.value, 431.5796, 1e-9);
-  EXPECT_NEAR(hcl->d298.u, 0.4184, 1e-9);
+  EXPECT_NEAR(hcl->combined.value, 431.5796, 1e-9);
+  EXPECT_NEAR(hcl->combined.u, 0.4184, 1e-9);
   EXPECT_EQ(hcl->radical, "[Cl]");
 }
 
@@ -124,10 +124,10 @@ TEST(CombineRows, ResonanceFormsAndOtherSpellingsAreOneBond) {
   EXPECT_EQ(t.bonds.size(), 7u);
   const auto* allylic = bond(t, canonical("C=CC"), "[H]");
   ASSERT_NE(allylic, nullptr);
-  EXPECT_DOUBLE_EQ(allylic->d298.value, 370.5);
+  EXPECT_DOUBLE_EQ(allylic->combined.value, 370.5);
   const auto* chloride = bond(t, canonical("ClCC=C"), "[Cl]");
   ASSERT_NE(chloride, nullptr);
-  EXPECT_DOUBLE_EQ(chloride->d298.value, 291.0);
+  EXPECT_DOUBLE_EQ(chloride->combined.value, 291.0);
   EXPECT_EQ(t.bonds.back().rows.size(), 2u) << "the parts of an O-O bond may stand in either order";
   EXPECT_DOUBLE_EQ(t.bonds.back().d298.value, 161.0);
 }

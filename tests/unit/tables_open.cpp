@@ -32,13 +32,13 @@ class OpenTable : public testing::Test {
 
   static std::string schema() { return test::read_file(HALOSTEP_SOURCE_DIR "/bde_tables/schema.sql"); }
   void change(const std::string& sql) const { SQLite::Database(path_, SQLite::OPEN_READWRITE).exec(sql); }
-  void expect_refused(const char* found, const char* wanted) const {
+  void expect_refused(const char* found, const std::string& wanted) const {
     const auto r = open_table(path_);
     ASSERT_FALSE(r.ok());
     EXPECT_EQ(r.error().cls, ErrorClass::table);
     EXPECT_EQ(r.error().place, path_);
     EXPECT_THAT(r.error().message, AllOf(HasSubstr("'" + path_ + "'"), HasSubstr(std::string("found ") + found),
-                                         HasSubstr(std::string("wanted ") + wanted)));
+                                         HasSubstr("wanted " + wanted)));
   }
 
   test::TempDir dir_;
@@ -67,7 +67,7 @@ TEST_F(OpenTable, EqualTablesGiveEqualFiles) {
 
 TEST_F(OpenTable, AnotherLayout) {
   change("UPDATE meta SET value = '7' WHERE key = 'layout'");
-  expect_refused("layout 7", "layout 1");
+  expect_refused("layout 7", "layout " + std::to_string(kTableLayout));
 }
 
 TEST_F(OpenTable, AChangedRow) {
@@ -98,7 +98,7 @@ TEST_F(OpenTable, ADirectory) {
 
 TEST_F(OpenTable, AnEmptyFile) {
   test::write_file(path_, "");
-  expect_refused("no such table", "a halostep table of layout 1");
+  expect_refused("no such table", "a halostep table of layout " + std::to_string(kTableLayout));
 }
 
 TEST_F(OpenTable, ATextFile) {
@@ -112,7 +112,7 @@ TEST_F(OpenTable, ATextFile) {
 TEST_F(OpenTable, ADatabaseOfSomethingElse) {
   std::filesystem::remove(path_);
   SQLite::Database(path_, SQLite::OPEN_READWRITE | SQLite::OPEN_CREATE).exec("CREATE TABLE x (y)");
-  expect_refused("no such table", "a halostep table of layout 1");
+  expect_refused("no such table", "a halostep table of layout " + std::to_string(kTableLayout));
 }
 
 // Every cut and a damaged byte in each page: never a crash, never a table.

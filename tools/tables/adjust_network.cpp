@@ -23,10 +23,7 @@ std::size_t at(int i) { return static_cast<std::size_t>(i); }
 
 std::string key_of(const std::string& smiles) {
   const auto m = parse_smiles(smiles, ParseMode::species);
-  if (!m.ok()) return smiles;
-  const int unpaired = m.value().unpaired();
-  if (unpaired == 0) return canonical_smiles(m.value(), false);
-  return fmt::format("{} unpaired: {}", unpaired, skeleton_key(m.value()));
+  return m.ok() ? species_key(m.value()) : smiles;
 }
 
 class Builder {
@@ -40,6 +37,7 @@ class Builder {
     drop_unused();
     group_copies(t_, out_);
     set_data();
+    set_weights();
     return std::move(out_);
   }
 
@@ -82,7 +80,7 @@ class Builder {
         continue;
       }
       const int x = unknown(s.smiles);
-      combined_.emplace(x, s.dfh298->value);
+      combined_.emplace(x, s.combined->value);
       if (*r.u == 0 && !out_.network.unknowns[at(x)].fixed) {
         leave_out("u is zero and the species is no reference state", name);
         continue;
@@ -169,6 +167,10 @@ class Builder {
     for (const auto& o : out_.network.observations) {
       for (const auto& t : o.terms) moved[at(t.unknown)] = 0;
     }
+    // Elements in their reference states stay: reactions ask for them.
+    for (std::size_t i = 0; i < moved.size(); ++i) {
+      if (out_.network.unknowns[i].fixed) moved[i] = 0;
+    }
     std::vector<NetworkUnknown> kept;
     for (std::size_t i = 0; i < moved.size(); ++i) {
       if (moved[i] < 0) continue;
@@ -192,14 +194,43 @@ class Builder {
   void set_data() {
     auto& n = out_.network;
     out_.relative.assign(n.unknowns.size(), false);
+    out_.datum.assign(n.unknowns.size(), -1);
+    out_.weight.assign(n.unknowns.size(), 0.0);
     for (auto open = undetermined(n); !open.empty(); open = undetermined(n)) {
       std::set<int> touched;
       for (const auto& part : open) {
         if (std::any_of(part.begin(), part.end(), [&](int x) { return touched.contains(x); })) continue;
         touched.insert(part.begin(), part.end());
-        for (const int x : part) out_.relative[at(x)] = true;
-        const auto datum = std::find_if(part.begin(), part.end(), [&](int x) { return closed_shell(x); });
-        n.unknowns[at(datum == part.end() ? part.front() : *datum)].fixed = 0.0;
+        const auto shell = std::find_if(part.begin(), part.end(), [&](int x) { return closed_shell(x); });
+        const int datum = shell == part.end() ? part.front() : *shell;
+        for (const int x : part) {
+          out_.relative[at(x)] = true;
+          out_.datum[at(x)] = datum;
+        }
+        out_.weight[at(datum)] = 1;
+        n.unknowns[at(datum)].fixed = 0.0;
+      }
+    }
+  }
+
+  // Every observation of a part stays as it is when its datum moves: the weights follow one from the other.
+  void set_weights() {
+    std::vector<bool> open = out_.relative;
+    for (std::size_t i = 0; i < open.size(); ++i) open[i] = open[i] && out_.weight[i] == 0;
+    for (bool moved = true; moved;) {
+      moved = false;
+      for (const auto& o : out_.network.observations) {
+        const NetworkTerm* last = nullptr;
+        double sum = 0;
+        int unknown = 0;
+        for (const auto& t : o.terms) {
+          if (open[at(t.unknown)]) last = &t, ++unknown;
+          else sum += t.factor * out_.weight[at(t.unknown)];
+        }
+        if (unknown != 1) continue;
+        out_.weight[at(last->unknown)] = -sum / last->factor;
+        open[at(last->unknown)] = false;
+        moved = true;
       }
     }
   }

@@ -33,6 +33,8 @@ struct EnthalpyNetwork {
   Network network;
   std::vector<NetworkRow> rows;                 // one per observation
   std::vector<bool> relative;                   // per unknown: only differences to its part's datum are known
+  std::vector<int> datum;                       // per unknown: that datum, or -1
+  std::vector<double> weight;                   // per unknown: its change per change of that datum
   std::unordered_map<std::string, int> at;      // species key -> unknown
   std::map<std::string, LeftOutRows> left_out;  // by reason
 

@@ -96,20 +96,20 @@ void print_moved(const Table& table, const EnthalpyNetwork& net, const Adjustmen
   };
   std::vector<Moved> moved;
   for (const auto& s : table.species) {
-    const int x = s.phase == "g" && s.dfh298 ? net.find(s.smiles) : -1;
+    const int x = s.phase == "g" && s.combined ? net.find(s.smiles) : -1;
     if (x < 0 || net.network.unknowns[at(x)].fixed) continue;
     const NetworkTerm one{x, 1};
     moved.push_back({&s, a.value({&one, 1})});
   }
   std::sort(moved.begin(), moved.end(), [](const Moved& x, const Moved& y) {
-    return std::abs(x.now.value - x.s->dfh298->value) > std::abs(y.now.value - y.s->dfh298->value);
+    return std::abs(x.now.value - x.s->combined->value) > std::abs(y.now.value - y.s->combined->value);
   });
   fmt::print("\nmoved most from the combined value:\n{:>9} {:>7} {:>9} {:>7} {:>7}  {}\n", "combined", "u", "adjusted",
              "u", "moved", "species");
   for (std::size_t i = 0; i < std::min(kMostMoved, moved.size()); ++i) {
     const auto& [s, now] = moved[i];
-    fmt::print("{:>9.2f} {:>7.2f} {:>9.2f} {:>7.2f} {:>7.2f}  {}\n", s->dfh298->value, s->dfh298->u, now.value, now.u,
-               now.value - s->dfh298->value, s->smiles);
+    fmt::print("{:>9.2f} {:>7.2f} {:>9.2f} {:>7.2f} {:>7.2f}  {}\n", s->combined->value, s->combined->u, now.value, now.u,
+               now.value - s->combined->value, s->smiles);
   }
 }
 

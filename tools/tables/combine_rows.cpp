@@ -74,16 +74,28 @@ std::ptrdiff_t method_rank(const SpeciesRow& r) {
   return std::find(order.begin(), order.end(), r.method) - order.begin();
 }
 
-std::optional<double> preferred(const Table& t, const std::vector<int>& rows,
-                                std::optional<double> SpeciesRow::*field) {
+const SpeciesRow* preferred(const Table& t, const std::vector<int>& rows, std::optional<double> SpeciesRow::*field) {
   const SpeciesRow* best = nullptr;
   for (const int i : rows) {
     const auto& r = t.species_rows[at(i)];
     if (r.superseded || !(r.*field)) continue;
     if (best == nullptr || method_rank(r) < method_rank(*best)) best = &r;
   }
-  if (best == nullptr) return std::nullopt;
-  return best->*field;
+  return best;
+}
+
+// The rows give S and Cp without u (GUM 4.3, by experience): statistical mechanics and third-law values of evaluations
+// agree within 0.2 to 1 J/(mol K) for closed shells; radicals with hindered rotors and low frequencies, and derived or
+// computed values, within a few.
+double entropy_u(const SpeciesRow& r, bool radical, bool atom) {
+  if (atom) return 0.01;
+  const double base = r.method == "evaluated" ? 0.7 : r.method == "measured" ? 1.5 : 3.0;
+  return radical ? 2 * base : base;
+}
+constexpr double kHeatCapacityShare = 0.03;
+
+bool monatomic(const std::string& smiles) {
+  return smiles.front() == '[' && smiles.size() <= 4 && smiles.find('H') >= smiles.size() - 2;
 }
 
 int first_current(const Table& t, const std::vector<int>& rows) {
@@ -104,7 +116,9 @@ void combine_bonds(Table& table, const std::vector<BondKey>& keys, const std::ve
     tell_outliers(table, rows, places, faults);
     const auto values = current_values(table, rows, -1);
     if (values.empty()) continue;
-    table.bonds.push_back({key.molecule, key.radical, key.leaving, combine(values).value, std::move(rows)});
+    BondEntry e{key.molecule, key.radical, key.leaving, combine(values).value, {}, -1, -1, -1, std::move(rows)};
+    e.d298 = e.combined;
+    table.bonds.push_back(std::move(e));
   }
 }
 
@@ -117,9 +131,15 @@ void combine_species(Table& table, const std::vector<SpeciesKey>& keys) {
     e.smiles = keys[at(first)].canonical;
     e.name = table.species_rows[at(first)].name;
     e.phase = table.species_rows[at(first)].phase;
-    e.dfh298 = combined_enthalpy(table, rows);
-    e.s298 = preferred(table, rows, &SpeciesRow::s298);
-    e.cp298 = preferred(table, rows, &SpeciesRow::cp298);
+    e.dfh298 = e.combined = combined_enthalpy(table, rows);
+    if (const auto* r = preferred(table, rows, &SpeciesRow::s298)) {
+      e.s298 = r->s298;
+      e.u_s298 = entropy_u(*r, keys[at(first)].key != e.smiles, monatomic(e.smiles));
+    }
+    if (const auto* r = preferred(table, rows, &SpeciesRow::cp298)) {
+      e.cp298 = r->cp298;
+      e.u_cp298 = kHeatCapacityShare * *r->cp298;
+    }
     e.rows = std::move(rows);
     table.species.push_back(std::move(e));
   }

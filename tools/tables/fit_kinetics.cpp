@@ -6,6 +6,7 @@
 #include <optional>
 
 #include "adjust/nonlinear.hpp"
+#include "bonds/answers.hpp"
 #include "bonds/locate.hpp"
 #include "tables/fit_bonds.hpp"
 #include "halostep/structure.hpp"
@@ -43,7 +44,7 @@ std::optional<Prepared> prepare(const std::string& smiles) {
 
 class Sampler {
  public:
-  Sampler(const Table& t, const BondModel& b) : t_(t), b_(b) {
+  Sampler(const Table& t, const BondModel& b) : book_(t, b) {
     for (int x = 0; x < 4; ++x) {
       const auto hx = parse_smiles(kNames[x], ParseMode::species);
       const int e = hx.ok() ? b.measured(canonical_smiles(hx.value(), false), std::string("[") + kNames[x] + "]", "[H]") : -1;
@@ -56,17 +57,11 @@ class Sampler {
     r.site = rate_site(p.m, p.info, h.atom);
     r.h_count = h.h_count;
     if (!r.site.covered) return std::nullopt;
-    const int e = b_.measured(p.text, canonical_smiles(p.m.without_hydrogen(h.atom), false), "[H]");
-    Quantity d;
-    if (e >= 0) {
-      d = t_.bonds[static_cast<std::size_t>(e)].d298;
-    } else {
-      const auto typed = b_.typed(site_features(p.m, p.info, h.atom));
-      if (!typed.refusal.empty()) return std::nullopt;
-      d = typed.d;
-    }
-    r.dh = d.value - d_hx_[carrier];
-    r.u_dh = d.u;
+    // The D a user of the engine gets.
+    const auto d = book_.hydrogen(Analysis(p.m, false), h, false).d;
+    if (!d) return std::nullopt;
+    r.dh = d->value - d_hx_[carrier];
+    r.u_dh = d->u;
     return r;
   }
 
@@ -91,8 +86,7 @@ class Sampler {
   }
 
  private:
-  const Table& t_;
-  const BondModel& b_;
+  BondBook book_;
   double d_hx_[4] = {};
 };
 

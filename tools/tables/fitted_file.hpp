@@ -15,7 +15,7 @@ struct FittedFile {
   std::vector<FittedModel> models;
 };
 
-/// SHA-256 of all rows and combined values of `table`, without its models.
+/// SHA-256 of all rows and combined values of `table`, without adjusted ones and models.
 std::string input_hash(const Table& table);
 
 /// The document as text: one row of a covariance (lower triangle) a line, numbers with 17 digits, so that reading

@@ -8,6 +8,7 @@
 #include "bonds/features.hpp"
 #include "bonds/locate.hpp"
 #include "halostep/structure.hpp"
+#include "tables/adjust_table.hpp"
 
 namespace halostep {
 namespace {
@@ -54,6 +55,8 @@ Table without_fold(const Table& table, Folds& folds, int fold) {
   std::erase_if(t.rates, [&](const RateRow& r) { return !r.carrier.empty() && held(r.molecule); });
   std::erase_if(t.relative_rates, [&](const RelativeRateRow& r) { return held(r.molecule) || held(r.reference_molecule); });
   std::erase_if(t.mixtures, [&](const MixtureRow& r) { return held(r.molecule); });
+  // What tells of a held molecule through others must go too: its bonds' rows are gone from the entries, so from here.
+  if (adjust_table(t)) t.adjusted.clear();
   return t;
 }
 

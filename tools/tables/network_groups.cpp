@@ -84,8 +84,8 @@ void group_copies(const Table& table, EnthalpyNetwork& net) {
     if (net.network.unknowns[i].fixed) combined.emplace(static_cast<int>(i), *net.network.unknowns[i].fixed);
   }
   for (const auto& s : table.species) {
-    const int x = s.phase == "g" && s.dfh298 ? net.find(s.smiles) : -1;
-    if (x >= 0) combined.emplace(x, s.dfh298->value);
+    const int x = s.phase == "g" && s.combined ? net.find(s.smiles) : -1;
+    if (x >= 0) combined.emplace(x, s.combined->value);
   }
   std::map<int, std::vector<int>> about;
   for (std::size_t o = 0; o < net.rows.size(); ++o) about[net.rows[o].about].push_back(static_cast<int>(o));

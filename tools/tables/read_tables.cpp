@@ -7,6 +7,7 @@
 #include <filesystem>
 #include <set>
 
+#include "tables/adjust_table.hpp"
 #include "tables/read_bonds.hpp"
 #include "tables/read_rates.hpp"
 #include "tables/read_species.hpp"
@@ -88,6 +89,9 @@ Curated read_tables(const std::string& dir, Faults& faults) {
                                            [&](const Fault& f) { return f.file == file.first; });
   });
   if (all_read) sources.tell_unused(faults);
+  if (faults.none()) {
+    if (const auto error = adjust_table(t)) faults.add("species.csv", 0, "joint adjustment: " + error->message);
+  }
   faults.sort([](const std::string& file) { return std::find(kFiles.begin(), kFiles.end(), file) - kFiles.begin(); });
   return out;
 }

@@ -46,8 +46,7 @@ const Structure* Structures::in(const Row& row, std::string_view column) {
 }
 
 std::string species_key(const Structure& s) {
-  const int unpaired = s.m.unpaired();
-  return unpaired == 0 ? s.canonical : fmt::format("{} unpaired: {}", unpaired, skeleton_key(s.m));
+  return s.m.unpaired() == 0 ? s.canonical : species_key(s.m);
 }
 
 int radical_site(const Row& row, const Structure& s, const Structure& radical) {

@@ -21,7 +21,8 @@ int halogen_element(Halogen x) noexcept;
 /// Errors: usage (lists the known ones).
 Result<Halogen> parse_halogen(std::string_view text);
 
-/// How an answer was obtained. `adjusted` is reserved for the joint adjustment.
+/// How an answer was obtained: from rows of this very bond and what is tied to them by the joint adjustment, from the
+/// adjusted enthalpies of its parts alone, or from the fitted types.
 enum class Route { measured, adjusted, typed };
 const char* route_name(Route r) noexcept;
 
@@ -67,14 +68,15 @@ struct StepAnswer {
   std::string radical;               // the site, where one is meant; else empty
   double temperature = kReferenceTemperature;   // K
   std::optional<Quantity> dh;        // kJ/mol, 298.15 K
-  std::optional<double> ds;          // J mol-1 K-1
-  std::optional<double> dg;          // kJ/mol
-  std::optional<double> log10_k;     // log10 of K (1 bar standard state)
-  std::optional<double> ea;          // kJ/mol, Arrhenius, at `temperature`; abstraction only
+  std::optional<Quantity> ds;        // J mol-1 K-1
+  std::optional<Quantity> dg;        // kJ/mol
+  std::optional<Quantity> log10_k;   // log10 of K (1 bar standard state)
+  std::optional<Quantity> ea;        // kJ/mol, Arrhenius, at `temperature`; abstraction at C-H and its reverse
   std::optional<double> k_cm3_s;     // rate coefficient of all equivalent H, cm3 molecule-1 s-1
+  double u_log10_k_cm3_s = 0;        // standard uncertainty of its log10
   bool balanced = true;
   std::vector<int> sources;
-  std::string route;                 // "bonds", "formation enthalpies", "bonds and formation enthalpies"
+  std::string route;                 // of dh: "joint adjustment", "typed", "joint adjustment and typed"
   std::string why_dh, why_ds, why_ea;  // why a value is absent; empty when present
 };
 
@@ -99,9 +101,9 @@ struct SiteOutcome {
   Quantity dh;                       // step enthalpy of abstraction, kJ/mol, 298.15 K
   double k_cm3_s = 0;                // all H of the site
   double u_log10_k = 0;              // standard uncertainty of log10 k
-  double ea = 0;                     // Arrhenius activation energy at T, kJ/mol (may be negative)
+  double ea = 0, u_ea = 0;           // Arrhenius activation energy at T, kJ/mol (may be negative)
   double a_cm3_s = 0;                // Arrhenius A at T, all H of the site
-  double ts_position = 0;            // 0 reactant-like to 1 product-like
+  double ts_position = 0, u_ts_position = 0;  // 0 reactant-like to 1 product-like
   double share = 0, share_low = 0, share_high = 0;  // over C-H sites; 95 % range
   bool extrapolated = false;         // T or structure outside the evidence
   std::string why_extrapolated;
@@ -147,7 +149,8 @@ class Engine {
   /// with `why` and without a value. Errors: domain (no bond could be answered), isotope.
   [[nodiscard]] Result<std::vector<BondAnswer>> bonds(const Molecule& m, const BondOptions& o = {}) const;
 
-  /// Chain steps for each halogen: initiation, abstraction and transfer per C-H site, net, terminations.
+  /// Chain steps for each halogen: initiation, abstraction and transfer per X-H site (C, N, O, Si, S ...), net,
+  /// terminations. Barriers and rates are of C-H sites. Errors: domain (no X-H bond).
   [[nodiscard]] Result<std::vector<StepAnswer>> steps(const Molecule& m, std::span<const Halogen> halogens,
                                                       double temperature, const BondOptions& o = {}) const;
 

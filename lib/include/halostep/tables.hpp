@@ -13,7 +13,7 @@
 namespace halostep {
 
 /// Version of the table's layout this library reads.
-inline constexpr int kTableLayout = 1;
+inline constexpr int kTableLayout = 2;
 
 struct SourceRow {
   std::string id, citation, doi, kind;
@@ -29,10 +29,12 @@ struct BondRow {
   int source = -1;                         // index into Table::sources
 };
 
-/// One bond: the combined value of its current rows.
+/// One bond: the value of the joint adjustment, in which its current rows and all that is tied to them speak.
 struct BondEntry {
   std::string molecule, radical, leaving;  // canonical SMILES of this library, without stereo
-  Quantity d298;                           // weighted mean; u carries the spread (see docs/model.md)
+  Quantity combined;                       // weighted mean of its own rows; u carries the spread (see docs/model.md)
+  Quantity d298;                           // adjusted; `combined` where a part of the bond is not in the adjustment
+  int at_molecule = -1, at_radical = -1, at_leaving = -1;  // indices into Table::adjusted, or -1
   std::vector<int> rows;                   // indices into Table::bond_rows (superseded ones included)
 };
 
@@ -44,12 +46,31 @@ struct SpeciesRow {
   int source = -1;
 };
 
-/// One species in one phase: combined values.
+/// One species in one phase.
 struct SpeciesEntry {
   std::string smiles, name, phase;         // canonical SMILES without stereo
-  std::optional<Quantity> dfh298;          // kJ/mol
+  std::optional<Quantity> combined;        // kJ/mol; weighted mean of its own rows
+  std::optional<Quantity> dfh298;          // kJ/mol; adjusted (gas), else `combined`
+  int at = -1;                             // index into Table::adjusted, or -1
   std::optional<double> s298, cp298;       // J mol-1 K-1
+  double u_s298 = 0, u_cp298 = 0;          // standard uncertainties by the kind of the row (see docs/model.md)
   std::vector<int> rows;
+};
+
+/// Covariance of one adjusted enthalpy with another.
+struct AdjustedLink {
+  int other = 0;                           // index into Table::adjusted, not above the owner's
+  double covariance = 0;                   // (kJ/mol)^2
+};
+
+/// One gas species of the joint adjustment (equations: docs/model.md), 298.15 K, kJ/mol.
+struct AdjustedSpecies {
+  std::string key;                         // species_key(): radicals up to resonance
+  std::string smiles;                      // canonical, without stereo
+  double dfh298 = 0;
+  int datum = -1;                          // where only differences are known: index of the molecule taken as zero
+  double weight = 0;                       // change of dfh298 per change of that zero
+  std::vector<AdjustedLink> links;         // lower triangle with the variance; correlations below 1e-6 are left out
 };
 
 /// k(T) = a (T/298)^n exp(-ea/RT); units as in docs/tables.md.
@@ -101,6 +122,7 @@ struct Table {
   std::vector<BondEntry> bonds;
   std::vector<SpeciesRow> species_rows;
   std::vector<SpeciesEntry> species;
+  std::vector<AdjustedSpecies> adjusted;   // of one joint adjustment of all enthalpies
   std::vector<RateRow> rates;              // abstraction and other steps
   std::vector<RelativeRateRow> relative_rates;
   std::vector<MixtureRow> mixtures;
