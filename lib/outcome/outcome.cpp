@@ -20,6 +20,16 @@ std::string outside(const CarbonSite& s, const CarrierModel& m, const char* thin
   return {};
 }
 
+std::vector<RefusedSite> refused_sites(const Analysis& a, const CarbonSites& c) {
+  std::vector<RefusedSite> out;
+  for (const auto& s : c.sites) {
+    if (s.kind >= 0) continue;
+    out.push_back({s.site->h_count, canonical_smiles(a.original().without_hydrogen(s.site->atom)),
+                   std::string(site_type(a.plain(), a.info(), a.to_plain(s.site->atom))), s.refusal});
+  }
+  return out;
+}
+
 // The site that takes most, against each other one.
 void compare_sites(const CarbonSites& c, const KindRates& r, const CarrierModel& m, const std::vector<std::size_t>& answered,
                    double temperature, HalogenOutcome& h) {
@@ -46,13 +56,7 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
   std::vector<HalogenOutcome> out;
   std::vector<AClass> classes;
   for (const auto& k : c.kinds) classes.push_back(k.rate.a_class);
-  std::string left_out;
-  for (const auto& s : c.sites) {
-    if (s.kind >= 0 || !details) continue;
-    left_out = fmt::format("the C-H at {} is outside the domain ({}); the shares leave it out",
-                           canonical_smiles(a.original().without_hydrogen(s.site->atom)), s.refusal);
-    break;
-  }
+  const auto refused = details ? refused_sites(a, c) : std::vector<RefusedSite>{};
   for (const auto& one : rated) {
     const auto halogen = one.halogen;
     const int x = static_cast<int>(halogen);
@@ -101,7 +105,13 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
     compare_sites(c, r, *m, answered, temperature, h);
     if (details) {
       h.notes = competing_channels(a, halogen);
-      if (!left_out.empty()) h.notes.insert(h.notes.begin(), left_out);
+      h.refused = refused;
+      std::vector<std::string> left_out;
+      for (const auto& s : refused) {
+        left_out.push_back(
+            fmt::format("the C-H at {} is outside the domain ({}); the shares leave it out", s.radical, s.why));
+      }
+      h.notes.insert(h.notes.begin(), left_out.begin(), left_out.end());
       h.sources = rate_evidence.sources(x, a.key(), classes);
       for (const int s : bonds.entry_sources(steps.halogen(x).entry_hx)) {
         if (std::find(h.sources.begin(), h.sources.end(), s) == h.sources.end()) h.sources.push_back(s);

@@ -54,22 +54,55 @@ Result<double> parse_number(std::string_view text) {
   return v;
 }
 
-Result<double> parse_temperature(std::string_view text) {
-  std::string_view t = text;
-  while (!t.empty() && t.back() == ' ') t.remove_suffix(1);
-  double offset = 0.0;
-  if (!t.empty() && (t.back() == 'C' || t.back() == 'K')) {
-    offset = t.back() == 'C' ? 273.15 : 0.0;
-    t.remove_suffix(1);
-    while (!t.empty() && t.back() == ' ') t.remove_suffix(1);
+namespace {
+
+/// Takes a trailing C or K, either case, off the text; the degree sign (UTF-8 or Latin-1) may stand before the C.
+char take_temperature_unit(std::string_view& t) {
+  const auto drop_end = [&t](std::string_view end) {
+    const bool there = t.ends_with(end);
+    if (there) t.remove_suffix(end.size());
+    return there;
+  };
+  const auto drop_blanks = [&] {
+    while (drop_end(" ") || drop_end("\t") || drop_end("\xC2\xA0")) {}  // the last is a no-break space
+  };
+  drop_blanks();
+  char unit = 0;
+  if (drop_end("\xE2\x84\x83")) {  // the one-character form of degree C
+    unit = 'C';
+  } else if (drop_end("C") || drop_end("c")) {
+    unit = 'C';
+    drop_blanks();
+    if (!drop_end("\xC2\xB0")) drop_end("\xB0");
+  } else if (drop_end("K") || drop_end("k") || drop_end("\xE2\x84\xAA")) {  // the last is the Kelvin sign
+    unit = 'K';
   }
+  drop_blanks();
+  return unit;
+}
+
+}  // namespace
+
+Result<double> parse_temperature(std::string_view text) {
+  constexpr double kIcePoint = 273.15, kLowest = 100.0, kHighest = 2000.0;
+  std::string_view t = text;
+  while (!t.empty() && (t.front() == ' ' || t.front() == '\t')) t.remove_prefix(1);
+  const char unit = take_temperature_unit(t);
   const auto number = parse_number(t);
   if (!number.ok()) {
     return Error{ErrorClass::usage, fmt::format("'{}' is not a temperature: write 25C or 298.15K", text), {}};
   }
-  const double kelvin = number.value() + offset;
-  if (kelvin < 100.0 || kelvin > 2000.0) {
-    return Error{ErrorClass::usage, fmt::format("{} is {:.2f} K, outside 100 to 2000 K", text, kelvin), {}};
+  if (unit == 0) {
+    return Error{ErrorClass::usage, fmt::format("'{}' has no unit: write {}C or {}K", text, t, t), {}};
+  }
+  const double kelvin = number.value() + (unit == 'C' ? kIcePoint : 0.0);
+  if (kelvin < 0.0) {
+    return Error{ErrorClass::usage, fmt::format("'{}' is below absolute zero ({} K)", text, format_fixed(kelvin, 2)),
+                 {}};
+  }
+  if (kelvin < kLowest || kelvin > kHighest) {
+    return Error{ErrorClass::usage, fmt::format("'{}' is {} K, outside 100 to 2000 K", text, format_fixed(kelvin, 2)),
+                 {}};
   }
   return kelvin;
 }

@@ -15,6 +15,8 @@ namespace {
 constexpr double kSlowLimit = 1000.0 / kAvogadro;
 /// Shares closer than this are called equal, and the faster choice is taken.
 constexpr double kShareTie = 0.005;
+/// Selective: also the lower end of the 95 % range of the share reaches this.
+constexpr double kSelectiveShare = 0.9;
 
 std::string signed_energy(double kj_mol) {
   return fmt::format("{}{} kJ/mol", kj_mol > 0 ? "+" : "", format_fixed(kj_mol, 0));
@@ -30,23 +32,41 @@ const StepAnswer* find_step(std::span<const StepAnswer> steps, Halogen x, StepKi
   return any;
 }
 
-std::string verdict_of(const CompareRow& row) {
+/// What the enthalpies say about the chain; its length was not computed.
+std::string chain_text(const CompareRow& row) {
+  const bool uphill = row.dh_abstraction && row.dh_abstraction->value > kAbstractionLimit;
+  if (!row.propagates && uphill) return "no chain: abstraction " + signed_energy(row.dh_abstraction->value);
+  if (!row.propagates) return "no chain: net " + signed_energy(row.dh_net->value);
+  if (!row.dh_net) return "abstraction allowed by enthalpy, net not known";
+  return "enthalpy allows a chain";
+}
+
+std::string wait_text(const CompareRow& row) {
+  return row.k_cm3_s > 0 ? format_scientific(kSlowLimit / row.k_cm3_s, 2) + " s" : "no time that a number holds";
+}
+
+/// What speaks against a row that may carry a chain, and how far to trust it.
+std::vector<std::string> cautions_of(const CompareRow& row) {
   std::vector<std::string> parts;
-  if (!row.propagates) {
-    if (row.dh_abstraction && row.dh_abstraction->value > kAbstractionLimit) {
-      parts.push_back("no chain: abstraction " + signed_energy(row.dh_abstraction->value));
-    } else {
-      parts.push_back("no chain: net " + signed_energy(row.dh_net->value));
-    }
-  }
   if (row.hazardous) {
     parts.push_back("one turn releases " + format_fixed(-row.dh_net->value, 0) +
                     " kJ/mol, about a C-C bond or more: fragmentation, fire");
   }
-  if (row.slow) parts.push_back("slow: an atom waits over 1 s at 1 mol/L");
-  if (row.share < 0.5) parts.push_back("less than half at the wanted site");
+  if (row.slow) parts.push_back("slow: at 1 mol/L an atom needs " + wait_text(row) + " for this site");
   if (row.extrapolated) parts.push_back("outside the evidence");
-  if (parts.empty()) parts.push_back(row.share >= 0.95 ? "selective, chain runs" : "chain runs");
+  return parts;
+}
+
+std::string verdict_of(const CompareRow& row) {
+  std::vector<std::string> parts{chain_text(row)};
+  if (row.only_site) {
+    parts.push_back("only C-H site");
+  } else if (row.share_low >= kSelectiveShare) {
+    parts.push_back("selective");
+  } else if (row.share < 0.5) {
+    parts.push_back("less than half at the wanted site");
+  }
+  for (auto& part : cautions_of(row)) parts.push_back(std::move(part));
   return fmt::format("{}", fmt::join(parts, "; "));
 }
 
@@ -57,6 +77,7 @@ CompareRow make_row(const HalogenOutcome& outcome, const SiteOutcome& site, std:
   row.share = site.share;
   row.share_low = site.share_low;
   row.share_high = site.share_high;
+  row.only_site = outcome.sites.size() == 1 && outcome.refused.empty();
   row.k_cm3_s = site.k_cm3_s;
   row.dh_abstraction = site.dh;
   row.extrapolated = site.extrapolated;
@@ -81,21 +102,30 @@ std::string name_of(const CompareRow& row) {
   return fmt::format("{} at {} K", halogen_name(row.halogen), format_fixed(row.temperature, 2));
 }
 
-std::string reason_for(const Comparison& c) {
-  const auto& best = c.rows[static_cast<std::size_t>(c.best)];
-  std::string out = fmt::format("{}: {} % of the attack goes to the wanted site (95 % range {} to {} %)", name_of(best),
-                                percent(best.share), percent(best.share_low), percent(best.share_high));
-  if (best.dh_net) out += ", net " + signed_energy(best.dh_net->value) + " per turn";
+std::string share_text(const CompareRow& row) {
+  if (row.only_site) return "the wanted site is the only C-H site";
+  return fmt::format("{} % of the attack goes to the wanted site (95 % range {} to {} %)", percent(row.share),
+                     percent(row.share_low), percent(row.share_high));
+}
+
+std::string next_text(const Comparison& c, const CompareRow& best) {
   const CompareRow* next = nullptr;  // the best of another halogen
   for (const auto& row : c.rows) {
     if (row.halogen != best.halogen && (next == nullptr || better(row, *next))) next = &row;
   }
-  if (next != nullptr && !next->propagates) {
-    out += "; no other halogen asked for carries a chain";
-  } else if (next != nullptr) {
-    out += fmt::format("; next is {} with {} % ({})", name_of(*next), percent(next->share), next->verdict);
+  if (next == nullptr) return {};
+  if (!next->propagates) return "; by enthalpy no other halogen asked for carries a chain";
+  return fmt::format("; next is {} with {} % ({})", name_of(*next), percent(next->share), next->verdict);
+}
+
+std::string reason_for(const Comparison& c) {
+  const auto& best = c.rows[static_cast<std::size_t>(c.best)];
+  std::string out = fmt::format("{}: {}; {}", name_of(best), chain_text(best), share_text(best));
+  if (best.dh_net) out += ", net " + signed_energy(best.dh_net->value) + " per turn";
+  if (const auto cautions = cautions_of(best); !cautions.empty()) {
+    out += fmt::format("; but {}", fmt::join(cautions, "; "));
   }
-  return out;
+  return out + next_text(c, best);
 }
 
 }  // namespace
@@ -126,8 +156,8 @@ Result<Comparison> compare_site(std::span<const HalogenOutcome> outcomes, std::s
     c.best = static_cast<int>(best - c.rows.data());
     c.why = reason_for(c);
   } else {
-    c.why = only ? fmt::format("none: {} carries no chain here ({})", halogen_name(*only), best->verdict)
-                 : fmt::format("none: no halogen asked for carries a chain here ({})", best->verdict);
+    c.why = only ? fmt::format("none: by enthalpy {} carries no chain here ({})", halogen_name(*only), best->verdict)
+                 : fmt::format("none: by enthalpy no halogen asked for carries a chain here ({})", best->verdict);
   }
   return c;
 }

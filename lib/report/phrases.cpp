@@ -12,9 +12,29 @@ std::string energy_cell(std::optional<double> kj_mol, EnergyUnit unit, int decim
   return format_fixed(from_kj(*kj_mol, unit), decimals);
 }
 
+int decimals_for(double value, int least) noexcept {
+  constexpr int kMost = 9;
+  const double size = std::abs(value);
+  int decimals = least;
+  for (double half = 0.5 * std::pow(10.0, -least); size > 0 && size < half && decimals < kMost; half /= 10) ++decimals;
+  return decimals;
+}
+
+QuantityText quantity_text(const Quantity& q, int least_decimals) {
+  const int decimals = decimals_for(q.u, least_decimals);
+  return {format_fixed(q.value, decimals), format_fixed(q.u, decimals)};
+}
+
+QuantityText energy_text(const std::optional<Quantity>& kj_mol, EnergyUnit unit) {
+  if (!kj_mol || !std::isfinite(kj_mol->value)) return {"-", "-"};
+  if (!std::isfinite(kj_mol->u)) return {energy_cell(kj_mol->value, unit), "-"};
+  return quantity_text({from_kj(kj_mol->value, unit), from_kj(kj_mol->u, unit)}, 1);
+}
+
 void add_quantity(std::vector<std::string>& row, const std::optional<Quantity>& q, EnergyUnit unit) {
-  row.push_back(energy_cell(q ? std::optional(q->value) : std::nullopt, unit));
-  row.push_back(energy_cell(q ? std::optional(q->u) : std::nullopt, unit));
+  auto text = energy_text(q, unit);
+  row.push_back(std::move(text.value));
+  row.push_back(std::move(text.u));
 }
 
 std::string csv_number(std::optional<double> value) {
@@ -24,7 +44,8 @@ std::string csv_number(std::optional<double> value) {
 
 std::string csv_energy(std::optional<double> kj_mol, EnergyUnit unit) {
   if (!kj_mol || !std::isfinite(*kj_mol)) return {};
-  return format_fixed(from_kj(*kj_mol, unit), 3);
+  const double value = from_kj(*kj_mol, unit);
+  return format_fixed(value, decimals_for(value, 2) + 1);  // three decimals, or two significant digits
 }
 
 std::string percent(double share) {
@@ -113,7 +134,7 @@ void add_columns(std::vector<GridColumn>& columns, std::initializer_list<std::st
 
 std::string legend(std::initializer_list<std::string> lines) {
   std::string out;
-  for (const auto& line : lines) out += wrapped(line, 118, "");
+  for (const auto& line : lines) out += wrapped(line, 118, "");  // nothing for an empty one
   return out + '\n';
 }
 

@@ -12,6 +12,15 @@ namespace halostep {
 
 /// Energy in the asked unit, one decimal; "-" when absent.
 std::string energy_cell(std::optional<double> kj_mol, EnergyUnit unit, int decimals = 1);
+/// Decimals, at least `least`, at which a value other than zero shows a digit other than zero.
+int decimals_for(double value, int least) noexcept;
+/// A value and its u as text, to the same number of decimals; a u other than zero shows at least one digit.
+struct QuantityText {
+  std::string value, u;
+};
+QuantityText quantity_text(const Quantity& q, int least_decimals);
+/// The same for an energy in the asked unit; "-" and "-" when absent.
+QuantityText energy_text(const std::optional<Quantity>& kj_mol, EnergyUnit unit);
 /// Value and u as two cells.
 void add_quantity(std::vector<std::string>& row, const std::optional<Quantity>& q, EnergyUnit unit);
 /// Plain number in full for CSV, empty when absent.

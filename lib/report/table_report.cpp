@@ -58,7 +58,9 @@ std::string cell_text(const Cell& cell, EnergyUnit unit, bool full) {
     std::string operator()(std::monostate) const { return {}; }
     std::string operator()(const std::string& s) const { return s; }
     std::string operator()(double v) const { return fmt::format("{:.{}g}", v, full ? 8 : 5); }
-    std::string operator()(Energy e) const { return full ? csv_energy(e.kj_mol, unit) : energy_cell(e.kj_mol, unit); }
+    std::string operator()(Energy e) const {
+      return full ? csv_energy(e.kj_mol, unit) : energy_text(Quantity{e.kj_mol, e.u}, unit).value;
+    }
     std::string operator()(int v) const { return std::to_string(v); }
     std::string operator()(bool v) const { return v ? "true" : "false"; }
   };
@@ -149,8 +151,9 @@ std::string show_text(const Table& table, const TableQuery& query, EnergyUnit un
   std::set<int> cited;
   for (const int i : query.bonds) {
     const auto& b = table.bonds[static_cast<std::size_t>(i)];
-    out += fmt::format("{} -> {} + {}   combined D298 {} u {} {}\n", b.molecule, b.radical, b.leaving,
-                       energy_cell(b.d298.value, unit), energy_cell(b.d298.u, unit), energy_unit_name(unit));
+    const auto d = energy_text(b.d298, unit);
+    out += fmt::format("{} -> {} + {}   combined D298 {} u {} {}\n", b.molecule, b.radical, b.leaving, d.value, d.u,
+                       energy_unit_name(unit));
     CellTable cells = cell_rows_of_bonds(table, {i});
     for (std::size_t c = 0; c < 3; ++c) cells.columns[c].wide = true;  // said in the line above
     Grid grid = grid_of(cells, unit, false);

@@ -8,7 +8,9 @@ namespace {
 
 Cell text(const std::string& s) { return s.empty() ? Cell{} : Cell{s}; }
 Cell number(const std::optional<double>& v) { return v ? Cell{*v} : Cell{}; }
-Cell energy(const std::optional<double>& v) { return v ? Cell{Energy{*v}} : Cell{}; }
+Cell energy(const std::optional<double>& v, const std::optional<double>& u = {}) {
+  return v ? Cell{Energy{*v, u.value_or(0.0)}} : Cell{};
+}
 Cell status(bool superseded) { return std::string(superseded ? "superseded" : "current"); }
 Cell use(bool fitted) { return std::string(fitted ? "fit" : "show"); }
 Cell source(const Table& t, int s) { return s < 0 ? Cell{} : Cell{t.sources[static_cast<std::size_t>(s)].id}; }
@@ -18,7 +20,7 @@ const std::vector<CellColumn> kBondColumns{{"molecule"}, {"radical"},  {"leaving
                                            {"source"},   {"status"},   {"reason"},  {"note"}};
 
 std::vector<Cell> bond_cells(const Table& t, const BondRow& r) {
-  return {r.molecule,       r.radical,      r.leaving,          Energy{r.d298},      Energy{r.u},
+  return {r.molecule,       r.radical,      r.leaving,          Energy{r.d298, r.u}, Energy{r.u, r.u},
           text(r.coverage), text(r.method), text(r.provenance), source(t, r.source), status(r.superseded),
           text(r.reason),   text(r.note)};
 }
@@ -46,7 +48,7 @@ CellTable species(const Table& t) {
                  {"note", false, true}},
                 {}};
   for (const auto& r : t.species_rows) {
-    out.rows.push_back({r.smiles, text(r.name), r.phase, energy(r.dfh298), energy(r.u), text(r.coverage),
+    out.rows.push_back({r.smiles, text(r.name), r.phase, energy(r.dfh298, r.u), energy(r.u, r.u), text(r.coverage),
                         number(r.s298), number(r.cp298), text(r.method), text(r.provenance), source(t, r.source),
                         status(r.superseded), text(r.reason), text(r.note)});
   }

@@ -10,6 +10,7 @@ namespace halostep {
 
 struct Energy {
   double kj_mol = 0;
+  double u = 0;  // sets the decimals of the text
 };
 using Cell = std::variant<std::monostate, std::string, double, Energy, int, bool>;
 

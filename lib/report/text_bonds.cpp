@@ -41,7 +41,8 @@ std::string evidence_text(const BondsRecord& record, EnergyUnit unit) {
                     {"u " + name, true},
                     {typed ? "rows" : "", true}};
     for (const auto& c : b.contributions) {
-      grid.rows.push_back({c.name, count_text(c.count), energy_cell(c.value.value, unit), energy_cell(c.value.u, unit),
+      auto text = energy_text(c.value, unit);
+      grid.rows.push_back({c.name, count_text(c.count), std::move(text.value), std::move(text.u),
                            typed ? std::to_string(c.support) : ""});
     }
     out += fmt::format("\n  behind {} of {} ({})\n", b.bond, b.radical, route_name(b.route)) + aligned(grid);

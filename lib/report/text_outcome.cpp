@@ -22,7 +22,7 @@ std::string sites_text(const HalogenOutcome& outcome, EnergyUnit unit) {
     add_quantity(row, s.dh, unit);
     row.push_back(energy_cell(s.ea, unit) + " ± " + energy_cell(s.u_ea, unit));
     row.push_back(format_scientific(s.k_cm3_s, 3));
-    row.push_back(format_fixed(s.u_log10_k, 2));
+    row.push_back(format_fixed(s.u_log10_k, decimals_for(s.u_log10_k, 2)));
     row.push_back(format_fixed(s.ts_position, 2) + " ± " + format_fixed(s.u_ts_position, 2));
     row.push_back(percent(s.share));
     row.push_back(percent_range(s.share_low, s.share_high));
@@ -64,8 +64,8 @@ std::string halogen_text(const HalogenOutcome& outcome, EnergyUnit unit) {
   std::string out = fmt::format("  {}. at {} K: k total {} cm3/s", halogen_name(outcome.halogen),
                                 format_fixed(outcome.temperature, 2), format_scientific(outcome.k_total, 3));
   if (outcome.slope) {
-    out += fmt::format("; Evans-Polanyi slope over the {} {} (u {})", outcome.slope_over,
-                       format_fixed(outcome.slope->value, 2), format_fixed(outcome.slope->u, 2));
+    const auto slope = quantity_text(*outcome.slope, 2);
+    out += fmt::format("; Evans-Polanyi slope over the {} {} (u {})", outcome.slope_over, slope.value, slope.u);
   }
   return out + "\n" + sites_text(outcome, unit) + selectivity_text(outcome) + notes_text(outcome);
 }
@@ -105,36 +105,15 @@ std::string record_text(const OutcomeRecord& record, const TextOptions& options)
   return out;
 }
 
-/// Sites of one record, or the comparison's rows; one cell list per line.
-std::vector<std::vector<std::string>> outcome_rows(const OutcomeRecord& record, EnergyUnit unit) {
-  std::vector<std::vector<std::string>> rows;
-  for (const auto& outcome : record.halogens) {
-    for (const auto& s : outcome.sites) {
-      std::string best;
-      if (record.comparison && record.comparison->best >= 0) {
-        const auto& b = record.comparison->rows[static_cast<std::size_t>(record.comparison->best)];
-        const bool same = b.halogen == outcome.halogen && b.temperature == outcome.temperature;
-        best = same && s.radical == record.comparison->wanted ? "true" : "false";
-      }
-      rows.push_back({halogen_name(outcome.halogen), csv_number(outcome.temperature), s.radical,
-                      std::to_string(s.h_count), s.type, csv_energy(s.dh.value, unit), csv_energy(s.dh.u, unit),
-                      csv_number(s.k_cm3_s), csv_number(s.u_log10_k), csv_energy(s.ea, unit), csv_energy(s.u_ea, unit), csv_number(s.ts_position), csv_number(s.u_ts_position),
-                      csv_number(s.share), csv_number(s.share_low), csv_number(s.share_high),
-                      s.extrapolated ? "true" : "false", best});
-    }
-  }
-  if (rows.empty()) rows.emplace_back(18);
-  return rows;
-}
-
 }  // namespace
 
 std::string outcome_text(const Table& table, std::span<const OutcomeRecord> records, const TextOptions& options) {
   std::string out;
   std::set<int> cited;
-  bool answered = false;
+  bool answered = false, compared = false;
   for (const auto& record : records) {
     out += record_text(record, options);
+    compared = compared || record.comparison;
     answered = answered || !record.halogens.empty();
     for (const auto& outcome : record.halogens) cited.insert(outcome.sources.begin(), outcome.sources.end());
   }
@@ -145,27 +124,13 @@ std::string outcome_text(const Table& table, std::span<const OutcomeRecord> reco
        "TS: position of the transition state, 0 like the reactants, 1 like the products. share: of the C-H sites; "
        "first attack only, no conversion, inert medium. The second table splits ln(k/k) into the parts it is the "
        "sum of.",
-       "slow: below 1 s-1 at 1 mol/L. extrapolated: temperature or structure outside the evidence."});
+       "extrapolated, outside the evidence: temperature or structure beyond the measured rates.",
+       compared
+           ? "verdict: enthalpy allows a chain where abstraction is not more than 100 kJ/mol uphill and net not above "
+             "zero; initiation, termination and chain length were not computed. selective: the 95 % range of the "
+             "share begins at 90 % or above. slow: an atom meets the site less than once a second at 1 mol/L."
+           : ""});
   return out + source_list(table, cited) + caution_text() + '\n' + table_line(table);
-}
-
-std::string outcome_csv(const Table&, std::span<const OutcomeRecord> records, EnergyUnit unit) {
-  Grid grid;
-  grid.columns = head_columns();
-  const std::string suffix = unit_suffix(unit);
-  add_columns(grid.columns,
-              {"halogen", "temperature_k", "radical", "h_count", "type", "dh_" + suffix, "u_dh_" + suffix, "k_cm3_s",
-               "u_log10_k", "ea_" + suffix, "u_ea_" + suffix, "ts_position", "u_ts_position", "share", "share_low", "share_high", "extrapolated", "best"});
-  for (auto& column : error_columns()) grid.columns.push_back(column);
-  for (const auto& record : records) {
-    for (auto& cells : outcome_rows(record, unit)) {
-      std::vector<std::string> row = head_cells(record.head);
-      row.insert(row.end(), cells.begin(), cells.end());
-      for (auto& cell : error_cells(record.head.error)) row.push_back(std::move(cell));
-      grid.rows.push_back(std::move(row));
-    }
-  }
-  return csv(grid);
 }
 
 }  // namespace halostep

@@ -9,11 +9,13 @@ namespace halostep {
 
 namespace {
 
+constexpr std::size_t kCells = 20;  // of a CSV line, without input and error
+
 /// "12.3 ± 0.4"; a small u gets the decimals it needs.
 std::string pair_cell(const std::optional<Quantity>& q, double scale, int decimals) {
   if (!q || !std::isfinite(q->value)) return "-";
   const double u = scale * q->u;
-  while (decimals < 3 && u > 0 && u < 0.5 * std::pow(10.0, -decimals)) ++decimals;
+  decimals = decimals_for(u, decimals);
   return format_fixed(scale * q->value, decimals) + " ± " + format_fixed(u, decimals);
 }
 
@@ -84,7 +86,16 @@ std::string block(const Table& table, std::span<const StepAnswer> steps, const T
 std::optional<double> value(const std::optional<Quantity>& q) { return q ? std::optional(q->value) : std::nullopt; }
 std::optional<double> u(const std::optional<Quantity>& q) { return q ? std::optional(q->u) : std::nullopt; }
 
-constexpr std::size_t kStepCells = 19;
+/// Why values are missing, e.g. "ds: the table lacks S of C[CH]C; ea: ...".
+std::string reasons_cell(const StepAnswer& s) {
+  std::string out;
+  for (const auto& [absent, name, why] :
+       {std::tuple(!s.dh, "dh", &s.why_dh), std::tuple(!s.ds, "ds, dg, log10_k", &s.why_ds),
+        std::tuple(!s.ea && (s.kind == StepKind::abstraction || s.kind == StepKind::elementary), "ea, k", &s.why_ea)}) {
+    if (absent && !why->empty()) out += fmt::format("{}{}: {}", out.empty() ? "" : "; ", name, *why);
+  }
+  return out;
+}
 
 std::vector<std::string> step_cells(const Table& table, const StepAnswer& s, EnergyUnit unit) {
   return {s.halogen ? halogen_name(*s.halogen) : "",
@@ -105,7 +116,8 @@ std::vector<std::string> step_cells(const Table& table, const StepAnswer& s, Ene
           csv_number(s.k_cm3_s),
           csv_number(s.k_cm3_s ? std::optional(s.u_log10_k_cm3_s) : std::nullopt),
           s.route,
-          source_ids(table, s.sources)};
+          source_ids(table, s.sources),
+          reasons_cell(s)};
 }
 
 }  // namespace
@@ -147,7 +159,7 @@ std::string steps_csv(const Table& table, std::span<const StepsRecord> records,
   const std::string suffix = unit_suffix(unit);
   add_columns(grid.columns, {"halogen", "kind", "reaction", "radical", "temperature_k", "dh_" + suffix, "u_" + suffix,
                              "ds_j_mol_k", "u_ds_j_mol_k", "dg_" + suffix, "u_dg_" + suffix, "log10_k", "u_log10_k", "ea_" + suffix,
-                             "u_ea_" + suffix, "k_cm3_s", "u_log10_k_cm3_s", "route", "sources"});
+                             "u_ea_" + suffix, "k_cm3_s", "u_log10_k_cm3_s", "route", "sources", "why"});
   for (auto& column : error_columns()) grid.columns.push_back(column);
   const auto add = [&](std::vector<std::string> row, std::vector<std::string> cells,
                        const std::optional<Error>& error) {
@@ -156,11 +168,11 @@ std::string steps_csv(const Table& table, std::span<const StepsRecord> records,
     grid.rows.push_back(std::move(row));
   };
   for (const auto& record : records) {
-    if (record.steps.empty()) add(head_cells(record.head), std::vector<std::string>(kStepCells), record.head.error);
+    if (record.steps.empty()) add(head_cells(record.head), std::vector<std::string>(kCells), record.head.error);
     for (const auto& s : record.steps) add(head_cells(record.head), step_cells(table, s, unit), record.head.error);
   }
   for (const auto& r : reactions) {
-    const auto cells = r.step ? step_cells(table, *r.step, unit) : std::vector<std::string>(kStepCells);
+    const auto cells = r.step ? step_cells(table, *r.step, unit) : std::vector<std::string>(kCells);
     add({r.input, "", "", ""}, cells, r.error);
   }
   return csv(grid);

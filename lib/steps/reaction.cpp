@@ -6,6 +6,7 @@
 #include <map>
 
 #include "halostep/structure.hpp"
+#include "reaction_check.hpp"
 #include "steps.hpp"
 
 namespace halostep {
@@ -19,26 +20,13 @@ int halogen_of(int z) {
   return p == std::end(kNumber) ? -1 : static_cast<int>(p - std::begin(kNumber));
 }
 
-std::map<int, int> composition(const std::vector<Molecule>& side) {
-  std::map<int, int> n;
+std::string side_smiles(const std::vector<Molecule>& side) {
+  std::string out;
   for (const auto& m : side) {
-    for (int i = 0; i < m.atom_count(); ++i) {
-      ++n[m.atom(i).element];
-      n[element::H] += m.atom(i).hydrogens;
-    }
+    if (!out.empty()) out += '.';
+    out += canonical_smiles(m);
   }
-  std::erase_if(n, [](const auto& e) { return e.second == 0; });
-  return n;
-}
-
-std::string imbalance(const std::map<int, int>& left, const std::map<int, int>& right) {
-  std::map<int, int> d = right;
-  for (const auto& [z, n] : left) d[z] -= n;
-  std::string text;
-  for (const auto& [z, n] : d) {
-    if (n != 0) text += fmt::format("{}{} {:+d}", text.empty() ? "" : ", ", element_symbol(z), n);
-  }
-  return text;
+  return out;
 }
 
 // The atom that holds the one free valence, or -1.
@@ -219,27 +207,30 @@ class StepBook::Hess {
 Result<StepAnswer> StepBook::reaction(std::string_view text, double temperature) const {
   auto parsed = parse_reaction(text);
   if (!parsed.ok()) return parsed.error();
-  const auto& r = parsed.value();
-  const auto left = composition(r.left), right = composition(r.right);
-  if (left != right) {
-    return Error{ErrorClass::unbalanced, fmt::format("the reaction does not balance: right minus left {}", imbalance(left, right)),
+  auto& r = parsed.value();
+  if (auto e = hydrogen_isotope(r)) return *e;
+  if (const auto off = imbalance(r); !off.empty()) {
+    return Error{ErrorClass::unbalanced, "the reaction does not balance: right minus left " + off,
                  fmt::format("'{}'", text)};
   }
-  std::vector<Species> all;
   StepAnswer out;
+  out.reaction = fmt::format("{}>>{}", side_smiles(r.left), side_smiles(r.right));
+  drop_labels(r.left);
+  drop_labels(r.right);
+  std::vector<Species> all;
   for (const auto* side : {&r.left, &r.right}) {
     for (const auto& m : *side) {
-      Species s{&m, canonical_smiles(m, false), canonical_smiles(m), side == &r.left ? -1.0 : 1.0, radical_atom(m)};
-      out.reaction += (out.reaction.empty() || out.reaction.ends_with(">>") ? "" : ".") + s.text;
-      all.push_back(std::move(s));
+      all.push_back({&m, canonical_smiles(m, false), canonical_smiles(m), side == &r.left ? -1.0 : 1.0, radical_atom(m)});
     }
-    if (side == &r.left) out.reaction += ">>";
   }
 
   Hess hess(*this, all);
   for (const auto& s : all) hess.add(s);
   const auto dh = hess.total(out.sources);
-  if (!dh.ok()) return Error{dh.error().cls, dh.error().message, fmt::format("'{}'", text)};
+  if (!dh.ok()) {
+    if (auto e = metal_of(r)) return *e;
+    return Error{dh.error().cls, dh.error().message, fmt::format("'{}'", text)};
+  }
   out.dh = dh.value();
   out.route = hess.route();
   ThermoSum sum;

@@ -188,19 +188,38 @@ Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
   return Molecule::from_graph(std::move(atoms), std::move(bonds), std::move(tetrahedral), std::move(doubles));
 }
 
-std::optional<Error> check_mode(const Molecule& m, ParseMode mode) {
-  const auto atom = [](int i) { return fmt::format("atom {}", i + 1); };
-  if (m.fragment_count() > 1) return Error{ErrorClass::fragments, fmt::format("{} separate parts where one molecule is meant", m.fragment_count()), {}};
-  for (int i = 0; i < m.atom_count() && mode == ParseMode::substrate; ++i) {
+std::optional<Error> uncovered_element(const Molecule& m) {
+  for (int i = 0; i < m.atom_count(); ++i) {
     const int z = m.atom(i).element;
     if (nonmetal(z)) continue;
     const bool noble = z == 2 || z == 10 || z == 18 || z == 36 || z == 54 || z == 86;
-    return Error{noble ? ErrorClass::domain : ErrorClass::metal, fmt::format("{} is {}: outside the domain", element_symbol(z), noble ? "a noble gas" : "a metal"), atom(i)};
+    return Error{noble ? ErrorClass::domain : ErrorClass::metal,
+                 fmt::format("{} is {}: outside the domain", element_symbol(z), noble ? "a noble gas" : "a metal"),
+                 fmt::format("atom {}", i + 1)};
   }
-  if (m.charge() != 0) return Error{ErrorClass::ion, fmt::format("an ion of charge {:+d} is outside the domain", m.charge()), {}};
+  return std::nullopt;
+}
+
+std::optional<Error> check_mode(const Molecule& m, ParseMode mode) {
+  const auto atom = [](int i) { return fmt::format("atom {}", i + 1); };
+  if (m.fragment_count() > 1) {
+    return Error{ErrorClass::fragments,
+                 fmt::format("{} separate parts where one molecule is meant", m.fragment_count()), {}};
+  }
+  if (mode == ParseMode::substrate) {
+    if (auto e = uncovered_element(m)) return e;
+  }
+  if (m.charge() != 0) {
+    int charged = 0;  // the first atom whose sign is that of the whole
+    while (m.atom(charged).charge * m.charge() <= 0) ++charged;
+    return Error{ErrorClass::ion, fmt::format("an ion of charge {:+d} is outside the domain", m.charge()),
+                 atom(charged)};
+  }
   if (mode == ParseMode::substrate) {
     for (int i = 0; i < m.atom_count(); ++i) {
-      if (m.atom(i).unpaired > 0) return Error{ErrorClass::radical, "a radical is no substrate; it may stand in a reaction", atom(i)};
+      if (m.atom(i).unpaired > 0) {
+        return Error{ErrorClass::radical, "a radical is no substrate; it may stand in a reaction", atom(i)};
+      }
     }
   }
   return std::nullopt;

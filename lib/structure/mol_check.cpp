@@ -130,6 +130,13 @@ class V2000 {
   std::set<std::pair<int, int>> pairs_;
 };
 
+// "V2000" at the end of the counts line; files from before there were versions have none.
+std::string_view version(std::string_view counts) {
+  const auto text = column(counts, 0, counts.size());
+  const auto word = text.substr(text.find_last_of(" \t") + 1);
+  return word.starts_with('V') || word.starts_with('v') ? word : std::string_view{};
+}
+
 }  // namespace
 
 MolRecord read_mol_record(const std::vector<std::string_view>& lines) {
@@ -139,10 +146,13 @@ MolRecord read_mol_record(const std::vector<std::string_view>& lines) {
   } else if (lines.size() < 4) {
     out.error = Error{ErrorClass::syntax, "the record ends before its counts line",
                       line_place(lines.empty() ? 0 : lines.size() - 1)};
-  } else if (lines[3].find("V3000") != std::string_view::npos) {
+  } else if (const auto v = version(lines[3]); v == "V3000") {
     read_v3000(lines, out);
-  } else {
+  } else if (v.empty() || v == "V2000") {
     V2000(lines, out).run();
+  } else {
+    out.error = Error{ErrorClass::syntax, fmt::format("version {} of the MOL format is not read: V2000 or V3000", v),
+                      line_place(3)};
   }
   return out;
 }

@@ -33,15 +33,15 @@ struct RecordText {
   bool blank = true;
 };
 
-// Reads a line without its end, at most `limit` bytes of it; false at the end of the stream.
+// Reads a line without its end (LF, CRLF or CR), at most `limit` bytes of it; false at the end of the stream.
 bool read_line(std::streambuf& in, std::string& line, std::size_t limit) {
   line.clear();
   int c = in.sbumpc();
   if (c == std::char_traits<char>::eof()) return false;
-  for (; c != std::char_traits<char>::eof() && c != '\n'; c = in.sbumpc()) {
+  for (; c != std::char_traits<char>::eof() && c != '\n' && c != '\r'; c = in.sbumpc()) {
     if (line.size() < limit) line.push_back(static_cast<char>(c));
   }
-  if (line.ends_with('\r')) line.pop_back();
+  if (c == '\r' && in.sgetc() == '\n') in.sbumpc();
   return true;
 }
 

@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cctype>
 #include <map>
+#include <utility>
 
 #include "halostep/molecule.hpp"
 
@@ -29,34 +30,52 @@ class Scanner {
   bool bracket();
   bool organic();
   bool ring(int number, std::size_t where);
-  bool atom(std::size_t where);
+  bool atom(std::size_t where, bool aromatic);
+  bool join(std::size_t bond, int a, int b);
   std::string_view t_;
   std::size_t i_ = 0;
   SmilesCheck out_;
-  int last_ = -1;                                   // atom the next bond starts from
-  std::size_t bond_at_ = std::string_view::npos;    // pending bond character
+  struct OpenRing {
+    std::size_t where = 0;
+    int atom = 0;
+    std::size_t bond_at = std::string_view::npos;
+  };
+  int last_ = -1;                                 // atom the next bond starts from
+  std::size_t bond_at_ = std::string_view::npos;  // pending bond character
+  std::vector<bool> aromatic_;                    // of each atom, as written
   std::vector<std::pair<std::size_t, int>> branches_;
-  std::map<int, std::pair<std::size_t, int>> open_;
+  std::map<int, OpenRing> open_;
 };
 
-bool Scanner::atom(std::size_t where) {
+// ':' joins two aromatic atoms (OpenSMILES 1.0, section 3.2.2; from memory).
+bool Scanner::join(std::size_t bond, int a, int b) {
+  if (at(bond) != ':' || (aromatic_[static_cast<std::size_t>(a)] && aromatic_[static_cast<std::size_t>(b)])) return true;
+  return fail(ErrorClass::aromaticity, "an aromatic bond ':' at an atom that is not written aromatic", bond);
+}
+
+bool Scanner::atom(std::size_t where, bool aromatic) {
+  const int before = last_;
   out_.atom_position.push_back(where);
+  aromatic_.push_back(aromatic);
   last_ = static_cast<int>(out_.atom_position.size()) - 1;
-  bond_at_ = std::string_view::npos;
-  return true;
+  const std::size_t bond = std::exchange(bond_at_, std::string_view::npos);
+  return before < 0 || join(bond, before, last_);
 }
 
 bool Scanner::ring(int number, std::size_t where) {
   if (last_ < 0) return fail(ErrorClass::syntax, "a ring number without an atom before it", where);
+  const std::size_t bond = std::exchange(bond_at_, std::string_view::npos);
   const auto it = open_.find(number);
   if (it == open_.end()) {
-    open_[number] = {where, last_};
-  } else {
-    if (it->second.second == last_) return fail(ErrorClass::syntax, fmt::format("ring {} closes on its own atom", number), where);
-    open_.erase(it);
+    open_[number] = {where, last_, bond};
+    return true;
   }
-  bond_at_ = std::string_view::npos;
-  return true;
+  const OpenRing opened = it->second;
+  open_.erase(it);
+  if (opened.atom == last_) {
+    return fail(ErrorClass::syntax, fmt::format("ring {} closes on its own atom", number), where);
+  }
+  return join(opened.bond_at, opened.atom, last_) && join(bond, opened.atom, last_);
 }
 
 bool Scanner::organic() {
@@ -65,11 +84,11 @@ bool Scanner::organic() {
   const std::size_t where = i_;
   if ((c == 'C' && at(i_ + 1) == 'l') || (c == 'B' && at(i_ + 1) == 'r')) {
     i_ += 2;
-    return atom(where);
+    return atom(where, false);
   }
   if (kOne.find(c) != std::string_view::npos) {
     ++i_;
-    return atom(where);
+    return atom(where, std::islower(static_cast<unsigned char>(c)) != 0);
   }
   if (std::isalpha(static_cast<unsigned char>(c))) {
     return fail(ErrorClass::element, fmt::format("'{}' is no element that may stand without brackets", c), where);
@@ -133,7 +152,7 @@ bool Scanner::bracket() {
     return fail(ErrorClass::syntax, fmt::format("unexpected character '{}' in a bracket", at(i_)), i_);
   }
   ++i_;
-  return atom(open);
+  return atom(open, aromatic);
 }
 
 bool Scanner::step() {
@@ -149,7 +168,12 @@ bool Scanner::step() {
   }
   if (c == '(') {
     if (last_ < 0) return fail(ErrorClass::syntax, "a branch without an atom before it", i_);
+    if (bond_at_ != std::string_view::npos) return fail(ErrorClass::syntax, "a bond that leads nowhere", bond_at_);
     if (at(i_ + 1) == ')') return fail(ErrorClass::syntax, "an empty branch", i_);
+    // A branch begins with an atom, a bond or a dot (OpenSMILES 1.0, section 2; from memory).
+    if (at(i_ + 1) == '(' || at(i_ + 1) == '%' || digit(at(i_ + 1))) {
+      return fail(ErrorClass::syntax, "a branch begins with an atom", i_ + 1);
+    }
     branches_.emplace_back(i_++, last_);
     return true;
   }
@@ -189,8 +213,9 @@ SmilesCheck Scanner::run() {
   if (bond_at_ != std::string_view::npos) fail(ErrorClass::syntax, "a bond that leads nowhere", bond_at_);
   if (!branches_.empty()) fail(ErrorClass::syntax, "a branch is not closed", branches_.back().first);
   if (!open_.empty()) {
-    const auto first = std::min_element(open_.begin(), open_.end(), [](const auto& a, const auto& b) { return a.second.first < b.second.first; });
-    fail(ErrorClass::syntax, fmt::format("ring {} is not closed", first->first), first->second.first);
+    const auto first = std::min_element(open_.begin(), open_.end(),
+                                        [](const auto& a, const auto& b) { return a.second.where < b.second.where; });
+    fail(ErrorClass::syntax, fmt::format("ring {} is not closed", first->first), first->second.where);
   }
   return std::move(out_);
 }

@@ -20,6 +20,7 @@ import io
 import json
 import os
 import pathlib
+import shlex
 import subprocess
 import sys
 import tempfile
@@ -215,6 +216,26 @@ def write_faults(command):
     return 1 if failures else 0
 
 
+def help_examples(command):
+    """Every example of every --help runs."""
+    helps = [[], ["bonds"], ["steps"], ["outcome"], ["table"], ["table", "rows"], ["table", "sources"],
+             ["table", "show"], ["table", "models"]]
+    failures = 0
+    for words in helps:
+        shown = subprocess.run([command, *words, "--help"], capture_output=True, check=False).stdout.decode()
+        examples = [line.split("Example: ", 1)[1] for line in shown.splitlines() if "Example: " in line]
+        if not examples:
+            print(f"FAIL {words}: no example in its help")
+            failures += 1
+        for example in examples:
+            name, *args = shlex.split(example)
+            r = subprocess.run([command, *args], capture_output=True, check=False)
+            if name != "halostep" or r.returncode != 0 or not r.stdout or r.stderr:
+                print(f"FAIL {example}: exit {r.returncode}, stderr {r.stderr.decode()[:200]!r}")
+                failures += 1
+    return 1 if failures else 0
+
+
 def self_test(command):
     """Each kind of check must notice a wrong expectation."""
     good = {"name": "version", "args": ["--version"], "exit": 0, "stdout": ["halostep"]}
@@ -241,9 +262,12 @@ def main():
     parser.add_argument("--decimal-comma", action="store_true")
     parser.add_argument("--write-faults", action="store_true")
     parser.add_argument("--self-test", action="store_true")
+    parser.add_argument("--help-examples", action="store_true")
     a = parser.parse_intermixed_args()
     if a.self_test:
         return self_test(a.command)
+    if a.help_examples:
+        return help_examples(a.command)
     if a.write_faults:
         return write_faults(a.command)
     return decimal_comma(a.command, a.cases) if a.decimal_comma else run_all(a.command, a.cases)

@@ -54,7 +54,12 @@ HalogenOutcome outcome_of(Halogen x, double dh, double share, double k) {
   s.dh = {dh, 1};
   s.share = s.share_low = s.share_high = share;
   s.k_cm3_s = k;
-  o.sites = {s};
+  SiteOutcome rest = s;
+  rest.atoms = {1};
+  rest.atom = 1;
+  rest.radical = "CC(C)[CH2]";
+  rest.share = rest.share_low = rest.share_high = 1 - share;
+  o.sites = {s, rest};
   return o;
 }
 
@@ -88,6 +93,34 @@ TEST(Phrases, ShareNeverReadsAsCertain) {
   EXPECT_EQ(percent(1 - 1e-9), ">99.999");
   EXPECT_EQ(percent(1e-9), "<0.001");
   EXPECT_EQ(percent(1.0), "100.0");
+}
+
+// JCGM 100:2008 (GUM), 7.2.6: the value is rounded to match its uncertainty.
+TEST(Phrases, UncertaintyNeverReadsAsZero) {
+  const auto text = [](double value, double u) {
+    const auto q = quantity_text({value, u}, 1);
+    return q.value + " u " + q.u;
+  };
+  EXPECT_EQ(text(439.34, 0.4), "439.3 u 0.4");
+  EXPECT_EQ(text(439.34, 12.34), "439.3 u 12.3");
+  EXPECT_EQ(text(435.998, 0.013), "436.00 u 0.01");
+  EXPECT_EQ(text(217.998, 0.0002), "217.9980 u 0.0002");
+  EXPECT_EQ(text(436.0, 0.05), "436.0 u 0.1");
+  EXPECT_EQ(text(436.0, 0.049), "436.00 u 0.05");
+  EXPECT_EQ(text(0, 0), "0.0 u 0.0");
+  EXPECT_EQ(energy_text(Quantity{436.0, 0.1}, EnergyUnit::kcal).u, "0.02");
+  EXPECT_EQ(energy_text(std::nullopt, EnergyUnit::kj).value, "-");
+  EXPECT_EQ(csv_energy(0.0002, EnergyUnit::kj), "0.00020");
+  EXPECT_EQ(csv_energy(439.3, EnergyUnit::kj), "439.300");
+}
+
+TEST(BondsReport, SmallUncertaintyIsShown) {
+  BondsRecord exact = methane();
+  exact.bonds[0].d298 = Quantity{435.998, 0.013};
+  EXPECT_THAT(bonds_text(small_table(), std::vector{exact}, {}), HasSubstr("436.00"));
+  Table t = small_table();
+  t.bond_rows[0].u = 0.004;
+  EXPECT_THAT(table_text(t, {TableView::show, RowKind::bonds, {0}}, EnergyUnit::kj), HasSubstr("439.300     0.004  1s"));
 }
 
 TEST(Phrases, ErrorIsOneLine) {
@@ -153,6 +186,27 @@ TEST(Compare, BromineBeatsChlorineOnShareAndFluorineOnHeat) {
   EXPECT_TRUE(c.value().rows[0].hazardous);
   EXPECT_FALSE(c.value().rows[3].propagates);
   EXPECT_THAT(c.value().why, HasSubstr("99.0 %"));
+}
+
+TEST(Compare, WordsOnlyWhatWasComputed) {
+  auto two = outcome_of(Halogen::Br, 37, 0.99, 1e-30);
+  const auto slow = compare_site(std::vector{two}, std::vector{net_of(Halogen::Br, -60)}, 0, "site").value();
+  EXPECT_THAT(slow.rows[0].verdict, HasSubstr("enthalpy allows a chain"));
+  EXPECT_THAT(slow.rows[0].verdict, HasSubstr("selective"));
+  // 1 / (1e-30 cm3/s * 6.022e20 cm-3) = 1.7e9 s
+  EXPECT_THAT(slow.rows[0].verdict, HasSubstr("slow: at 1 mol/L an atom needs 1.7e+09 s"));
+  EXPECT_THAT(slow.why, HasSubstr("; but slow"));
+  auto single = outcome_of(Halogen::Cl, -30, 1, 1e-11);
+  single.sites.pop_back();
+  const auto one = compare_site(std::vector{single}, std::vector{net_of(Halogen::Cl, -130)}, 0, "site").value();
+  EXPECT_EQ(one.rows[0].verdict, "enthalpy allows a chain; only C-H site");
+  EXPECT_THAT(one.why, HasSubstr("the only C-H site"));
+  EXPECT_THAT(one.why, Not(HasSubstr("100")));
+  const auto unknown = compare_site(std::vector{two}, {}, 0, "site").value();
+  EXPECT_THAT(unknown.rows[0].verdict, HasSubstr("net not known"));
+  two.sites[0].share_low = 0.7;
+  const auto wide = compare_site(std::vector{two}, {}, 0, "site").value();
+  EXPECT_THAT(wide.rows[0].verdict, Not(HasSubstr("selective"))) << "the range reaches down to 70 %";
 }
 
 TEST(Compare, EqualSharesGoToTheFaster) {

@@ -142,6 +142,12 @@ TEST(FreeStep, RefusalsHaveTheirClass) {
       {"C((>>C", ErrorClass::syntax},
       {"[Na+].[Cl-]>>[Na]Cl", ErrorClass::ion},
       {"CCCCCCCCCCCCCCCCCCCC>>CCCCCCCCCCC.C=CCCCCCCC", ErrorClass::no_data},
+      {"[Cl].[2H]C>>Cl[2H].[CH3]", ErrorClass::isotope},
+      {"[3H][3H]>>[3H].[3H]", ErrorClass::isotope},
+      {"[2H].[2H]>>[2H][2H]", ErrorClass::isotope},
+      {"C[Hg]C>>[CH3].C[Hg]", ErrorClass::metal},
+      {"[Xe].FF>>F[Xe]F", ErrorClass::domain},
+      {"[Cl].[13CH4]>>Cl.[CH3]", ErrorClass::unbalanced},
       {"CC>>*", ErrorClass::wildcard},
       {"C[CH6]>>C", ErrorClass::valence}};
   for (const auto& [text, cls] : cases) {
@@ -150,6 +156,22 @@ TEST(FreeStep, RefusalsHaveTheirClass) {
     EXPECT_STREQ(error_class_name(r.error().cls), error_class_name(cls)) << text << ": " << r.error().message;
     EXPECT_FALSE(r.error().message.empty());
   }
+}
+
+// Labels of heavy atoms take the figures of the natural mixture, as for substrates; the text keeps them.
+TEST(FreeStep, HeavyLabelsTakeTheNaturalFigures) {
+  const auto labelled = reaction("[Cl].C[13CH3]>>Cl.C[13CH2]"), natural = reaction("[Cl].CC>>Cl.C[CH2]");
+  ASSERT_TRUE(labelled.dh && natural.dh);
+  EXPECT_EQ(labelled.dh->value, natural.dh->value);
+  EXPECT_EQ(labelled.dh->u, natural.dh->u);
+  EXPECT_THAT(labelled.reaction, HasSubstr("13C"));
+  ASSERT_TRUE(natural.ea);
+  EXPECT_TRUE(labelled.ea);
+}
+
+// The table holds a tin hydride, so its bond is answered although tin is no element of the substrates.
+TEST(FreeStep, MetalsAreAnsweredWhereTheTableHoldsThem) {
+  EXPECT_TRUE(reaction("C[SnH](C)C>>[H].C[Sn](C)C").dh);
 }
 
 // The class of steps without a rate model says so; an abstraction and its reverse have one.

@@ -32,7 +32,8 @@ TEST(Refused, Open) {
                   {"C1CC2CC1", syntax, "position 5 in 'C1CC2CC1'"},
                   {"CC%12CC", syntax, "position 3 in 'CC%12CC'"},
                   {"C(", syntax, "position 2 in 'C('"},
-                  {"C(((((", syntax, "position 6 in 'C((((('"},
+                  {"C(((((", syntax, "position 3 in 'C((((('"},
+                  {"C(C(C(", syntax, "position 6 in 'C(C(C('"},
                   {"CC(C(C)C", syntax, "position 3 in 'CC(C(C)C'"},
                   {"CC)C", syntax, "position 3 in 'CC)C'"},
                   {"C[CH2", syntax, "position 2 in 'C[CH2'"},
@@ -48,6 +49,10 @@ TEST(Refused, Characters) {
                   {"(CC)C", syntax, "position 1 in '(CC)C'"},
                   {"1CC1", syntax, "position 1 in '1CC1'"},
                   {"C11", syntax, "position 3 in 'C11'"},
+                  {"CC((C))", syntax, "position 4 in 'CC((C))'"},
+                  {"CC((C)C)C", syntax, "position 4 in 'CC((C)C)C'"},
+                  {"C(1CC1)C", syntax, "position 3 in 'C(1CC1)C'"},
+                  {"CC=(C)C", syntax, "position 3 in 'CC=(C)C'"},
                   {"C%1CC%1", syntax, "position 2 in 'C%1CC%1'"},
                   {"CC!C", syntax, "position 3 in 'CC!C'"},
                   {"C[CH3;2]", syntax, "position 6 in 'C[CH3;2]'"},
@@ -70,7 +75,13 @@ TEST(Refused, Valence) {
 TEST(Refused, Aromaticity) {
   expect_refused({{"c1cccc1", aromaticity, "position 1 in 'c1cccc1'"},
                   {"n1cccc1", aromaticity, "position 1 in 'n1cccc1'"},
-                  {"Cc1ccccc1c", aromaticity, "position 2 in 'Cc1ccccc1c'"}});
+                  {"Cc1ccccc1c", aromaticity, "position 2 in 'Cc1ccccc1c'"},
+                  {"C:C", aromaticity, "position 2 in 'C:C'"},
+                  {"C1:C:C:C:C:C1", aromaticity, "position 3 in 'C1:C:C:C:C:C1'"},
+                  {"C:1CCCCC1", aromaticity, "position 2 in 'C:1CCCCC1'"},
+                  {"C1CCCCC:1", aromaticity, "position 8 in 'C1CCCCC:1'"},
+                  {"Cc1ccccc1:C", aromaticity, "position 10 in 'Cc1ccccc1:C'"}});
+  EXPECT_EQ(same_as("c:1:c:c:c:c:c1"), same_as("c1ccccc1"));
 }
 
 TEST(Refused, Charge) {
@@ -104,7 +115,11 @@ TEST(Refused, PartsAndIons) {
                   {"[Na+].[Cl-]", fragments, "position 6 in '[Na+].[Cl-]'"},
                   {"[NH4+]", ion, "position 1 in '[NH4+]'"},
                   {"[OH-]", ion, "position 1 in '[OH-]'"},
-                  {"[CH3+]", ion, "position 1 in '[CH3+]'"}});
+                  {"[CH3+]", ion, "position 1 in '[CH3+]'"},
+                  {"CC[NH3+]", ion, "position 3 in 'CC[NH3+]'"},
+                  {"[O-]C(=O)C[N+](=O)[O-]", ion, "position 1 in '[O-]C(=O)C[N+](=O)[O-]'"},
+                  {"C[N+](=O)[O-].", syntax, "position 14 in 'C[N+](=O)[O-].'"},
+                  {"O=[N+]([O-])CCC(=O)[O-]", ion, "position 8 in 'O=[N+]([O-])CCC(=O)[O-]'"}});
 }
 
 TEST(Parse, LongTextIsShownAroundThePlace) {

@@ -105,6 +105,37 @@ TEST(Sdf, CrlfReadsTheSame) {
   }
 }
 
+// Old Macintosh files end their lines with CR alone.
+TEST(Sdf, CrAloneReadsTheSame) {
+  const std::string text = methane() + kEnd + "broken\n\n\n xx\n" + kEnd + v2000("x", {{"C"}, {"Cl", 1}}, {{1, 2}});
+  std::string with_cr = text;
+  std::replace(with_cr.begin(), with_cr.end(), '\n', '\r');
+  const auto all = read_all(with_cr);
+  ASSERT_EQ(all.size(), 3U);
+  EXPECT_EQ(all[0].title, "methane");
+  ASSERT_TRUE(all[0].molecule.ok());
+  EXPECT_EQ(formula(all[0].molecule.value()), "CH4");
+  ASSERT_FALSE(all[1].molecule.ok());
+  EXPECT_EQ(all[1].molecule.error().place, "record 2, line 4");
+  ASSERT_TRUE(all[2].molecule.ok());
+  EXPECT_EQ(canonical_smiles(all[2].molecule.value()), same_as("CCl"));
+}
+
+TEST(Sdf, VersionsThatAreNotReadAreRefused) {
+  const auto good = v2000("x", {{"C"}, {"C", 1}}, {{1, 2}});
+  for (const char* version : {"V9000", "V4000", "V300", "v2000", "V20000"}) {
+    expect_refused(replaced(good, "V2000", version), ErrorClass::syntax, "record 2, line 4");
+    const auto all = read_all(replaced(good, "V2000", version));
+    ASSERT_EQ(all.size(), 1U);
+    EXPECT_NE(all[0].molecule.error().message.find(version), std::string::npos) << all[0].molecule.error().message;
+  }
+  EXPECT_EQ(smiles_of(replaced(good, " V2000", "")), same_as("CC"));  // from before there were versions
+}
+
+TEST(Sdf, IonsArePlacedAtTheirAtom) {
+  expect_refused(v2000("x", {{"C"}, {"N", 1}}, {{1, 2}}, "M  CHG  1   2   1\n"), ErrorClass::ion, "record 2, line 6");
+}
+
 TEST(Sdf, EndOfStream) {
   EXPECT_EQ(read_all("").size(), 0U);
   EXPECT_EQ(read_all("\n \n").size(), 0U);
@@ -185,7 +216,7 @@ TEST(Sdf, SameChecksAsForSmiles) {
       ErrorClass::aromaticity, "record 2");
   expect_refused(v2000("x", {{"C"}, {"O"}}, {}), ErrorClass::fragments, "record 2");
   expect_refused(v2000("x", {{"C"}, {"Hg"}, {"C"}}, {{1, 2}, {2, 3}}), ErrorClass::metal, "record 2, line 6");
-  expect_refused(v2000("x", {{"N"}}, {}, "M  CHG  1   1   1\n"), ErrorClass::ion, "record 2");
+  expect_refused(v2000("x", {{"N"}}, {}, "M  CHG  1   1   1\n"), ErrorClass::ion, "record 2, line 5");
   expect_refused(v2000("x", {{"C"}}, {}, "M  CHG  1   1   9\n"), ErrorClass::charge, "record 2, line 6");
 }
 
@@ -315,7 +346,7 @@ TEST(Sdf, MoreThan999Atoms) {
   EXPECT_EQ(smiles_of(chain("C", "RAD=2", 1), ParseMode::species), same_as("[CH2]" + tail));
   EXPECT_EQ(smiles_of(chain("C", "MASS=13", 1)), same_as("[13CH3]" + tail));
   EXPECT_EQ(smiles_of(chain("O", "VAL=2", 1)), same_as("O" + tail));
-  expect_refused(chain("N", "CHG=1", 1), ErrorClass::ion, "record 2");
+  expect_refused(chain("N", "CHG=1", 1), ErrorClass::ion, "record 2, line 8");
   expect_refused(chain("C", "", 4), ErrorClass::aromaticity, "record 2");
 }
 
@@ -332,7 +363,7 @@ TEST(Sdf, CodesOnAtomLines) {
   EXPECT_EQ(smiles_of(coded("H", " 1  0")), same_as("[2H]C"));
   EXPECT_EQ(smiles_of(coded("C", " 1  0", "M  ISO  1   2  14\n")), same_as("C[14CH3]"));
   EXPECT_EQ(smiles_of(coded("C", " 0  3", "M  CHG  1   2   0\n")), same_as("CC"));
-  expect_refused(coded("O", " 0  5"), ErrorClass::ion, "record 2");
+  expect_refused(coded("O", " 0  5"), ErrorClass::ion, "record 2, line 6");
   expect_refused(coded("O", " x  0"), ErrorClass::syntax, "record 2, line 6");
 }
 

@@ -18,6 +18,12 @@ CLI::Option* repeatable(CLI::App& app, const std::string& name, std::vector<std:
       ->multi_option_policy(CLI::MultiOptionPolicy::TakeAll);
 }
 
+std::string_view trimmed(std::string_view text) {
+  while (!text.empty() && text.front() == ' ') text.remove_prefix(1);
+  while (!text.empty() && text.back() == ' ') text.remove_suffix(1);
+  return text;
+}
+
 /// "25C,127C" counts as two.
 std::vector<std::string> split_commas(const std::vector<std::string>& texts) {
   std::vector<std::string> out;
@@ -25,7 +31,7 @@ std::vector<std::string> split_commas(const std::vector<std::string>& texts) {
     std::size_t from = 0;
     while (true) {
       const std::size_t comma = text.find(',', from);
-      out.push_back(text.substr(from, comma - from));
+      out.emplace_back(trimmed(std::string_view(text).substr(from, comma - from)));
       if (comma == std::string::npos) break;
       from = comma + 1;
     }
@@ -66,7 +72,8 @@ void add_common(CLI::App& app, Options& o) {
   app.add_option("--format", o.format, "text, json or csv")->capture_default_str();
   app.add_option("--units", o.units, "kj or kcal per mole, in text and csv; JSON keys name their unit")
       ->capture_default_str();
-  app.add_option("--table", o.table, "use this table instead of the built-in one");
+  app.add_option("--table", o.table, "use this table instead of the built-in one")
+      ->check([](const std::string& path) { return std::string(path.empty() ? "a path is needed" : ""); });
 }
 
 void add_input(CLI::App& app, Options& o) {
@@ -82,7 +89,7 @@ void add_halogens(CLI::App& app, Options& o) {
 }
 
 void add_temperatures(CLI::App& app, Options& o) {
-  repeatable(app, "--temperature", o.temperatures, "with its unit: 25C, 298.15K (repeatable; default 298.15K)");
+  repeatable(app, "--temperature", o.temperatures, "number with unit C or K: 25C, '25 °C', 298.15K (repeatable; default 298.15K)");
 }
 
 Result<Settings> check(const Options& o) {
@@ -106,9 +113,14 @@ Result<Settings> check(const Options& o) {
     if (std::find(s.halogens.begin(), s.halogens.end(), x.value()) == s.halogens.end()) s.halogens.push_back(x.value());
   }
   if (o.halogens.empty()) s.halogens.assign(std::begin(kAllHalogens), std::end(kAllHalogens));
-  for (const auto& text : split_commas(o.temperatures)) {
+  const auto texts = split_commas(o.temperatures);
+  for (const auto& text : texts) {
     const auto t = parse_temperature(text);
-    if (!t.ok()) return Error{ErrorClass::usage, t.error().message, "--temperature"};
+    if (!t.ok()) {
+      const bool commas = texts.size() > o.temperatures.size();
+      const char* hint = commas ? "; a comma separates temperatures, the decimal point is '.'" : "";
+      return Error{ErrorClass::usage, t.error().message + hint, "--temperature"};
+    }
     if (std::find(s.temperatures.begin(), s.temperatures.end(), t.value()) == s.temperatures.end()) {
       s.temperatures.push_back(t.value());
     }
@@ -117,9 +129,15 @@ Result<Settings> check(const Options& o) {
   return s;
 }
 
-Result<std::vector<std::string>> positionals(const CLI::App& app) {
+Result<std::vector<std::string>> positionals(const CLI::App& app, const Options& o) {
   std::vector<std::string> rest = app.remaining();
   for (const auto& text : rest) {
+    if (!o.halogens.empty() && parse_halogen(text).ok()) {
+      return Error{ErrorClass::usage,
+                   fmt::format("'{0}' stands where a substrate is meant; write --halogen {1} --halogen {0}", text,
+                               o.halogens.back()),
+                   "command line"};
+    }
     if (text.size() > 1 && text.front() == '-') {
       return Error{ErrorClass::usage, fmt::format("unknown option '{}'", text), "command line"};
     }

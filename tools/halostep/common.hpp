@@ -48,8 +48,9 @@ void add_halogens(CLI::App& app, Options& options);
 void add_temperatures(CLI::App& app, Options& options);
 
 Result<Settings> check(const Options& options);
-/// Arguments left over by the option parser are the substrates; an unknown option among them is an error.
-Result<std::vector<std::string>> positionals(const CLI::App& app);
+/// Arguments left over by the option parser are the substrates; an unknown option or a stray halogen among them is an
+/// error.
+Result<std::vector<std::string>> positionals(const CLI::App& app, const Options& options);
 /// Reads every substrate. Text with '>>' becomes a reaction if `reactions`, else a refusal of class reaction.
 Result<std::vector<Input>> read_inputs(const CLI::App& app, const Options& options, bool reactions);
 

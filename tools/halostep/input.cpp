@@ -55,16 +55,23 @@ Input from_text(std::string_view text, std::string place, bool reactions) {
   return input;
 }
 
+/// Takes the first line off the text; it ends with LF, CRLF or CR.
+std::string_view take_line(std::string_view& text) {
+  const std::size_t end = std::min(text.find_first_of("\r\n"), text.size());
+  const std::string_view line = text.substr(0, end);
+  text.remove_prefix(end);
+  text.remove_prefix(text.substr(0, 2) == "\r\n" ? 2 : text.empty() ? 0 : 1);
+  return line;
+}
+
 /// Lines of SMILES; blank lines and lines that start with '#' are passed over.
 void read_lines(std::string_view text, const std::string& from, bool reactions, std::vector<Input>& out) {
   if (text.substr(0, 3) == "\xEF\xBB\xBF") text.remove_prefix(3);
   int number = 0;
   while (!text.empty()) {
-    const std::size_t end = std::min(text.find('\n'), text.size());
-    std::string_view line = text.substr(0, end);
-    text.remove_prefix(std::min(end + 1, text.size()));
+    std::string_view line = take_line(text);
     ++number;
-    while (!line.empty() && (line.back() == '\r' || line.back() == ' ' || line.back() == '\t')) line.remove_suffix(1);
+    while (!line.empty() && (line.back() == ' ' || line.back() == '\t')) line.remove_suffix(1);
     const std::size_t first = line.find_first_not_of(" \t");
     if (first == std::string_view::npos || line[first] == '#') continue;
     out.push_back(from_text(line, fmt::format("{}, line {}", from, number), reactions));
@@ -97,12 +104,13 @@ bool has_suffix(const std::string& name, std::string_view suffix) {
 
 bool looks_like_sdf(const std::string& name, const std::string& text) {
   if (has_suffix(name, ".sdf") || has_suffix(name, ".mol") || has_suffix(name, ".sd")) return true;
-  return name == "-" && (text.find("M  END") != std::string::npos || text.find("\n$$$$") != std::string::npos);
+  return name == "-" && (text.find("M  END") != std::string::npos || text.find("\n$$$$") != std::string::npos ||
+                         text.find("\r$$$$") != std::string::npos);
 }
 
 Input unread_file(const std::string& name, ErrorClass cls, std::string message) {
   Input input;
-  input.head.input = input.place = name == "-" ? "standard input" : name;
+  input.head.input = input.place = name == "-" ? "standard input" : name.empty() ? "--file ''" : name;
   input.head.error = Error{cls, std::move(message), {}};
   return input;
 }
@@ -124,6 +132,10 @@ void read_file(const std::string& name, bool reactions, std::vector<Input>& out)
       return;
     }
   }
+  if (text.find('\0') != std::string::npos) {
+    out.push_back(unread_file(name, ErrorClass::io, "not a text file: it holds zero bytes"));
+    return;
+  }
   const std::size_t before = out.size();
   const std::string from = name == "-" ? "standard input" : name;
   if (looks_like_sdf(name, text)) {
@@ -137,7 +149,7 @@ void read_file(const std::string& name, bool reactions, std::vector<Input>& out)
 }  // namespace
 
 Result<std::vector<Input>> read_inputs(const CLI::App& app, const Options& options, bool reactions) {
-  const auto arguments = positionals(app);
+  const auto arguments = positionals(app, options);
   if (!arguments.ok()) return arguments.error();
   if (std::count(arguments.value().begin(), arguments.value().end(), "-") +
           std::count(options.files.begin(), options.files.end(), "-") >

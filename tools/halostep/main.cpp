@@ -1,8 +1,12 @@
 // The command: parses the command line and hands over to one file per sub-command.
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <csignal>
 #include <cstdio>
+#include <optional>
+#include <string>
+#include <vector>
 
 #include "common.hpp"
 
@@ -27,14 +31,40 @@ int print_version() {
                    kAnswered);
 }
 
+/// What an argument that no option and no command takes was meant to be.
+std::optional<std::string> unexpected(const CLI::App& app, const CLI::ParseError& e) {
+  if (dynamic_cast<const CLI::ExtrasError*>(&e) == nullptr) return std::nullopt;
+  const auto rest = app.remaining(true);
+  if (rest.empty()) return std::nullopt;
+  const auto option = std::find_if(rest.begin(), rest.end(), [](const std::string& s) { return s.starts_with('-'); });
+  if (option != rest.end()) return fmt::format("unknown option '{}' here", *option);
+  if (app.get_subcommands().empty()) {
+    return fmt::format("unknown command '{}'; bonds, steps, outcome or table (halostep --help)", rest.front());
+  }
+  const auto* table = app.get_subcommands().front();
+  if (table->get_subcommands().empty()) {
+    return fmt::format("unknown view '{}'; rows, sources, show or models (halostep table --help)", rest.front());
+  }
+  return fmt::format("'{}' is one argument too many (halostep table {} --help)", rest.front(),
+                     table->get_subcommands().front()->get_name());
+}
+
 int parse_failed(const CLI::App& app, const CLI::ParseError& e) {
   if (dynamic_cast<const CLI::CallForHelp*>(&e) != nullptr) {
     const CLI::App* shown = &app;  // the innermost sub-command named
     while (!shown->get_subcommands().empty()) shown = shown->get_subcommands().front();
     return write_out(shown->help(), kAnswered);
   }
-  complain({ErrorClass::usage, e.what(), "command line"});
+  complain({ErrorClass::usage, unexpected(app, e).value_or(e.what()), "command line"});
   return kUsage;
+}
+
+/// A SMILES never begins with '-', so the "--" that ends the options of other programs has nothing to protect.
+std::vector<std::string> arguments(int argc, char** argv) {
+  std::vector<std::string> out(argv + 1, argv + argc);
+  std::erase(out, "--");
+  std::reverse(out.begin(), out.end());  // the order CLI11 wants
+  return out;
 }
 
 int run(int argc, char** argv) {
@@ -53,7 +83,7 @@ int run(int argc, char** argv) {
   add_outcome(app, exit_code);
   add_table(app, exit_code);
   try {
-    app.parse(argc, argv);
+    app.parse(arguments(argc, argv));
   } catch (const CLI::ParseError& e) {
     return parse_failed(app, e);
   }

@@ -109,10 +109,17 @@ struct SiteOutcome {
   std::string why_extrapolated;
 };
 
+/// A C-H site without a rate; the shares leave it out.
+struct RefusedSite {
+  int h_count = 0;
+  std::string radical, type, why;
+};
+
 struct HalogenOutcome {
   Halogen halogen = Halogen::Cl;
   double temperature = kReferenceTemperature;
   std::vector<SiteOutcome> sites;    // as the bonds, in order of first atom
+  std::vector<RefusedSite> refused;  // C-H sites outside the domain
   std::vector<Selectivity> selectivity;  // largest site against each other site
   double k_total = 0;                // cm3 molecule-1 s-1, C-H sites
   std::optional<Quantity> slope;     // fitted straight Evans-Polanyi slope alpha; absent with fewer than three rates

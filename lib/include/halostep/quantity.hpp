@@ -34,8 +34,9 @@ const char* energy_unit_name(EnergyUnit unit) noexcept;
 /// Errors: syntax (not a number, trailing text, not finite).
 Result<double> parse_number(std::string_view text);
 
-/// Reads "25C", "298.15K", "298.15" (K); blanks before the unit are allowed. Result in K.
-/// Errors: usage (no number, unknown unit, not within 100 K to 2000 K).
+/// Reads "25C", "25 c", "25 °C", "298.15K": a number and its unit, C or K in either case, with or without a degree
+/// sign and blanks. Result in K. Errors: usage (no number, no unit or an unknown one, below 0 K, not within 100 K to
+/// 2000 K).
 Result<double> parse_temperature(std::string_view text);
 
 /// Fixed notation with `decimals` digits; "-0.0" is written "0.0". Independent of the locale.

@@ -33,6 +33,9 @@ struct ReactionText {
 /// Errors: reaction (no '>>', empty side), and those of parse_smiles in mode species.
 Result<ReactionText> parse_reaction(std::string_view text);
 
+/// The first atom of an element outside the domain; class metal, or domain for a noble gas; placed "atom 3".
+std::optional<Error> uncovered_element(const Molecule& m);
+
 /// One record of an SDF or MOL file: a molecule or why it was refused, with its number (1-based) and title.
 struct SdfRecord {
   int number = 0;
@@ -41,7 +44,7 @@ struct SdfRecord {
 };
 /// Longest record of an SDF or MOL file, bytes; a longer one becomes an error record of class too_long.
 inline constexpr std::size_t kMaxRecordText = 16 * kMaxStructureText;
-/// Reads V2000/V3000 MOL and multi-record SDF from a stream; LF or CRLF. A broken record becomes an
+/// Reads V2000/V3000 MOL and multi-record SDF from a stream; LF, CRLF or CR. A broken record becomes an
 /// error record, placed "record 3, line 7" (the title is line 1), and reading goes on after its "$$$$" line.
 class SdfReader {
  public:
