@@ -102,33 +102,74 @@ Substituent kind_of(const Molecule& m, int i, Hybrid h) {
   }
 }
 
-// Smallest ring through `start`, by breadth-first search over ring bonds up to size 8; 9 for larger.
-int smallest_ring(const Molecule& m, int start, std::vector<int>& depth, std::vector<int>& branch) {
-  int best = 9;
-  std::vector<int> queue{start};
-  std::vector<int> touched{start};
-  depth[static_cast<std::size_t>(start)] = 0;
-  branch[static_cast<std::size_t>(start)] = -1;
-  for (std::size_t head = 0; head < queue.size(); ++head) {
-    const int u = queue[head];
-    const int du = depth[static_cast<std::size_t>(u)];
-    if (2 * du + 1 >= best) break;
-    for (const auto& n : m.neighbours(u)) {
-      if (!m.bond(n.bond).in_ring) continue;
-      const auto v = static_cast<std::size_t>(n.atom);
-      if (depth[v] < 0) {
-        depth[v] = du + 1;
-        branch[v] = u == start ? n.atom : branch[static_cast<std::size_t>(u)];
-        queue.push_back(n.atom);
-        touched.push_back(n.atom);
-      } else if (u != start && n.atom != start && branch[v] != branch[static_cast<std::size_t>(u)]) {
-        best = std::min(best, du + depth[v] + 1);
-      }
+constexpr int kLargestRing = 8;  // larger ones are told apart no further
+
+// Sizes of the smallest ring through each ring atom, kLargestRing + 1 for larger ones.
+class RingSizes {
+ public:
+  RingSizes(const Molecule& m, std::vector<AtomInfo>& info) : m_(m), info_(info) {}
+  void run() {
+    for (int i = 0; i < m_.atom_count(); ++i) {
+      if (!m_.atom(i).in_ring || at(i).ring != 0) continue;
+      if (!lone_ring(i)) at(i).ring = static_cast<std::int8_t>(search(i));
     }
   }
-  for (const int t : touched) depth[static_cast<std::size_t>(t)] = -1;
-  return best;
-}
+
+ private:
+  [[nodiscard]] AtomInfo& at(int i) const { return info_[static_cast<std::size_t>(i)]; }
+
+  // A ring that shares no atom is walked round once for all its atoms.
+  bool lone_ring(int start) {
+    queue_.clear();
+    int atom = start, from = -1;
+    do {
+      if (at(atom).ring_bonds != 2 || queue_.size() == kLargestRing) return false;
+      queue_.push_back(atom);
+      const auto near = m_.neighbours(atom);
+      const auto next = std::find_if(near.begin(), near.end(),
+                                     [&](const Neighbour& n) { return n.bond != from && m_.bond(n.bond).in_ring; });
+      from = next->bond;
+      atom = next->atom;
+    } while (atom != start);
+    for (const int a : queue_) at(a).ring = static_cast<std::int8_t>(queue_.size());
+    return true;
+  }
+
+  // Breadth first over ring bonds.
+  int search(int start) {
+    const auto n = static_cast<std::size_t>(m_.atom_count());
+    if (depth_.empty()) {
+      depth_.assign(n, -1);
+      branch_.resize(n);
+    }
+    int best = kLargestRing + 1;
+    queue_.assign(1, start);
+    depth_[static_cast<std::size_t>(start)] = 0;
+    branch_[static_cast<std::size_t>(start)] = -1;
+    for (std::size_t head = 0; head < queue_.size(); ++head) {
+      const int u = queue_[head];
+      const int du = depth_[static_cast<std::size_t>(u)];
+      if (2 * du + 1 >= best) break;
+      for (const auto& b : m_.neighbours(u)) {
+        if (!m_.bond(b.bond).in_ring) continue;
+        const auto v = static_cast<std::size_t>(b.atom);
+        if (depth_[v] < 0) {
+          depth_[v] = du + 1;
+          branch_[v] = u == start ? b.atom : branch_[static_cast<std::size_t>(u)];
+          queue_.push_back(b.atom);
+        } else if (u != start && b.atom != start && branch_[v] != branch_[static_cast<std::size_t>(u)]) {
+          best = std::min(best, du + depth_[v] + 1);
+        }
+      }
+    }
+    for (const int t : queue_) depth_[static_cast<std::size_t>(t)] = -1;
+    return best;
+  }
+
+  const Molecule& m_;
+  std::vector<AtomInfo>& info_;
+  std::vector<int> queue_, depth_, branch_;
+};
 
 }  // namespace
 
@@ -137,17 +178,15 @@ const char* substituent_name(Substituent s) noexcept { return kNames[static_cast
 std::vector<AtomInfo> environment(const Molecule& m) {
   const auto n = static_cast<std::size_t>(m.atom_count());
   std::vector<AtomInfo> info(n);
-  std::vector<int> depth(n, -1), branch(n, -1);
   for (int i = 0; i < m.atom_count(); ++i) {
     auto& a = info[static_cast<std::size_t>(i)];
     a.hybrid = hybrid_of(m, i);
     a.kind = kind_of(m, i, a.hybrid);
     a.carbonyl = m.atom(i).element == element::C && double_to(m, i, element::O);
-    if (m.atom(i).in_ring) {
-      a.ring = static_cast<std::int8_t>(smallest_ring(m, i, depth, branch));
-      for (const auto& nb : m.neighbours(i)) a.ring_bonds = static_cast<std::int8_t>(a.ring_bonds + m.bond(nb.bond).in_ring);
-    }
+    if (!m.atom(i).in_ring) continue;
+    for (const auto& nb : m.neighbours(i)) a.ring_bonds = static_cast<std::int8_t>(a.ring_bonds + m.bond(nb.bond).in_ring);
   }
+  if (m.ring_count() > 0) RingSizes(m, info).run();
   return info;
 }
 

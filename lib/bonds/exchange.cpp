@@ -96,6 +96,7 @@ std::vector<FeatureCount> exchange_features(const Molecule& m, const std::vector
   if (n[x_acyl] + n[x_vinyl] + n[x_aryl] + n[x_alkynyl] > 0) unsaturated(m, info, i, n);
   else saturated(m, info, i, n);
   std::vector<FeatureCount> out;
+  out.reserve(8);
   for (int f = 0; f < x_total; ++f) {
     if (n[static_cast<std::size_t>(f)] != 0) out.push_back({f, n[static_cast<std::size_t>(f)]});
   }

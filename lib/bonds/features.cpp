@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <array>
+#include <bit>
 
 namespace halostep {
 namespace {
@@ -90,7 +91,12 @@ class Builder {
 
  private:
   const AtomInfo& at(int i) const { return info_[static_cast<std::size_t>(i)]; }
-  void add(int f, double n = 1.0) { if (n != 0.0) counts_[static_cast<std::size_t>(f)] += n; }
+  void add(int f, double n = 1.0) {
+    if (n == 0.0) return;
+    const auto k = static_cast<std::size_t>(f);
+    counts_[k] += n;
+    used_[k / 64] |= std::uint64_t{1} << k % 64;
+  }
   void refuse(const char* why) { if (out_.not_covered == nullptr) out_.not_covered = why; }
   void sp3();
   void pairs();
@@ -111,6 +117,7 @@ class Builder {
   int c_;
   SiteFeatures out_;
   std::array<double, feature_total> counts_{};
+  std::array<std::uint64_t, feature_total / 64 + 1> used_{};  // bit f: counts_[f] was touched
   std::array<int, kSubstituentKinds> kinds_{};
 };
 
@@ -411,8 +418,12 @@ SiteFeatures Builder::build() {
     case element::Si: silicon(); break;
     default: refuse("an X-H bond of this element");
   }
-  for (int f = 0; f < feature_total; ++f) {
-    if (counts_[static_cast<std::size_t>(f)] != 0.0) out_.features.push_back({f, counts_[static_cast<std::size_t>(f)]});
+  out_.features.reserve(8);
+  for (std::size_t w = 0; w < used_.size(); ++w) {
+    for (auto bits = used_[w]; bits != 0; bits &= bits - 1) {
+      const std::size_t f = 64 * w + static_cast<std::size_t>(std::countr_zero(bits));
+      if (counts_[f] != 0.0) out_.features.push_back({static_cast<int>(f), counts_[f]});
+    }
   }
   return std::move(out_);
 }

@@ -1,6 +1,7 @@
 #include "rates.hpp"
 
 #include <algorithm>
+#include <bit>
 #include <cmath>
 
 #include "../bonds/bond_model.hpp"
@@ -39,12 +40,22 @@ RateBook::RateBook(const Table& table) : models_(4) {
 double RateBook::variance(int x, const RateGradient& g) const {
   const auto& c = models_[static_cast<std::size_t>(x)];
   const std::size_t n = c.p.size();
+  const auto row = [&](std::size_t i) { return c.covariance.data() + static_cast<std::size_t>(g.parameters[i].parameter) * n; };
   double sum = 0;
-  for (const auto& a : g.parameters) {
-    const double* row = c.covariance.data() + static_cast<std::size_t>(a.parameter) * n;
+  std::size_t i = 0;
+  // Four rows at once: one sum alone waits for its own last addition.
+  for (; i + 4 <= g.parameters.size(); i += 4) {
+    const double* const rows[4] = {row(i), row(i + 1), row(i + 2), row(i + 3)};
+    double inner[4] = {};
+    for (const auto& b : g.parameters) {
+      for (std::size_t k = 0; k < 4; ++k) inner[k] += b.value * rows[k][b.parameter];
+    }
+    for (std::size_t k = 0; k < 4; ++k) sum += g.parameters[i + k].value * inner[k];
+  }
+  for (; i < g.parameters.size(); ++i) {
     double inner = 0;
-    for (const auto& b : g.parameters) inner += b.value * row[b.parameter];
-    sum += a.value * inner;
+    for (const auto& b : g.parameters) inner += b.value * row(i)[b.parameter];
+    sum += g.parameters[i].value * inner;
   }
   return sum;
 }
@@ -65,7 +76,8 @@ const char* RateBook::thin(int x, const RateSite& s) const {
   const auto& c = models_[static_cast<std::size_t>(x)];
   const auto few = [&](int i) { return c.support[static_cast<std::size_t>(i)] < 2; };
   if (const int k = static_cast<int>(s.a_class); k > 0 && few(kp::a_class + k - 1)) return "no measured rate for this class of C-H";
-  for (int g = 0; g < kPolarGroups; ++g) {
+  for (auto left = s.present; left != 0; left &= left - 1) {
+    const int g = std::countr_zero(left);
     const auto& n = s.count[static_cast<std::size_t>(g)];
     if ((n[0] && few(kp::polar_alpha + g)) ||
         (std::any_of(n.begin() + 1, n.end(), [](int q) { return q > 0; }) && few(kp::polar_beyond + g))) {

@@ -1,6 +1,7 @@
 #include "site.hpp"
 
 #include <algorithm>
+#include <bit>
 
 namespace halostep {
 namespace {
@@ -84,8 +85,8 @@ const char* polar_group_name(PolarGroup g) noexcept { return kGroupNames[static_
 
 double scatter_share(const RateSite& s) noexcept {
   int groups = 0;
-  for (const auto& g : s.count) {
-    for (const int n : g) groups += n;
+  for (auto left = s.present; left != 0; left &= left - 1) {
+    for (const int n : s.count[static_cast<std::size_t>(std::countr_zero(left))]) groups += n;
   }
   const bool plain = groups == 0 && (s.a_class == AClass::alkyl || s.a_class == AClass::cyclopropyl);
   return plain ? kPlainShare : std::min(kMostShare, kShare + kSharePerGroup * groups);
@@ -98,8 +99,8 @@ RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int ato
   s.small_ring = a.ring >= 3 && a.ring <= 5 ? a.ring : 0;
   s.covered = a.hybrid == Hybrid::sp3 || a.carbonyl;
   // Breadth-first over heavy atoms; the ring atoms of an aryl group count once, at their first atom.
-  std::array<int, 512> queue{};
-  std::array<std::int8_t, 512> depth{};
+  std::array<int, 512> queue;
+  std::array<std::int8_t, 512> depth;
   std::vector<bool> seen(static_cast<std::size_t>(m.atom_count()), false);
   std::size_t head = 0, tail = 0;
   queue[tail] = atom;

@@ -36,6 +36,7 @@ CarbonSites carbon_sites(const Analysis& a, const std::vector<SiteBond>& bonds, 
       c.kind = static_cast<int>(it - out.kinds.begin());
       if (it == out.kinds.end()) {
         k.features = b.features;
+        k.fitted_u2 = model.bonds().covariance_of(k.features, k.features);
         const double own = scatter_share(b.features) * model.bonds().scatter;
         // A measured bond outside the adjustment shares nothing.
         k.own_u2 = !k.sum.empty() ? 0.0 : b.value.route == Route::typed ? own * own : k.d.u * k.d.u;

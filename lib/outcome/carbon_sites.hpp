@@ -13,6 +13,7 @@ struct SiteKind {
   Quantity d;                          // D(R-H), kJ/mol
   double own_u2 = 0;                   // part of u(d)^2 no other kind shares
   EnthalpySum sum;                     // measured, adjusted: d as adjusted enthalpies, which kinds share
+  double fitted_u2 = 0;                // part of u(d)^2 from the fitted corrections
   std::vector<FeatureCount> features;  // typed route: shares the fitted corrections with other kinds
   RateSite rate;
 };

@@ -69,6 +69,7 @@ Result<std::vector<BondAnswer>> Engine::Impl::bond_answers(const Analysis& a, co
 std::vector<HalogenRates> Engine::Impl::halogen_rates(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
                                                       double temperature, bool with_errors) const {
   std::vector<HalogenRates> out;
+  out.reserve(halogens.size());
   for (const auto halogen : halogens) {
     const int x = static_cast<int>(halogen);
     HalogenRates r{halogen, std::nullopt};
@@ -84,6 +85,7 @@ std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const std:
                                                    std::span<const HalogenRates> rated, double temperature,
                                                    const BondOptions& o) const {
   std::vector<Halogen> halogens;
+  halogens.reserve(rated.size());
   for (const auto& r : rated) halogens.push_back(r.halogen);
   auto list = steps.chain(a, sites, halogens, temperature, o);
   // chain() gives the abstractions of one halogen after the other, each in the order of the sites.

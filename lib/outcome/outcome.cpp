@@ -34,6 +34,7 @@ std::vector<RefusedSite> refused_sites(const Analysis& a, const CarbonSites& c) 
 void compare_sites(const CarbonSites& c, const KindRates& r, const CarrierModel& m, const std::vector<std::size_t>& answered,
                    double temperature, HalogenOutcome& h) {
   std::size_t top = 0;
+  if (answered.size() > 1) h.selectivity.reserve(answered.size() - 1);
   for (std::size_t i = 1; i < answered.size(); ++i) {
     if (h.sites[i].share > h.sites[top].share) top = i;
   }
@@ -54,9 +55,16 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
   if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
   if (c.kinds.empty()) return Error{ErrorClass::domain, fmt::format("no C-H site inside the domain: {}", c.sites.front().refusal), {}};
   std::vector<HalogenOutcome> out;
+  out.reserve(rated.size());
   std::vector<AClass> classes;
-  for (const auto& k : c.kinds) classes.push_back(k.rate.a_class);
+  if (details) {
+    for (const auto& k : c.kinds) classes.push_back(k.rate.a_class);
+  }
   const auto refused = details ? refused_sites(a, c) : std::vector<RefusedSite>{};
+  std::vector<std::string> radicals(details ? c.sites.size() : 0);  // the same for all halogens
+  for (std::size_t i = 0; i < radicals.size(); ++i) {
+    if (c.sites[i].kind >= 0) radicals[i] = canonical_smiles(a.original().without_hydrogen(c.sites[i].site->atom));
+  }
   for (const auto& one : rated) {
     const auto halogen = one.halogen;
     const int x = static_cast<int>(halogen);
@@ -72,6 +80,8 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
     h.slope_over = m->slope_over;
     h.k_total = r.total * r.damping;
     std::vector<std::size_t> answered;
+    answered.reserve(c.sites.size());
+    h.sites.reserve(c.sites.size());
     for (std::size_t i = 0; i < c.sites.size(); ++i) {
       const auto& s = c.sites[i];
       if (s.kind < 0) continue;
@@ -96,7 +106,7 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
         o.u_ea = u.u_ea;
         o.u_ts_position = u.u_position;
         o.atoms = s.site->atoms;
-        o.radical = canonical_smiles(a.original().without_hydrogen(s.site->atom));
+        o.radical = radicals[i];
         o.type = site_type(a.plain(), a.info(), a.to_plain(s.site->atom));
         if (o.extrapolated) o.why_extrapolated = outside(s, *m, thin, temperature);
       }

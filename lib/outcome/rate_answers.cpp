@@ -11,7 +11,7 @@ bool inside(const CarbonSites& s, std::size_t site) { return s.sites[site].kind 
 
 // k of all H of a site before the limit.
 double raw(const CarbonSites& s, const KindRates& r, std::size_t site) {
-  return inside(s, site) ? s.sites[site].site->h_count * std::exp(r.at[kind_of(s, site)].ln_k) : 0.0;
+  return inside(s, site) ? s.sites[site].site->h_count * r.k[kind_of(s, site)] : 0.0;
 }
 
 double raw_ea(const CarrierModel& m, const SiteRate& at, double temperature) {
@@ -76,7 +76,7 @@ void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
     const double g = r.gradient[k].dh, own = c.rates.carrier(c.x)->scatter * scatter_share(kind.rate);
     r.own[k] = own * own + g * g * kind.own_u2;
     r.shared[k] = c.rates.variance(c.x, r.gradient[k]) +
-                  g * g * (c.d_hx.u * c.d_hx.u + c.model.bonds().covariance_of(kind.features, kind.features) +
+                  g * g * (c.d_hx.u * c.d_hx.u + kind.fitted_u2 +
                            c.adjusted.covariance(kind.sum, kind.sum));
   }
   r.row.assign(n, 0.0);
@@ -120,8 +120,12 @@ KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondMode
                      const Quantity& d_hx, int heavy_atoms, double temperature, bool with_errors) {
   KindRates r;
   const auto& m = *rates.carrier(x);
+  r.at.reserve(s.kinds.size());
+  r.k.reserve(s.kinds.size());
+  if (with_errors) r.gradient.reserve(s.kinds.size());
   for (const auto& k : s.kinds) {
     r.at.push_back(site_rate(m.p, m.form, k.rate, k.d.value - d_hx.value, temperature));
+    r.k.push_back(std::exp(r.at.back().ln_k));
     if (with_errors) r.gradient.push_back(rate_gradient(m.p, m.form, k.rate, r.at.back(), temperature));
   }
   double ea_sum = 0;

@@ -10,6 +10,7 @@ namespace halostep {
 /// Rates of all kinds of a molecule at one temperature.
 struct KindRates {
   std::vector<SiteRate> at;            // per kind, one H, before the encounter limit
+  std::vector<double> k;               // per kind: its rate coefficient, cm3 molecule-1 s-1
   std::vector<RateGradient> gradient;  // per kind
   std::vector<double> shared;          // per kind: variance of ln k from what kinds share: parameters, D(H-X), corrections
   std::vector<double> own;             // per kind: variance of ln k nothing else shares

@@ -29,6 +29,11 @@ void merge(std::vector<int>& into, const std::vector<int>& more) {
 
 constexpr double kUnknownCp = 10.0;  // J mol-1 K-1
 
+// canonical_smiles(m, false); `text` is canonical_smiles(m).
+std::string without_stereo(const Molecule& m, const std::string& text) {
+  return m.tetrahedral().empty() && m.double_bonds().empty() ? text : canonical_smiles(m, false);
+}
+
 Quantity minus(const Quantity& a, const Quantity& b) { return {a.value - b.value, std::hypot(a.u, b.u)}; }
 
 }  // namespace
@@ -156,6 +161,7 @@ void StepBook::site_steps(const Analysis& a, SiteData& d, int x, double t, const
   net.kind = StepKind::net;
   for (auto* s : {&abstraction, &transfer, &net}) {
     s->halogen = static_cast<Halogen>(x);
+    s->temperature = t;
     s->radical = d.radical;
   }
   const Quantity& delta = d.bond->delta[static_cast<std::size_t>(x)];
@@ -167,7 +173,7 @@ void StepBook::site_steps(const Analysis& a, SiteData& d, int x, double t, const
   if (o.details) {
     const auto halide = a.original().with_substituent(d.site->atom, kNumber[x]);
     rx_text = canonical_smiles(halide);
-    rx_entry = thermo_.find(a.deuterium_count() == 0 ? canonical_smiles(halide, false) : std::string());
+    rx_entry = thermo_.find(a.deuterium_count() == 0 ? without_stereo(halide, rx_text) : std::string());
     abstraction.reaction = fmt::format("{}.{}>>{}.{}", kAtom[x], d.rh, kHydride[x], d.radical);
     transfer.reaction = fmt::format("{}.{}>>{}.{}", d.radical, kMolecule[x], rx_text, kAtom[x]);
     net.reaction = fmt::format("{}.{}>>{}.{}", d.rh, kMolecule[x], rx_text, kHydride[x]);
@@ -184,7 +190,6 @@ void StepBook::site_steps(const Analysis& a, SiteData& d, int x, double t, const
     net.sources = abstraction.sources;
     merge(net.sources, transfer.sources);
   }
-  for (auto* q : {&abstraction, &transfer, &net}) q->temperature = t;
   if (!o.details) return;
   ThermoSum sa, st, sn;
   thermo_.add(sa, d.rh_entry, -1, d.rh);
@@ -229,7 +234,8 @@ void StepBook::terminations(const Analysis& a, const SiteData& d, std::size_t tr
   rr.reaction = fmt::format("{}.{}>>{}", d.radical, d.radical, d.dimer);
   rr.route = d.d->sum.empty() ? kMixed : kJoint;
   const bool plain = a.deuterium_count() == 0;
-  const auto* rx_entry = plain ? thermo_.find(canonical_smiles(a.original().with_substituent(d.site->atom, kNumber[x]), false)) : nullptr;
+  const auto halide = a.original().with_substituent(d.site->atom, kNumber[x]);
+  const auto* rx_entry = plain ? thermo_.find(without_stereo(halide, product)) : nullptr;
   if (!rx.dh) rx.why_dh = transfer->why_dh;
   if (!rr.dh) rr.why_dh = "the table has no formation enthalpy of the dimer or of the radical";
   rx.why_ea = rr.why_ea = "recombination, no barrier";
@@ -292,6 +298,7 @@ std::optional<Quantity> StepBook::dimer_bond(const Analysis& a, const BondValue&
 
 std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<SiteBond>& sites, std::span<const Halogen> halogens, double t, const BondOptions& o) const {
   std::vector<SiteData> data;
+  data.reserve(sites.size());
   const std::string rh = o.details ? canonical_smiles(a.original()) : std::string();
   const bool plain = a.deuterium_count() == 0;
   const auto* rh_entry = plain && o.details ? thermo_.find(a.key()) : nullptr;
@@ -307,7 +314,7 @@ std::vector<StepAnswer> StepBook::chain(const Analysis& a, const std::vector<Sit
       const auto r = a.original().without_hydrogen(s.atom);
       d.radical = canonical_smiles(r);
       d.sources = bonds_.sources(a, s, *d.d);
-      if (rh_entry != nullptr) d.r_entry = thermo_.find_radical(r, canonical_smiles(r, false));
+      if (rh_entry != nullptr) d.r_entry = thermo_.find_radical(r, without_stereo(r, d.radical));
       if (const auto rr = dimer_of(r)) {
         d.dimer = canonical_smiles(*rr);
         d.rr_entry = plain ? thermo_.find(canonical_smiles(*rr, false)) : nullptr;

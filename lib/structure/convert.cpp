@@ -13,6 +13,7 @@
 #include <algorithm>
 #include <fmt/format.h>
 
+#include "molecule_build.hpp"
 #include "valence.hpp"
 
 namespace halostep {
@@ -122,8 +123,8 @@ bool nonmetal(int z) {
   return std::find(std::begin(kKnown), std::end(kKnown), z) != std::end(kKnown);
 }
 
-// Radical centres pass for saturated while rings are judged: phenyl is as aromatic as benzene.
-void perceive_aromaticity(OpenBabel::OBMol& mol) {
+// Radical centres pass for saturated while rings are judged: phenyl is as aromatic as benzene. False: there are none.
+bool judge_with_radicals(OpenBabel::OBMol& mol) {
   std::vector<std::pair<OBAtom*, unsigned>> saturated;
   FOR_ATOMS_OF_MOL(a, mol) {
     Atom like;
@@ -134,23 +135,40 @@ void perceive_aromaticity(OpenBabel::OBMol& mol) {
     saturated.emplace_back(&*a, h);
     a->SetImplicitHCount(h + 1);
   }
-  if (saturated.empty()) return;
+  if (saturated.empty()) return false;
   mol.SetAromaticPerceived(false);
   (void)mol.GetAtom(1)->IsAromatic();
   for (const auto& [a, h] : saturated) a->SetImplicitHCount(h);
+  return true;
+}
+
+// The parser's search costs as much as all its reading; plain rings need none.
+void judge_rings(OpenBabel::OBMol& mol, const std::vector<int>& to, Molecule& m) {
+  mol.SetAromaticPerceived(false);
+  for (unsigned i = 1; i <= mol.NumAtoms(); ++i) {
+    if (to[i - 1] >= 0) MoleculeBuild::atom(m, to[i - 1]).aromatic = mol.GetAtom(static_cast<int>(i))->IsAromatic();
+  }
+  int k = 0;
+  for (unsigned i = 0; i < mol.NumBonds(); ++i) {
+    auto& ob = *mol.GetBond(static_cast<int>(i));
+    if (to[ob.GetBeginAtomIdx() - 1] < 0 || to[ob.GetEndAtomIdx() - 1] < 0) continue;
+    if (ob.IsAromatic()) MoleculeBuild::bond(m, k).order = BondOrder::aromatic;
+    ++k;
+  }
 }
 
 }  // namespace
 
-Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
-  perceive_aromaticity(mol);
+Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom, bool as_written) {
+  const bool judged = judge_with_radicals(mol) || !as_written;
   const auto n = mol.NumAtoms();
   std::vector<Atom> atoms;
   std::vector<Bond> bonds;
-  std::vector<int> to(n, -1), source;
+  std::vector<int> to(n, -1), source, valence;
   atoms.reserve(n);
+  source.reserve(n);
+  valence.reserve(n);
   bonds.reserve(mol.NumBonds());
-  std::vector<int> valence;
   for (unsigned i = 1; i <= n; ++i) {
     auto& ob = *mol.GetAtom(static_cast<int>(i));
     if (folded(ob)) continue;
@@ -158,7 +176,7 @@ Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
     a.element = static_cast<std::uint8_t>(ob.GetAtomicNum());
     a.charge = static_cast<std::int8_t>(ob.GetFormalCharge());
     a.isotope = static_cast<std::uint16_t>(ob.GetIsotope());
-    a.aromatic = ob.IsAromatic();
+    a.aromatic = judged && ob.IsAromatic();
     a.hydrogens = static_cast<std::uint8_t>(ob.GetImplicitHCount());
     to[i - 1] = static_cast<int>(atoms.size());
     source.push_back(static_cast<int>(i) - 1);
@@ -172,7 +190,7 @@ Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
       if (a >= 0 || b >= 0) ++atoms[static_cast<std::size_t>(std::max(a, b))].hydrogens;
       continue;
     }
-    const auto order = ob.IsAromatic() ? BondOrder::aromatic : static_cast<BondOrder>(std::clamp(static_cast<int>(ob.GetBondOrder()), 1, 3));
+    const auto order = judged && ob.IsAromatic() ? BondOrder::aromatic : static_cast<BondOrder>(std::clamp(static_cast<int>(ob.GetBondOrder()), 1, 3));
     bonds.push_back({a, b, order, false});
   }
   for (std::size_t i = 0; i < atoms.size(); ++i) {
@@ -185,7 +203,18 @@ Result<Molecule> convert(OpenBabel::OBMol& mol, std::vector<int>* source_atom) {
   normalise_nitro(atoms, bonds);
   normalise_dioxygen(atoms, bonds);
   if (source_atom != nullptr) *source_atom = std::move(source);
-  return Molecule::from_graph(std::move(atoms), std::move(bonds), std::move(tetrahedral), std::move(doubles));
+  auto m = MoleculeBuild::graph(std::move(atoms), std::move(bonds), std::move(tetrahedral), std::move(doubles));
+  if (!m.ok()) return m;
+  if (!judged) {
+    // Plain rings were just read off a Kekule form.
+    if (mark_plain_rings(m.value())) {
+      if (auto e = check_valences(m.value())) return *e;
+      return m;
+    }
+    judge_rings(mol, to, m.value());
+  }
+  if (auto e = check_graph(m.value())) return *e;
+  return m;
 }
 
 std::optional<Error> uncovered_element(const Molecule& m) {

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 
+#include "molecule_build.hpp"
 #include "valence.hpp"
 
 namespace halostep {
@@ -68,7 +69,7 @@ void Molecule::index() {
   }
 }
 
-Result<Molecule> Molecule::from_graph(std::vector<Atom> atoms, std::vector<Bond> bonds, std::vector<TetrahedralStereo> tetrahedral,
+Result<Molecule> MoleculeBuild::graph(std::vector<Atom> atoms, std::vector<Bond> bonds, std::vector<TetrahedralStereo> tetrahedral,
                                       std::vector<DoubleBondStereo> double_bonds) {
   const auto n = static_cast<int>(atoms.size());
   if (n == 0) return Error{ErrorClass::empty, "a molecule needs at least one atom", {}};
@@ -76,17 +77,11 @@ Result<Molecule> Molecule::from_graph(std::vector<Atom> atoms, std::vector<Bond>
     const int z = atoms[static_cast<std::size_t>(i)].element;
     if (z < 1 || z > 118) return Error{ErrorClass::element, "no such element", "atom " + std::to_string(i + 1)};
   }
-  std::vector<std::pair<int, int>> pairs;
   for (std::size_t k = 0; k < bonds.size(); ++k) {
     const auto& b = bonds[k];
     if (b.a < 0 || b.b < 0 || b.a >= n || b.b >= n || b.a == b.b) {
       return Error{ErrorClass::syntax, "a bond needs two different atoms of the molecule", "bond " + std::to_string(k + 1)};
     }
-    pairs.emplace_back(std::min(b.a, b.b), std::max(b.a, b.b));
-  }
-  std::sort(pairs.begin(), pairs.end());
-  if (std::adjacent_find(pairs.begin(), pairs.end()) != pairs.end()) {
-    return Error{ErrorClass::syntax, "two bonds between the same atoms", {}};
   }
   Molecule m;
   m.atoms_ = std::move(atoms);
@@ -94,9 +89,22 @@ Result<Molecule> Molecule::from_graph(std::vector<Atom> atoms, std::vector<Bond>
   m.tetrahedral_ = std::move(tetrahedral);
   m.double_bonds_ = std::move(double_bonds);
   m.index();
-  if (auto e = check_valences(m)) return *e;
-  std::vector<bool> pi;
-  if (auto e = check_aromaticity(m, pi)) return *e;
+  std::vector<int> seen_from(static_cast<std::size_t>(n), -1);
+  for (int i = 0; i < n; ++i) {
+    for (const auto& b : m.neighbours(i)) {
+      auto& from = seen_from[static_cast<std::size_t>(b.atom)];
+      if (from == i) return Error{ErrorClass::syntax, "two bonds between the same atoms", {}};
+      from = i;
+    }
+  }
+  return m;
+}
+
+Result<Molecule> Molecule::from_graph(std::vector<Atom> atoms, std::vector<Bond> bonds, std::vector<TetrahedralStereo> tetrahedral,
+                                      std::vector<DoubleBondStereo> double_bonds) {
+  auto m = MoleculeBuild::graph(std::move(atoms), std::move(bonds), std::move(tetrahedral), std::move(double_bonds));
+  if (!m.ok()) return m;
+  if (auto e = check_graph(m.value())) return *e;
   return m;
 }
 

@@ -31,6 +31,8 @@ Parser& parser() {
 
 Parser::Parser() {
   smiles_.SetInFormat("smi");
+  marked_.SetInFormat("smi");
+  marked_.AddOption("a", OpenBabel::OBConversion::INOPTIONS);
   OpenBabel::obErrorLog.SetOutputStream(&log_);
   OpenBabel::obErrorLog.SetOutputLevel(OpenBabel::obWarning);
 }
@@ -38,11 +40,14 @@ Parser::Parser() {
 bool Parser::read_smiles(OpenBabel::OBMol& m, const std::string& text) {
   log_.str({});
   m.Clear();
+  // The reader judges all rings only to leave aromatic bonds out of the search for '/' and '\\'; most texts have none.
+  as_written_ = text.find_first_of("/\\") == std::string::npos;
+  auto& reader = as_written_ ? marked_ : smiles_;
   // Past OBConversion::Read, which sets the locale at each call; SMILES holds no decimal numbers.
   in_.clear();
   in_.str(text);
-  smiles_.SetInStream(&in_);
-  return smiles_.GetInFormat()->ReadMolecule(&m, &smiles_);
+  reader.SetInStream(&in_);
+  return reader.GetInFormat()->ReadMolecule(&m, &reader);
 }
 
 bool Parser::read_mol(OpenBabel::OBMol& m, const std::string& block) {
@@ -108,7 +113,7 @@ Result<Molecule> parse_smiles(std::string_view input, ParseMode mode) {
     if (p.log().find("kekul") != std::string::npos || p.log().find("Kekul") != std::string::npos) {
       return Error{ErrorClass::aromaticity, "no Kekule form for the aromatic system", place_in(text, text.find_first_of("bcnops"))};
     }
-    m = convert(mol, &source);
+    m = convert(mol, &source, p.as_written());
   }
   if (!m.ok()) return placed(m.error(), text, check.atom_position, source);
   for (int i = 0; i < m.value().atom_count(); ++i) {

@@ -15,6 +15,15 @@ std::uint64_t mix(std::uint64_t x) {  // finaliser of splitmix64 (Steele, Lea & 
 
 std::uint64_t bond_weight(BondOrder o) { return 1ULL << (16 * (static_cast<unsigned>(o) - 1)); }
 
+// Kept from one refinement to the next: most structures are small, and making room would cost as much as the work.
+struct Room {
+  std::vector<int> touched_cells, touched, members, starts;
+};
+Room& room() {
+  thread_local Room r;
+  return r;
+}
+
 }  // namespace
 
 std::uint64_t atom_invariant(const Molecule& m, int i) {
@@ -41,6 +50,7 @@ Partition::Partition(const Molecule& m) : m_(&m) {
   size_.assign(n, 0);
   queued_.assign(n, 0);
   count_.resize(n);
+  queue_.reserve(n + n / 2);
   std::iota(order_.begin(), order_.end(), 0);
   for (std::size_t i = 0; i < n; ++i) count_[i] = atom_invariant(m, static_cast<int>(i));
   std::sort(order_.begin(), order_.end(), [&](int a, int b) { return count_[static_cast<std::size_t>(a)] < count_[static_cast<std::size_t>(b)]; });
@@ -69,7 +79,8 @@ void Partition::push(int start) {
 // (Hopcroft 1971) unless the whole cell was on it.
 void Partition::split(int start, int end) {
   const bool was_queued = queued_[static_cast<std::size_t>(start)] != 0;
-  std::vector<int> starts;
+  auto& starts = room().starts;
+  starts.clear();
   int largest = start, largest_size = 0;
   for (int i = start; i < end;) {
     int j = i;
@@ -95,7 +106,7 @@ void Partition::split(int start, int end) {
 }
 
 void Partition::refine() {
-  std::vector<int> touched_cells, touched, members;
+  auto& [touched_cells, touched, members, starts] = room();
   while (head_ < queue_.size()) {
     const int w = queue_[head_++];
     queued_[static_cast<std::size_t>(w)] = 0;

@@ -69,6 +69,7 @@ std::vector<int> symmetry_classes(const Molecule& m) {
   const Partition p = orbit_partition(m);
   std::vector<int> number(static_cast<std::size_t>(m.atom_count()), -1), out;
   int next = 0;
+  out.reserve(number.size());
   for (int i = 0; i < m.atom_count(); ++i) {
     auto& k = number[static_cast<std::size_t>(p.cell(i))];
     if (k < 0) k = next++;

@@ -88,10 +88,19 @@ Pi pi_need(const Molecule& m, int i) {
   }
 }
 
+// Neighbours of all atoms one after the other.
+struct FlatGraph {
+  std::vector<int> from = {0}, flat;
+  [[nodiscard]] std::size_t size() const { return from.size() - 1; }
+  [[nodiscard]] std::span<const int> operator[](std::size_t v) const {
+    return {flat.data() + from[v], flat.data() + from[v + 1]};
+  }
+};
+
 // Maximum matching on a general graph by Edmonds' blossom algorithm (Can. J. Math. 1965, 17, 449); ring systems are small.
 class Matching {
  public:
-  explicit Matching(std::vector<std::vector<int>> adjacent) : adj_(std::move(adjacent)), match_(adj_.size(), -1) {}
+  explicit Matching(FlatGraph adjacent) : adj_(std::move(adjacent)), match_(adj_.size(), -1) {}
   [[nodiscard]] int partner(int v) const { return match_[at(v)]; }
   bool perfect() {
     for (int v = 0; v < size(); ++v) {
@@ -177,14 +186,14 @@ class Matching {
     }
     return false;
   }
-  std::vector<std::vector<int>> adj_;
+  FlatGraph adj_;
   std::vector<int> match_, parent_, base_;
 };
 
 // The atoms that carry a ring double bond, in the given order, and which of them are joined by aromatic bonds.
 struct PiSystem {
   std::vector<int> members;
-  std::vector<std::vector<int>> adjacent;
+  FlatGraph adjacent;
 };
 
 PiSystem pi_system(const Molecule& m, const std::vector<int>& order) {
@@ -195,29 +204,36 @@ PiSystem pi_system(const Molecule& m, const std::vector<int>& order) {
     number[static_cast<std::size_t>(i)] = static_cast<int>(s.members.size());
     s.members.push_back(i);
   }
-  s.adjacent.resize(s.members.size());
-  for (std::size_t k = 0; k < s.members.size(); ++k) {
-    for (const auto& n : m.neighbours(s.members[k])) {
+  auto& [from, flat] = s.adjacent;
+  from.reserve(s.members.size() + 1);
+  flat.reserve(3 * s.members.size());
+  for (const int i : s.members) {
+    for (const auto& n : m.neighbours(i)) {
       const int w = number[static_cast<std::size_t>(n.atom)];
-      if (w >= 0 && m.bond(n.bond).order == BondOrder::aromatic) s.adjacent[k].push_back(w);
+      if (w >= 0 && m.bond(n.bond).order == BondOrder::aromatic) flat.push_back(w);
     }
-    std::sort(s.adjacent[k].begin(), s.adjacent[k].end());
+    std::sort(flat.begin() + from.back(), flat.end());
+    from.push_back(static_cast<int>(flat.size()));
   }
   return s;
 }
 
 }  // namespace
 
-std::optional<Error> check_aromaticity(const Molecule& m, std::vector<bool>& pi) {
-  pi.assign(static_cast<std::size_t>(m.atom_count()), false);
+std::optional<Error> check_graph(const Molecule& m) {
+  auto e = check_valences(m);
+  return e ? e : check_aromaticity(m);
+}
+
+std::optional<Error> check_aromaticity(const Molecule& m) {
   std::vector<int> order;
   for (int i = 0; i < m.atom_count(); ++i) {
     if (!m.atom(i).aromatic) continue;
     if (!m.atom(i).in_ring) return Error{ErrorClass::aromaticity, "an aromatic atom outside a ring", "atom " + std::to_string(i + 1)};
     order.push_back(i);
   }
+  if (order.empty()) return std::nullopt;
   auto s = pi_system(m, order);
-  for (const int i : s.members) pi[static_cast<std::size_t>(i)] = true;
   if (s.members.empty()) return std::nullopt;
   const int first = s.members.front();
   if (Matching(std::move(s.adjacent)).perfect()) return std::nullopt;

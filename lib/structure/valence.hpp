@@ -12,8 +12,10 @@ const int* allowed_valences(int element, int charge) noexcept;
 int explicit_valence(const Molecule& m, int atom, bool pi) noexcept;
 /// First atom with more bonds than its element takes, or a lone pair count that cannot be.
 std::optional<Error> check_valences(const Molecule& m);
-/// Finds a Kekule form: which aromatic atoms carry a ring double bond. Error aromaticity if there is none.
-std::optional<Error> check_aromaticity(const Molecule& m, std::vector<bool>& pi);
+/// Whether the aromatic atoms have a Kekule form. Error aromaticity if there is none.
+std::optional<Error> check_aromaticity(const Molecule& m);
+/// Both checks.
+std::optional<Error> check_graph(const Molecule& m);
 
 /// Per bond: double in the Kekule form found when atoms are taken in `order`. Precondition: check_aromaticity passed.
 std::vector<bool> kekule_double_bonds(const Molecule& m, const std::vector<int>& order);

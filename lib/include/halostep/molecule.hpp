@@ -57,6 +57,8 @@ struct DoubleBondStereo {
   bool cis = false;
 };
 
+struct MoleculeBuild;
+
 /// Immutable molecular graph (one or more fragments). Atoms and bonds keep the input order.
 class Molecule {
  public:
@@ -106,6 +108,7 @@ class Molecule {
   [[nodiscard]] std::vector<Molecule> fragments() const;
 
  private:
+  friend struct MoleculeBuild;
   void index();
   std::vector<Atom> atoms_;
   std::vector<Bond> bonds_;
