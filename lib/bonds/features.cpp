@@ -15,15 +15,15 @@ enum F : int {
   s_first, s_alkyl, s_vinyl, s_aryl, s_alkynyl, s_acyl, s_carboxyl, s_cyano, s_nitro, s_o, s_o_acyl, s_o_nitro, s_peroxy, s_n,
   s_n_acyl, s_s, s_so, s_so2, s_si, s_f, s_cl, s_br, s_i,
   // pairs at the centre
-  p_alkyl_alkyl, p_conj_alkyl, p_conj_conj, p_captodative, p_conj_halogen, p_donor_alkyl, p_donor_donor,
+  p_alkyl_alkyl, p_conj_alkyl, p_pi_alkyl, p_conj_conj, p_weak_conj, p_aryl_twist, p_o_conj, p_n_conj, p_conj_halogen, p_donor_alkyl, p_donor_donor,
   p_donor_halogen, p_f_alkyl, p_hal_alkyl, p_f_f, p_f_hal, p_hal_hal,
   // beyond the first atom
-  b_f, b_cl, b_o, b_conj, b_branch, g_f,
-  vinyl_extended, allyl_end_alkyl, allyl_mid_alkyl, aryl_fused, aryl_hetero5, conj_pair_ring,
+  b_f, b_cl, b_o, b_conj, b_branch, g_f, n_more_alkyl, aryl_halogen,
+  vinyl_extended, allyl_end_alkyl, allyl_mid_alkyl, aryl_fused, aryl_flat, aryl_hetero5,
   // rings
-  ring3, ring4, ring5, ring5_conj, ring7, bridgehead5, bridgehead6, on_ring3,
+  ring3, ring4, ring5, ring5_conj_pair, bridge_one, bridgehead5, bridgehead6, on_ring3,
   // other carbon centres
-  v_alkyl, v_halogen, v_ring, a_hetero5, a_f, a_ring_n, k_alkyl, f_alkyl, f_conj, f_o, f_n, f_f, f_hal, f_alpha_halogen,
+  v_alkyl, v_conj, v_f, v_halogen, v_ring, a_hetero5, a_f, a_ring_n, k_alkyl, f_alkyl, f_conj, f_donor, f_o, f_n, f_f, f_hal, f_alpha_halogen,
   // O, N, S, Si
   o_alkyl, o_peracid, ph_alkyl, ph_ortho_tbu, ph_donor, n_alkyl, n_aryl_alkyl, n_fluoro, n_ring, t_alkyl, si_alkyl, si_aryl, si_si, si_f, si_cl,
   feature_total
@@ -34,19 +34,19 @@ constexpr std::array<std::string_view, feature_total> kFeatureNames = {
     "base: O-H, alcohol", "base: O-H, phenol", "base: O-H, acid", "base: O-H, hydroperoxide", "base: N-H, amine",
     "base: N-H, aniline", "base: N-H, amide", "base: N-H, aromatic ring", "base: S-H, thiol", "base: S-H, thiophenol",
     "base: Si-H",
-    "first substituent", "alkyl", "vinyl", "aryl", "alkynyl", "acyl", "carboxyl", "cyano", "nitro", "O", "O-acyl", "O-nitro", "peroxy", "N",
-    "N-acyl", "S", "SO", "SO2", "Si", "F", "Cl", "Br", "I",
-    "pair alkyl,alkyl", "pair conjugating,alkyl", "pair conjugating,conjugating", "pair donor,conjugating",
+    "first substituent", "alkyl", "vinyl", "aryl", "alkynyl", "acyl", "carboxyl, beyond acyl", "cyano", "nitro", "O", "O-acyl, beyond O", "O-nitro, beyond O", "peroxy, beyond O", "N",
+    "N-acyl, beyond N", "S", "SO", "SO2", "Si", "F", "Cl", "Br", "I",
+    "pair alkyl,alkyl", "pair conjugating,alkyl", "pair C=C or C#C,alkyl", "pair of C=C, aryl, C#C, or of one with N/S", "pair with C=O, CN, NO2", "pair aryl,aryl or C=C or C=O, free to twist", "pair O,conjugating", "pair N/S,conjugating, beyond that",
     "pair conjugating,halogen", "pair donor,alkyl", "pair donor,donor", "pair donor,halogen", "pair F,alkyl",
     "pair Cl/Br/I,alkyl", "pair F,F", "pair F,Cl/Br/I", "pair Cl/Br/I,Cl/Br/I",
-    "beta F", "beta Cl/Br/I", "beta O/N", "beta conjugating group", "beta branching", "gamma F",
+    "beta F", "beta Cl/Br/I", "beta O/N", "beta conjugating group", "beta branching", "gamma F", "further alkyl on the N", "halogen at para of the aryl group",
     "longer conjugation", "alkyl on the far end of the allyl system", "alkyl on the middle of the allyl system",
-    "ring fused to the aryl group", "five-membered heteroaryl", "two conjugating groups held in a ring",
-    "three-membered ring", "four-membered ring", "five-membered ring", "five-membered ring, conjugated", "seven-membered ring or larger, conjugated",
+    "second aromatic ring on the aryl group", "aryl group held flat by a ring", "five-membered heteroaryl",
+    "three-membered ring", "four-membered ring", "five-membered ring", "two conjugating groups held in a five-membered ring", "bridge of one atom in a ring of five or less",
     "bridgehead in a ring of five or less", "bridgehead in a ring of six or more", "cyclopropyl on the centre",
-    "vinyl C-H: alkyl on the carbon", "vinyl C-H: halogen on the carbon", "vinyl C-H: small ring",
+    "vinyl C-H: alkyl on the carbon", "vinyl C-H: conjugating group on the carbon", "vinyl C-H: F on the carbon", "vinyl C-H: Cl/Br/I on the carbon", "vinyl C-H: small ring",
     "aryl C-H: five-membered heteroaryl", "aryl C-H: F on the ring", "aryl C-H: beside ring N", "alkynyl C-H: alkyl", "acyl C-H: alkyl",
-    "acyl C-H: conjugating group", "acyl C-H: O", "acyl C-H: N", "acyl C-H: F", "acyl C-H: Cl/Br/I",
+    "acyl C-H: conjugating group", "acyl C-H: O/N/F", "acyl C-H: O, beyond O/N/F", "acyl C-H: N, beyond O/N/F", "acyl C-H: F, beyond O/N/F", "acyl C-H: Cl/Br/I",
     "acyl C-H: alpha halogen",
     "O-H: alkyl on the carbon", "O-H: peracid", "phenol: alkyl on the ring", "phenol: tertiary alkyl at ortho", "phenol: O/N on the ring",
     "N-H: alkyl", "N-H: alkyl beside aryl or acyl", "N-H: halogen", "N-H: second ring N", "S-H: alkyl on the carbon", "Si-H: alkyl",
@@ -103,11 +103,16 @@ class Builder {
   void rings();
   void beta(int b);
   void conjugation(int nb);
+  void far_end(int nb);
+  void aromatic_group(int nb);
+  [[nodiscard]] int alkyl_count(int i) const;
   void vinyl();
   void aryl();
   void acyl();
   void oxygen();
   [[nodiscard]] std::vector<int> ortho_and_para(int x) const;
+  [[nodiscard]] std::vector<int> opposite(int x) const;
+  [[nodiscard]] std::vector<std::pair<int, int>> aromatic_shells(int x) const;
   void nitrogen();
   void sulfur();
   void silicon();
@@ -124,39 +129,70 @@ class Builder {
 int base_substituent(Substituent s) {
   return s_alkyl + static_cast<int>(s) - static_cast<int>(Substituent::alkyl);
 }
+// A group that varies another: it counts as that one, and its own value is the difference.
+int parent_group(Substituent s) {
+  switch (s) {
+    case Substituent::carboxyl: return s_acyl;
+    case Substituent::oxygen_acyl: case Substituent::oxygen_nitro: case Substituent::peroxy: return s_o;
+    case Substituent::nitrogen_acyl: return s_n;
+    default: return -1;
+  }
+}
+
+// sp3 carbons on an atom, the centre apart.
+int Builder::alkyl_count(int i) const {
+  int count = 0;
+  for (const auto& n : m_.neighbours(i)) count += n.atom != c_ && at(n.atom).kind == Substituent::alkyl;
+  return count;
+}
+
+// What stands on the other end of the allyl or propargyl system shares the odd electron.
+void Builder::far_end(int nb) {
+  for (const auto& n : m_.neighbours(nb)) {
+    const auto order = m_.bond(n.bond).order;
+    if (n.atom == c_) continue;
+    if (order != BondOrder::dbl && order != BondOrder::triple) {
+      if (at(n.atom).kind == Substituent::alkyl && !m_.bond(n.bond).in_ring) add(allyl_mid_alkyl);
+      continue;
+    }
+    for (const auto& e : m_.neighbours(n.atom)) {
+      if (e.atom == nb) continue;
+      if (conjugating(at(e.atom).kind)) add(vinyl_extended);
+      else if (at(e.atom).kind == Substituent::alkyl && e.atom != c_) add(allyl_end_alkyl);
+    }
+  }
+}
+
+void Builder::aromatic_group(int nb) {
+  bool hetero = false;
+  const auto rings = [&](int i) {
+    int aromatic = 0;
+    for (const auto& n : m_.neighbours(i)) aromatic += m_.bond(n.bond).order == BondOrder::aromatic;
+    return aromatic >= 3;  // an atom of two aromatic rings
+  };
+  int fused = 0;
+  for (const auto& n : m_.neighbours(nb)) {
+    if (m_.bond(n.bond).order != BondOrder::aromatic) continue;
+    if (m_.atom(n.atom).element != element::C) hetero = hetero || at(n.atom).ring == 5;
+    fused += rings(n.atom);
+  }
+  if (hetero) add(aryl_hetero5);
+  add(aryl_fused, fused + (rings(nb) ? 1 : 0));
+  for (const int p : opposite(nb)) {
+    for (const auto& x : m_.neighbours(p)) add(aryl_halogen, is_halogen(m_.atom(x.atom).element));
+  }
+}
 
 void Builder::conjugation(int nb) {
   const auto kind = at(nb).kind;
-  if (kind == Substituent::vinyl) {
-    for (const auto& n : m_.neighbours(nb)) {
-      if (n.atom == c_) continue;
-      if (m_.bond(n.bond).order == BondOrder::dbl) {
-        for (const auto& e : m_.neighbours(n.atom)) {
-          if (e.atom == nb) continue;
-          if (conjugating(at(e.atom).kind)) add(vinyl_extended);
-          else if (at(e.atom).kind == Substituent::alkyl && e.atom != c_) add(allyl_end_alkyl);
-        }
-      } else if (at(n.atom).kind == Substituent::alkyl) {
-        add(allyl_mid_alkyl);
-      }
-    }
-  } else if (kind == Substituent::aryl) {
-    bool hetero = false;
-    int fused = 0;
-    for (const auto& n : m_.neighbours(nb)) {
-      if (!m_.bond(n.bond).in_ring || m_.bond(n.bond).order != BondOrder::aromatic) continue;
-      if (m_.atom(n.atom).element != element::C) hetero = hetero || at(n.atom).ring == 5;
-      if (at(n.atom).ring_bonds >= 3) ++fused;
-    }
-    if (hetero) add(aryl_hetero5);
-    add(aryl_fused, fused + (at(nb).ring_bonds >= 3 ? 1 : 0));
-  }
+  if (kind == Substituent::vinyl || kind == Substituent::alkynyl) far_end(nb);
+  else if (kind == Substituent::aryl) aromatic_group(nb);
 }
 
 void Builder::beta(int b) {
   int branch = 0;
   for (const auto& n : m_.neighbours(b)) {
-    if (n.atom == c_) continue;
+    if (n.atom == c_ || m_.bond_between(c_, n.atom) >= 0) continue;  // in a ring of three it is on the centre itself
     const auto k = at(n.atom).kind;
     if (k == Substituent::fluoro) add(b_f);
     else if (heavy_halogen(k)) add(b_cl);
@@ -176,6 +212,7 @@ void Builder::beta(int b) {
 void Builder::pairs() {
   const auto n = [&](Substituent s) { return kinds_[static_cast<std::size_t>(s)]; };
   const int alkyl = n(Substituent::alkyl), fluor = n(Substituent::fluoro);
+  const int aryl = n(Substituent::aryl);
   int conj = 0, don = 0, hal = 0;
   for (int k = 0; k < kSubstituentKinds; ++k) {
     const auto s = static_cast<Substituent>(k);
@@ -187,8 +224,25 @@ void Builder::pairs() {
   const auto two = [](int k) { return k * (k - 1) / 2.0; };
   add(p_alkyl_alkyl, two(alkyl));
   add(p_conj_alkyl, conj * alkyl);
-  add(p_conj_conj, two(conj));
-  add(p_captodative, conj * don);
+  add(p_pi_alkyl, (n(Substituent::vinyl) + n(Substituent::alkynyl)) * alkyl);
+  // Each of several groups has its share of the odd electron, and what stands on it acts by that share.
+  if (conj > 1) {
+    for (const int f : {vinyl_extended, allyl_end_alkyl, allyl_mid_alkyl, aryl_fused, aryl_halogen}) counts_[static_cast<std::size_t>(f)] /= conj;
+  }
+  const int pi = n(Substituent::vinyl) + n(Substituent::alkynyl) + aryl;
+  add(p_conj_conj, two(pi));
+  add(p_weak_conj, two(conj) - two(pi));
+  // Two groups need the same plane; an aryl group that is not held there by a ring turns out of it.
+  int free_aryl = aryl;
+  for (const auto& nb : m_.neighbours(c_)) free_aryl -= at(nb.atom).kind == Substituent::aryl && m_.bond(nb.bond).in_ring;
+  add(aryl_flat, aryl - free_aryl);
+  const int flat = aryl + n(Substituent::vinyl) + n(Substituent::acyl) + n(Substituent::carboxyl);
+  add(p_aryl_twist, two(flat) - two(flat - free_aryl));
+  const int oxygens = n(Substituent::oxygen) + n(Substituent::oxygen_acyl) + n(Substituent::oxygen_nitro) + n(Substituent::peroxy);
+  add(p_o_conj, conj * oxygens);
+  // N and S stabilise nearly as much as a pi system: such a pair saturates likewise, and its own value is the difference.
+  add(p_conj_conj, pi * (don - oxygens));
+  add(p_n_conj, conj * (don - oxygens));
   add(p_conj_halogen, conj * (hal + fluor));
   add(p_donor_alkyl, don * alkyl);
   add(p_donor_donor, two(don));
@@ -198,11 +252,6 @@ void Builder::pairs() {
   add(p_f_f, two(fluor));
   add(p_f_hal, fluor * hal);
   add(p_hal_hal, two(hal));
-  if (conj >= 2) {
-    int in_ring = 0;
-    for (const auto& nb : m_.neighbours(c_)) in_ring += conjugating(at(nb.atom).kind) && m_.bond(nb.bond).in_ring;
-    if (in_ring >= 2) add(conj_pair_ring);
-  }
 }
 
 void Builder::rings() {
@@ -212,12 +261,18 @@ void Builder::rings() {
     if (a.ring <= 4) refuse("a bridgehead in a three- or four-membered ring");
     return;
   }
-  bool conjugated = false;
-  for (const auto& n : m_.neighbours(c_)) conjugated = conjugated || (m_.bond(n.bond).in_ring && conjugating(at(n.atom).kind));
+  int conjugated = 0, bridgeheads = 0;
+  for (const auto& n : m_.neighbours(c_)) {
+    if (!m_.bond(n.bond).in_ring) continue;
+    conjugated += conjugating(at(n.atom).kind);
+    bridgeheads += bridgehead(m_, info_, n.atom);
+  }
+  // In cyclopentadiene the far ends of the two groups are one another's: no longer system.
+  if (conjugated >= 2 && a.ring == 5) counts_[vinyl_extended] = 0;
+  if (bridgeheads == 2 && a.ring <= 5) add(bridge_one);
   if (a.ring == 3) add(ring3);
-  else if (a.ring == 4) conjugated ? refuse("an allylic or benzylic C-H in a four-membered ring") : add(ring4);
-  else if (a.ring == 5) add(conjugated ? ring5_conj : ring5);
-  else if (a.ring >= 7 && conjugated) add(ring7);  // large saturated rings are like open chains
+  else if (a.ring == 4) conjugated > 0 ? refuse("an allylic or benzylic C-H in a four-membered ring") : add(ring4);
+  else if (a.ring == 5) add(conjugated >= 2 ? ring5_conj_pair : ring5, conjugated == 1 ? 0.0 : 1.0);
 }
 
 void Builder::sp3() {
@@ -230,6 +285,8 @@ void Builder::sp3() {
     }
     ++kinds_[static_cast<std::size_t>(k)];
     add(base_substituent(k));
+    if (const int parent = parent_group(k); parent >= 0) add(parent);
+    if (k == Substituent::nitrogen) add(n_more_alkyl, alkyl_count(n.atom));
     if (k == Substituent::alkyl) beta(n.atom);
     conjugation(n.atom);
   }
@@ -248,7 +305,9 @@ void Builder::vinyl() {
     }
     const auto k = at(n.atom).kind;
     if (k == Substituent::alkyl) add(v_alkyl);
-    else if (k == Substituent::fluoro || heavy_halogen(k)) add(v_halogen);
+    else if (conjugating(k)) add(v_conj);
+    else if (k == Substituent::fluoro) add(v_f);
+    else if (heavy_halogen(k)) add(v_halogen);
     else refuse("a vinylic C-H next to this group");
   }
   if (at(c_).ring == 3) refuse("a vinylic C-H in a three-membered ring");
@@ -277,9 +336,9 @@ void Builder::acyl() {
         if (is_halogen(m_.atom(b.atom).element)) add(f_alpha_halogen);
       }
     } else if (conjugating(k)) add(f_conj);
-    else if (k == Substituent::oxygen_acyl || k == Substituent::oxygen) add(f_o);
-    else if (k == Substituent::nitrogen_acyl || k == Substituent::nitrogen) add(f_n);
-    else if (k == Substituent::fluoro) add(f_f);
+    else if (k == Substituent::oxygen_acyl || k == Substituent::oxygen) add(f_donor), add(f_o);
+    else if (k == Substituent::nitrogen_acyl || k == Substituent::nitrogen) add(f_donor), add(f_n);
+    else if (k == Substituent::fluoro) add(f_donor), add(f_f);
     else if (heavy_halogen(k)) add(f_hal);
     else refuse("a formyl C-H next to this group");
   }
@@ -324,13 +383,14 @@ void Builder::oxygen() {
   }
 }
 
-// Aromatic ring atoms an odd number of bonds (1 or 3) from `x` in its ring: where a substituent meets the odd electron.
-std::vector<int> Builder::ortho_and_para(int x) const {
-  std::vector<int> depth(static_cast<std::size_t>(m_.atom_count()), -1), queue = {x}, out;
+// Atoms of the aromatic system around `x` by their distance from it, up to three bonds.
+std::vector<std::pair<int, int>> Builder::aromatic_shells(int x) const {
+  std::vector<int> depth(static_cast<std::size_t>(m_.atom_count()), -1), queue = {x};
+  std::vector<std::pair<int, int>> out;
   depth[static_cast<std::size_t>(x)] = 0;
   for (std::size_t head = 0; head < queue.size(); ++head) {
     const int u = queue[head], d = depth[static_cast<std::size_t>(u)];
-    if (d % 2 == 1) out.push_back(u);
+    if (d > 0) out.emplace_back(d, u);
     if (d == 3) continue;
     for (const auto& n : m_.neighbours(u)) {
       auto& seen = depth[static_cast<std::size_t>(n.atom)];
@@ -338,6 +398,25 @@ std::vector<int> Builder::ortho_and_para(int x) const {
       seen = d + 1;
       queue.push_back(n.atom);
     }
+  }
+  return out;
+}
+
+// One or three bonds from `x`: where a substituent meets the odd electron.
+std::vector<int> Builder::ortho_and_para(int x) const {
+  std::vector<int> out;
+  for (const auto& [d, atom] : aromatic_shells(x)) {
+    if (d % 2 == 1) out.push_back(atom);
+  }
+  return out;
+}
+
+// Para positions: three bonds from `x` in its own ring.
+std::vector<int> Builder::opposite(int x) const {
+  std::vector<int> out;
+  if (at(x).ring != 6) return out;
+  for (const auto& [d, atom] : aromatic_shells(x)) {
+    if (d == 3 && at(atom).ring == 6) out.push_back(atom);
   }
   return out;
 }
@@ -438,13 +517,24 @@ const std::vector<std::string_view>& feature_names() {
 }
 
 double feature_prior(int f) noexcept {
-  // Single rows stand behind these; they must not turn one bond into a rule for all.
-  if (f == ph_alkyl || f == ph_ortho_tbu || f == ph_donor) return 8.0;
-  if (f == a_ring_n) return 15.0;
+  switch (f) {
+    // Differences between kindred groups.
+    case s_carboxyl: case s_o_acyl: case s_o_nitro: case s_peroxy: case s_n_acyl: return 10.0;
+    case f_n: return 12.0;
+    case f_o: case f_f: return 15.0;
+    case b_conj: return 2.5;                   // no allylic or benzylic resonance reaches it
+    // Two conjugating groups, or one and a donor, saturate: larger than other pairs.
+    case p_conj_conj: case p_aryl_twist: case p_o_conj: case p_n_conj: return 15.0;
+    // Single rows stand behind these; they must not turn one bond into a rule for all.
+    case ph_alkyl: case ph_ortho_tbu: case ph_donor: return 8.0;
+    case a_ring_n: case v_alkyl: case v_conj: case v_f: case v_halogen: case f_alkyl: case f_conj: case k_alkyl: return 15.0;
+    default: break;
+  }
   if (f <= base_si) return 1000.0;             // bases are free
   if (f <= s_i) return 25.0;                   // substituents
-  if (f <= p_hal_hal) return 8.0;              // pairs
-  if (f <= g_f) return 5.0;                    // beta and gamma effects
+  if (f <= p_hal_hal) return 8.0;                 // pairs
+  if (f <= aryl_halogen) return 5.0;           // beta and gamma effects
+  if (f <= allyl_mid_alkyl) return 12.0;
   return 20.0;
 }
 

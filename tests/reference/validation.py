@@ -10,17 +10,21 @@ import tempfile
 
 # section, class: {figure: bound}; upper bounds, but lower ones for rows and within_2u. Aims are stricter; a step back fails.
 FLOORS = {
-    ("bonds", "all C-H"): {"rows": 110, "mean_abs": 7.0, "median_abs": 5.5, "within_2u": 0.90},
-    ("bonds", "alkyl"): {"mean_abs": 5.5, "median_abs": 3.5},
-    ("bonds", "haloalkyl"): {"mean_abs": 5.0, "median_abs": 4.0},
-    ("halides", "all C-X"): {"rows": 75, "mean_abs": 11.5, "within_2u": 0.88},
+    ("bonds", "all C-H"): {"rows": 125, "mean_abs": 5.8, "median_abs": 4.4, "within_2u": 0.90, "coverage_95": 0.90},
+    ("bonds", "alkyl"): {"mean_abs": 4.5, "median_abs": 3.5},
+    ("bonds", "haloalkyl"): {"mean_abs": 6.0, "median_abs": 4.2},
+    ("bonds", "allyl, propargyl, benzyl"): {"rows": 40, "mean_abs": 6.2, "median_abs": 4.4},
+    ("bonds", "alpha to O, N, S"): {"rows": 18, "mean_abs": 6.2},
+    ("halides", "all C-X"): {"rows": 80, "mean_abs": 7.0, "within_2u": 0.88},
+    ("halides", "all C-X, doubtful judges too"): {"rows": 85, "mean_abs": 8.0},
+    ("sources", "all bonds"): {"rows": 300, "coverage_95": 0.90},
     ("rates", "Cl + all"): {"rows": 380, "median_abs": 0.22, "rms": 0.70, "within_2u": 0.90},
     ("rates", "Cl + alkanes, cycloalkanes"): {"rows": 40, "rms": 0.11, "within_2u": 0.90},
     ("rates", "Cl + haloalkanes"): {"rows": 70, "median_abs": 0.32, "rms": 0.55},
     ("mixtures", "Cl2 + hydrocarbons"): {"rows": 7, "mean_abs": 0.10},
     ("mixtures", "Cl2 + substituted"): {"rows": 4, "mean_abs": 0.12},
 }
-LOWER = {"rows", "within_2u"}
+LOWER = {"rows", "within_2u", "coverage_95"}
 
 
 def shortfalls(doc):
@@ -42,7 +46,7 @@ def beats_naive(doc):
 
 def self_test():
     good = {"sections": [{"id": i, "classes": [dict(b, **{"class": c}) for (s, c), b in FLOORS.items() if s == i]}
-                         for i in ("bonds", "halides", "rates", "mixtures")]}
+                         for i in ("bonds", "halides", "sources", "rates", "mixtures")]}
     if list(shortfalls(good)):
         return 1
     for key, bounds in FLOORS.items():

@@ -96,17 +96,21 @@ Result<std::optional<FittedModel>> fit_line(const Table& t, const std::vector<Ra
 
 }  // namespace
 
-Result<std::vector<FittedModel>> fit_models(const Table& table) {
+Result<std::vector<FittedModel>> fit_bond_models(const Table& table) {
   std::vector<FittedModel> out;
   auto bonds = fit_bonds(bond_samples(table));
   if (!bonds.ok()) return bonds.error();
   out.push_back(std::move(bonds).value());
-  const auto halides = exchange_samples(table);
-  for (int x = 0; x < 4; ++x) {
-    auto m = fit_exchange(halides, x);
-    if (!m.ok()) return m.error();
-    out.push_back(std::move(m).value());
-  }
+  auto exchange = fit_exchange(exchange_samples(table));
+  if (!exchange.ok()) return exchange.error();
+  for (auto& m : exchange.value()) out.push_back(std::move(m));
+  return out;
+}
+
+Result<std::vector<FittedModel>> fit_models(const Table& table) {
+  auto fitted = fit_bond_models(table);
+  if (!fitted.ok()) return fitted.error();
+  auto out = std::move(fitted).value();
   const auto samples = rate_samples(table, bond_model(table, out));
   std::vector<double> chlorine;
   double floor = 0.02;

@@ -31,7 +31,8 @@ std::vector<BondSample> bond_samples(const Table& t);
 std::vector<ExchangeSample> exchange_samples(const Table& t);
 
 Result<FittedModel> fit_bonds(const std::vector<BondSample>& samples);
-Result<FittedModel> fit_exchange(const std::vector<ExchangeSample>& samples, int halogen);
+/// One fit for F, Cl, Br and I together: four models, in that order (docs/model.md).
+Result<std::vector<FittedModel>> fit_exchange(const std::vector<ExchangeSample>& samples);
 
 /// Packs a solution as a model of the table.
 FittedModel pack_model(std::string name, std::vector<std::string> parameters, const Eigen::VectorXd& values,

@@ -45,6 +45,51 @@ void Score::add(double e, double u, double naive_e) {
   within += std::abs(e) <= 2 * u;
 }
 
+void Score::add(double e, double u, double judge_u, double naive_e, std::pair<double, double> class_mean) {
+  const double both = std::hypot(u, judge_u);
+  add(e, both, naive_e);
+  answer_u.push_back(u);
+  judged.emplace_back(e, both);
+  if (std::isfinite(class_mean.first) && class_mean.second > 0) naive_class.push_back(class_mean);
+}
+
+Calibration calibration(const Score& s) {
+  constexpr double kNormal = 1.96;  // 95 % of a normal distribution
+  // Width of the 95 % interval, and 2/alpha = 40 for each unit outside it (Winkler, J. Am. Stat. Assoc. 1972, 67, 187).
+  const auto score = [&](const std::vector<std::pair<double, double>>& v) {
+    double sum = 0;
+    for (const auto& [e, u] : v) sum += 2 * kNormal * u + 40 * std::max(0.0, std::abs(e) - kNormal * u);
+    return sum / static_cast<double>(v.size());
+  };
+  Calibration c;
+  if (s.judged.empty()) return c;
+  const auto inside = std::count_if(s.judged.begin(), s.judged.end(), [&](const auto& j) { return std::abs(j.first) <= kNormal * j.second; });
+  c.coverage = static_cast<double>(inside) / static_cast<double>(s.judged.size());
+  c.median_u = figures(s.answer_u).median;
+  c.interval_score = score(s.judged);
+  c.naive_interval_score = s.naive_class.empty() ? 0 : score(s.naive_class);
+  return c;
+}
+
+namespace {
+
+std::string calibration_markdown(const Section& s) {
+  std::string out;
+  for (const auto& [name, c] : s.classes) {
+    if (c.judged.empty()) continue;
+    const auto k = calibration(c);
+    const bool naive = c.naive_class.size() == c.judged.size();
+    out += fmt::format("| {} | {} | {:.0f} % | {:.1f} | {:.0f} | {} |\n", name, c.judged.size(), 100 * k.coverage, k.median_u,
+                       k.interval_score, naive ? fmt::format("{:.0f}", k.naive_interval_score) : "-");
+  }
+  if (out.empty()) return out;
+  return "\n95 % intervals, 1.96 u with the judge's own u; median u is that of the answer alone. Interval score: width plus 40 "
+         "times what lies outside (smaller is better), beside the mean of the class and its deviation.\n\n"
+         "| class | rows | inside | median u | interval score | of the class mean |\n|---|---|---|---|---|---|\n" + out;
+}
+
+}  // namespace
+
 std::string section_markdown(const Section& s) {
   std::string out = fmt::format("## {}\n\n{}\n\n", s.title, s.note);
   out += fmt::format("Errors in {}. Naive rule on the same rows: {}.\n\n", s.unit, s.naive);
@@ -59,6 +104,7 @@ std::string section_markdown(const Section& s) {
                        c.with_u > 0 ? fmt::format("{:.0f} %", 100.0 * c.within / c.with_u) : "-", number(n.mean, naive),
                        number(n.rms, naive), c.refused);
   }
+  out += calibration_markdown(s);
   auto rows = s.rows;
   std::sort(rows.begin(), rows.end(), [](const auto& a, const auto& b) { return a.first != b.first ? a.first > b.first : a.second < b.second; });
   if (!rows.empty()) out += "\nFarthest:\n\n";
@@ -79,6 +125,13 @@ nlohmann::json section_json(const Section& s) {
     put("within_2u", c.with_u > 0 ? static_cast<double>(c.within) / c.with_u : 0, c.with_u > 0);
     put("naive_mean_abs", n.mean, !c.naive.empty());
     put("naive_rms", n.rms, !c.naive.empty());
+    if (!c.judged.empty()) {
+      const auto k = calibration(c);
+      one["coverage_95"] = k.coverage;
+      one["median_u"] = k.median_u;
+      one["interval_score"] = k.interval_score;
+      put("naive_interval_score", k.naive_interval_score, !c.naive_class.empty());
+    }
     out["classes"].push_back(std::move(one));
   }
   return out;

@@ -10,10 +10,21 @@ namespace halostep {
 struct Score {
   std::vector<double> error, naive;  // signed
   int within = 0, with_u = 0;        // inside 2 combined u, of those with u
+  // For calibration, where judged: u of the answer, error and combined u, error and deviation of the naive class.
+  std::vector<double> answer_u;
+  std::vector<std::pair<double, double>> judged, naive_class;
   int refused = 0;
   void add(double e, double naive_e);
   void add(double e, double u, double naive_e);
+  /// The same with what calibration needs: u of the answer apart from the judge's, and the class's mean and deviation.
+  void add(double e, double answer_u, double judge_u, double naive_e, std::pair<double, double> class_mean);
 };
+
+/// How well intervals fit, over one class.
+struct Calibration {
+  double coverage = 0, median_u = 0, interval_score = 0, naive_interval_score = 0;
+};
+Calibration calibration(const Score& s);
 
 /// One section of the report: classes in order of their names, and how to read the figures.
 struct Section {

@@ -10,7 +10,7 @@ namespace halostep {
 
 /// Everything judged, over all folds.
 struct Validation {
-  Section bonds, halides, rates, mixtures;
+  Section bonds, halides, sources, rates, mixtures;
 };
 
 /// One fold: `engine` has not seen its molecules, `full` has the values that judge.
@@ -22,6 +22,8 @@ struct FoldView {
 };
 
 void judge_bonds(const FoldView& v, Validation& out);
+/// Measured bonds with several sources: each source against what the others combine to.
+void judge_sources(const Table& t, Section& s);
 void judge_rates(const FoldView& v, Validation& out);
 void judge_mixtures(const FoldView& v, Validation& out);
 

@@ -3,7 +3,12 @@
 #include <algorithm>
 #include <cmath>
 #include <limits>
+#include <map>
+#include <optional>
 
+#include "adjust/combine.hpp"
+#include "bonds/features.hpp"
+#include "bonds/locate.hpp"
 #include "halostep/structure.hpp"
 #include "tables/validate.hpp"
 
@@ -31,70 +36,115 @@ double median(std::vector<double> v) {
   return *mid;
 }
 
-struct Asked {
-  const BondEntry* entry = nullptr;
-  BondAnswer answer;
-};
-
-// The table's bonds of one kind, each with the engine's typed answer.
-std::vector<Asked> ask(const FoldView& v, bool hydrogen) {
-  std::vector<Asked> out;
-  for (const auto& b : v.full.bonds) {
-    const bool halide = b.leaving == "[F]" || b.leaving == "[Cl]" || b.leaving == "[Br]" || b.leaving == "[I]";
-    if (hydrogen ? b.leaving != "[H]" : !halide || b.radical == b.leaving) continue;
-    const auto m = parse_smiles(b.molecule);
-    if (!m.ok()) continue;
-    const auto answers = v.engine.bonds(m.value(), {true, true});
-    const auto radical = parse_smiles(b.radical, ParseMode::species);
-    if (!answers.ok() || !radical.ok()) continue;
-    const auto wanted = canonical_smiles(radical.value(), false);
-    for (const auto& a : answers.value()) {
-      const bool of_kind = hydrogen ? a.h_count > 0 : a.partner >= 0 && a.h_count == 0;
-      const auto r = parse_smiles(a.radical, ParseMode::species);
-      if (of_kind && r.ok() && canonical_smiles(r.value(), false) == wanted) {
-        out.push_back({&b, a});
-        break;
-      }
-    }
-  }
-  return out;
+bool halide_of_carbon(const BondEntry& b) {
+  const bool halogen = b.leaving == "[F]" || b.leaving == "[Cl]" || b.leaving == "[Br]" || b.leaving == "[I]";
+  return halogen && b.radical != b.leaving && b.radical.find_first_of("Cc") != std::string::npos;
 }
 
-void judge(const FoldView& v, Section& s, bool hydrogen) {
-  const auto asked = ask(v, hydrogen);
-  const auto class_of = [&](const Asked& a) {
-    return hydrogen ? family_of(a.answer.type) : "C-" + a.entry->leaving.substr(1, a.entry->leaving.size() - 2);
-  };
-  for (const auto& a : asked) {
-    if (v.folds.of(a.entry->molecule) != v.fold) continue;
-    auto& c = s.classes[class_of(a)];
-    auto& all = s.classes[hydrogen ? "all C-H" : "all C-X"];
-    const bool carbon = !hydrogen || a.answer.bond == "C-H";
-    if (!a.answer.d298) {
-      ++c.refused;
-      all.refused += carbon;
+// The class a bond is judged in; empty when it is of the other kind.
+std::string class_of(const BondEntry& b, bool hydrogen) {
+  if (!hydrogen) return halide_of_carbon(b) ? "C-" + b.leaving.substr(1, b.leaving.size() - 2) : std::string();
+  if (b.leaving != "[H]") return {};
+  const auto m = parse_smiles(b.molecule, ParseMode::species), r = parse_smiles(b.radical, ParseMode::species);
+  const int atom = m.ok() && r.ok() ? find_site(m.value(), symmetry_classes(m.value()), r.value()) : -1;
+  return atom < 0 ? std::string() : family_of(std::string(site_type(m.value(), environment(m.value()), atom)));
+}
+
+// The engine's answer about one bond of the table; nothing when it does not find the bond.
+std::optional<BondAnswer> ask(const FoldView& v, const BondEntry& b, bool hydrogen, bool typed) {
+  const auto m = parse_smiles(b.molecule), radical = parse_smiles(b.radical, ParseMode::species);
+  if (!m.ok() || !radical.ok()) return std::nullopt;
+  const auto answers = v.engine.bonds(m.value(), {typed, true});
+  if (!answers.ok()) return std::nullopt;
+  const auto wanted = canonical_smiles(radical.value(), false);
+  for (const auto& a : answers.value()) {
+    const bool of_kind = hydrogen ? a.h_count > 0 : a.partner >= 0 && a.h_count == 0;
+    const auto r = parse_smiles(a.radical, ParseMode::species);
+    if (of_kind && r.ok() && canonical_smiles(r.value(), false) == wanted) return a;
+  }
+  return std::nullopt;
+}
+
+// A value known to no better than this cannot judge an answer, kJ/mol; it is shown in a class of its own.
+constexpr double kJudgeLimit = 10.0;
+
+// Mean and standard deviation.
+std::pair<double, double> moments(const std::vector<double>& v) {
+  if (v.size() < 2) return {std::numeric_limits<double>::quiet_NaN(), 0};
+  double mean = 0, square = 0;
+  for (const double x : v) mean += x / static_cast<double>(v.size());
+  for (const double x : v) square += (x - mean) * (x - mean);
+  return {mean, std::sqrt(square / static_cast<double>(v.size() - 1))};
+}
+
+// How bonds of one kind are judged; `whole` is the class that takes all of them.
+struct Question {
+  bool hydrogen = true, typed = true, detailed = true;
+  const char* whole = "";
+};
+
+void judge(const FoldView& v, Section& s, const Question& q) {
+  std::map<std::string, std::vector<double>> seen;  // values of the class that are not held out
+  for (const auto& b : v.full.bonds) {
+    if (v.folds.of(b.molecule) != v.fold) seen[class_of(b, q.hydrogen)].push_back(b.d298.value);
+  }
+  for (const auto& b : v.full.bonds) {
+    if (v.folds.of(b.molecule) != v.fold) continue;
+    const auto name = class_of(b, q.hydrogen);
+    const auto answer = name.empty() ? std::nullopt : ask(v, b, q.hydrogen, q.typed);
+    if (!answer) continue;
+    const bool carbon = !q.hydrogen || answer->bond == "C-H", judges = b.d298.u <= kJudgeLimit;
+    const std::string whole = q.whole;
+    if (!answer->d298) {
+      if (q.detailed) ++s.classes[name].refused;
+      s.classes[whole].refused += carbon;
       continue;
     }
-    std::vector<double> others;
-    for (const auto& o : asked) {
-      if (class_of(o) == class_of(a) && v.folds.of(o.entry->molecule) != v.fold) others.push_back(o.entry->d298.value);
-    }
-    const double e = a.answer.d298->value - a.entry->d298.value, u = std::hypot(a.answer.d298->u, a.entry->d298.u);
-    const double naive = median(others) - a.entry->d298.value;
-    c.add(e, u, naive);
-    if (carbon) all.add(e, u, naive);
-    s.classes[a.answer.extrapolated ? "marked thin" : "not marked thin"].add(e, u, naive);
-    s.row(e, fmt::format("{} > {}: {:.1f} u {:.1f}, table {:.1f} u {:.1f}{}", a.entry->molecule, a.entry->radical,
-                         a.answer.d298->value, a.answer.d298->u, a.entry->d298.value, a.entry->d298.u,
-                         a.answer.extrapolated ? " (marked thin)" : ""));
+    const double e = answer->d298->value - b.d298.value, u = answer->d298->u;
+    auto mean = moments(seen[name]);
+    mean = {mean.first - b.d298.value, std::hypot(mean.second, b.d298.u)};
+    const double naive = median(seen[name]) - b.d298.value;
+    const auto add = [&](const std::string& c) { s.classes[c].add(e, u, b.d298.u, naive, mean); };
+    if (carbon) add(whole + ", doubtful judges too");
+    if (carbon && judges) add(whole);
+    if (!q.detailed || !judges) continue;
+    add(name);
+    add(answer->extrapolated ? "marked thin" : "not marked thin");
+    s.row(e, fmt::format("{} > {}: {:.1f} u {:.1f}, table {:.1f} u {:.1f}{}", b.molecule, b.radical, answer->d298->value, u,
+                         b.d298.value, b.d298.u, answer->extrapolated ? " (marked thin)" : ""));
   }
 }
 
 }  // namespace
 
 void judge_bonds(const FoldView& v, Validation& out) {
-  judge(v, out.bonds, true);
-  judge(v, out.halides, false);
+  judge(v, out.bonds, {true, true, true, "all C-H"});
+  judge(v, out.halides, {false, false, true, "all C-X"});
+  judge(v, out.halides, {false, true, false, "all C-X, D(R-H) typed too"});
+}
+
+void judge_sources(const Table& t, Section& s) {
+  for (const auto& b : t.bonds) {
+    std::vector<const BondRow*> rows;
+    for (const int i : b.rows) {
+      const auto& r = t.bond_rows[static_cast<std::size_t>(i)];
+      if (!r.superseded) rows.push_back(&r);
+    }
+    if (rows.size() < 2) continue;
+    auto name = b.leaving == "[H]" ? class_of(b, true) : halide_of_carbon(b) ? "C-X" : "other bonds";
+    if (name.empty()) name = "other bonds";
+    for (const auto* r : rows) {
+      std::vector<Quantity> rest;
+      for (const auto* o : rows) {
+        if (o->source != r->source) rest.push_back({o->d298, o->u});
+      }
+      if (rest.empty()) continue;
+      const auto other = combine(rest).value;
+      for (const auto& c : {name, std::string("all bonds")}) {
+        s.classes[c].add(other.value - r->d298, other.u, r->u, std::numeric_limits<double>::quiet_NaN(), {0, 0});
+      }
+    }
+  }
 }
 
 }  // namespace halostep
