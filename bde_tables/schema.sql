@@ -1,4 +1,4 @@
--- Layout 2 of halostep.sqlite. The CSV files are the source; the table compiler fills this schema.
+-- Layout 3 of halostep.sqlite. The CSV files are the source; the table compiler fills this schema.
 -- Energies in kJ/mol (298.15 K), entropies and heat capacities in J mol-1 K-1, temperatures in K.
 -- `id` is the 0-based row number of the arrays the library loads; `source` refers to source.id.
 
@@ -8,13 +8,14 @@ CREATE TABLE meta (
 ) STRICT, WITHOUT ROWID;
 
 CREATE TABLE source (
-  id       INTEGER PRIMARY KEY,
-  name     TEXT NOT NULL UNIQUE CHECK (length(name) > 0 AND name NOT GLOB '*[^a-z0-9_-]*'),
-  citation TEXT NOT NULL CHECK (length(citation) > 0),
-  doi      TEXT NOT NULL,
-  kind     TEXT NOT NULL CHECK (kind IN ('measurement', 'evaluation', 'compilation', 'textbook', 'computation',
-                                         'practice')),
-  year     INTEGER NOT NULL CHECK (year = 0 OR year BETWEEN 1850 AND 2100) -- 0: not known
+  id        INTEGER PRIMARY KEY,
+  name      TEXT NOT NULL UNIQUE CHECK (length(name) > 0 AND name NOT GLOB '*[^a-z0-9_-]*'),
+  citation  TEXT NOT NULL CHECK (length(citation) > 0),
+  doi       TEXT NOT NULL CHECK (doi = '' OR doi GLOB '10.[0-9][0-9][0-9][0-9]*/?*'),
+  doi_basis TEXT NOT NULL CHECK (doi_basis IN ('', 'read', 'rule', 'memory') AND (doi = '') = (doi_basis = '')),
+  kind      TEXT NOT NULL CHECK (kind IN ('measurement', 'evaluation', 'compilation', 'textbook', 'computation',
+                                          'practice')),
+  year      INTEGER NOT NULL CHECK (year = 0 OR year BETWEEN 1850 AND 2100) -- 0: not known
 ) STRICT;
 
 CREATE TABLE bond_row (

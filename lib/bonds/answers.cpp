@@ -7,6 +7,7 @@
 
 #include "adjust/combine.hpp"
 #include "halostep/structure.hpp"
+#include "heavy_type.hpp"
 #include "signature.hpp"
 
 namespace halostep {
@@ -265,8 +266,7 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
     const auto halves = m.broken(h.bond);
     b.bond = fmt::format("{}-{}", element_symbol(m.atom(h.centre).element), element_symbol(m.atom(h.partner).element));
     b.radical = canonical_smiles(m.bond(h.bond).a == h.centre ? halves.first : halves.second);
-    b.type = x >= 0 ? fmt::format("{}, {}", b.bond, h.count == 1 ? "one" : fmt::format("{} equivalent", h.count))
-                    : fmt::format("{}, weak bond", b.bond);
+    b.type = heavy_type(a, h);
   }
   if (!o.typed && (adjusted_.possible(a.signature()) || model_.possible(a.signature()))) {
     const int pa = a.to_plain(h.centre), pb = a.to_plain(h.partner);

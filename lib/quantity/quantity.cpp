@@ -73,7 +73,8 @@ char take_temperature_unit(std::string_view& t) {
   } else if (drop_end("C") || drop_end("c")) {
     unit = 'C';
     drop_blanks();
-    if (!drop_end("\xC2\xB0")) drop_end("\xB0");
+    // The degree sign or, on some keyboards, the ordinal sign.
+    if (!drop_end("\xC2\xB0") && !drop_end("\xC2\xBA")) drop_end("\xB0");
   } else if (drop_end("K") || drop_end("k") || drop_end("\xE2\x84\xAA")) {  // the last is the Kelvin sign
     unit = 'K';
   }

@@ -5,7 +5,7 @@ namespace halostep {
 
 namespace {
 
-constexpr std::size_t kCells = 25;
+constexpr std::size_t kCells = 23;
 
 const char* truth(bool value) { return value ? "true" : "false"; }
 
@@ -44,9 +44,7 @@ std::vector<std::string> site_cells(const OutcomeRecord& record, const HalogenOu
                                  csv_number(s.k_cm3_s),
                                  csv_number(s.u_log10_k),
                                  csv_energy(s.ea, unit),
-                                 csv_energy(s.u_ea, unit),
                                  csv_number(s.ts_position),
-                                 csv_number(s.u_ts_position),
                                  csv_number(s.share),
                                  csv_number(s.share_low),
                                  csv_number(s.share_high),
@@ -64,7 +62,7 @@ std::vector<std::string> refused_cells(const HalogenOutcome& outcome, const Refu
   cells[2] = s.radical;
   cells[3] = std::to_string(s.h_count);
   cells[4] = s.type;
-  cells[17] = "no rate: " + s.why;
+  cells[15] = "no rate: " + s.why;
   return cells;
 }
 
@@ -86,8 +84,8 @@ std::string outcome_csv(const Table&, std::span<const OutcomeRecord> records, En
   const std::string suffix = unit_suffix(unit);
   add_columns(grid.columns, {"halogen",   "temperature_k",    "radical",        "h_count",
                              "type",      "dh_" + suffix,     "u_dh_" + suffix, "k_cm3_s",
-                             "u_log10_k", "ea_" + suffix,     "u_ea_" + suffix, "ts_position",
-                             "u_ts_position", "share",        "share_low", "share_high", "extrapolated", "why",
+                             "u_log10_k", "ea_" + suffix,     "ts_position",    "share",
+                             "share_low", "share_high",       "extrapolated",   "why",
                              "best",      "verdict",          "propagates",     "hazardous",
                              "slow",      "dh_net_" + suffix, "reason"});
   for (auto& column : error_columns()) grid.columns.push_back(column);

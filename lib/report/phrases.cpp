@@ -89,11 +89,21 @@ std::string source_list(const Table& table, const std::set<int>& cited) {
   return out + '\n';
 }
 
+namespace {
+
+/// An input that could not be read may be anything, also very long.
+std::string shortened(const std::string& text) {
+  constexpr std::size_t kShown = 200;
+  return text.size() <= kShown ? text : text.substr(0, kShown) + "...";
+}
+
+}  // namespace
+
 std::string head_text(const SubstrateHead& head) {
-  std::string out = head.smiles.empty() ? head.input : head.smiles;
+  std::string out = head.smiles.empty() ? shortened(head.input) : head.smiles;
   if (!head.formula.empty()) out += "  " + head.formula;
   if (!head.name.empty()) out += "  " + head.name;
-  if (!head.smiles.empty() && head.input != head.smiles) out += "  (read from " + head.input + ")";
+  if (!head.smiles.empty() && head.input != head.smiles) out += "  (read from " + shortened(head.input) + ")";
   for (char& c : out) {
     if (static_cast<unsigned char>(c) < 0x20) c = ' ';
   }

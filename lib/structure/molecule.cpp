@@ -163,6 +163,14 @@ Molecule Molecule::with_substituent(int atom, int z) const {
   return m;
 }
 
+Molecule Molecule::with_stereo(std::vector<TetrahedralStereo> tetrahedral,
+                               std::vector<DoubleBondStereo> double_bonds) const {
+  Molecule m = *this;
+  m.tetrahedral_ = std::move(tetrahedral);
+  m.double_bonds_ = std::move(double_bonds);
+  return m;
+}
+
 std::vector<Molecule> Molecule::fragments() const {
   std::vector<Molecule> out(static_cast<std::size_t>(fragments_));
   std::vector<int> to(atoms_.size());

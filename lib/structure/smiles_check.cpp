@@ -93,6 +93,7 @@ bool Scanner::organic() {
   if (std::isalpha(static_cast<unsigned char>(c))) {
     return fail(ErrorClass::element, fmt::format("'{}' is no element that may stand without brackets", c), where);
   }
+  if (static_cast<unsigned char>(c) >= 0x80) return fail(ErrorClass::syntax, "a character that is not ASCII", where);
   return fail(ErrorClass::syntax, fmt::format("unexpected character '{}'", c), where);
 }
 

@@ -177,17 +177,77 @@ void smallest(const Molecule& m, const Partition& p, const std::vector<int>& cla
   }
 }
 
+std::string smallest_text(const Molecule& m, const Partition& p, const std::vector<int>& classes) {
+  std::string best;
+  int left = kMaxTexts;
+  smallest(m, p, classes, left, best);
+  return best;
+}
+
+bool equal_pair(const std::vector<int>& atoms, const std::vector<int>& classes) {
+  for (std::size_t i = 0; i < atoms.size(); ++i) {
+    for (std::size_t k = i + 1; k < atoms.size(); ++k) {
+      if (atoms[i] >= 0 && atoms[k] >= 0 && classes[at(atoms[i])] == classes[at(atoms[k])]) return true;
+    }
+  }
+  return false;
+}
+
+bool equal_substituents(const Molecule& m, const DoubleBondStereo& d, const std::vector<int>& classes) {
+  const auto& b = m.bond(d.bond);
+  for (const auto& [end, other] : {std::pair(b.a, b.b), std::pair(b.b, b.a)}) {
+    std::vector<int> atoms;
+    for (const auto& n : m.neighbours(end)) {
+      if (n.atom != other) atoms.push_back(n.atom);
+    }
+    if (equal_pair(atoms, classes)) return true;
+  }
+  return false;
+}
+
+// Two substituents may have become equal since the stereo was read. A mark whose inversion leaves the structure the
+// same says nothing and goes.
+Molecule meaningful_stereo(const Molecule& m, const Partition& p, const std::vector<int>& classes) {
+  std::vector<TetrahedralStereo> centres(m.tetrahedral().begin(), m.tetrahedral().end());
+  std::vector<DoubleBondStereo> doubles(m.double_bonds().begin(), m.double_bonds().end());
+  const auto text = [&] { return smallest_text(m.with_stereo(centres, doubles), p, classes); };
+  const auto by_class = [&](const TetrahedralStereo& x, const TetrahedralStereo& y) {
+    return classes[at(x.centre)] < classes[at(y.centre)];
+  };
+  std::stable_sort(centres.begin(), centres.end(), by_class);
+  for (std::size_t i = 0; i < centres.size();) {
+    bool same = false;
+    if (equal_pair({std::begin(centres[i].neighbours), std::end(centres[i].neighbours)}, classes)) {
+      const auto before = text();
+      centres[i].clockwise = !centres[i].clockwise;
+      same = text() == before;
+      centres[i].clockwise = !centres[i].clockwise;
+    }
+    if (same) centres.erase(centres.begin() + static_cast<std::ptrdiff_t>(i));
+    else ++i;
+  }
+  for (std::size_t i = 0; i < doubles.size();) {
+    bool same = false;
+    if (equal_substituents(m, doubles[i], classes)) {
+      const auto before = text();
+      doubles[i].cis = !doubles[i].cis;
+      same = text() == before;
+      doubles[i].cis = !doubles[i].cis;
+    }
+    if (same) doubles.erase(doubles.begin() + static_cast<std::ptrdiff_t>(i));
+    else ++i;
+  }
+  return m.with_stereo(std::move(centres), std::move(doubles));
+}
+
 }  // namespace
 
 std::string canonical_smiles(const Molecule& m, bool stereo) {
   if (m.atom_count() == 0) return {};
   if (!stereo || (m.tetrahedral().empty() && m.double_bonds().empty())) return Writer(m, canonical_ranks(m), nullptr).run();
   const Partition p = orbit_partition(m);
-  std::vector<int> classes = ranks_of(p, m.atom_count());
-  std::string best;
-  int left = kMaxTexts;
-  smallest(m, p, classes, left, best);
-  return best;
+  const std::vector<int> classes = ranks_of(p, m.atom_count());
+  return smallest_text(meaningful_stereo(m, p, classes), p, classes);
 }
 
 }  // namespace halostep

@@ -37,7 +37,9 @@ class Dump {
     return *this;
   }
 
-  Dump& operator<<(const SourceRow& r) { return *this << r.id << r.citation << r.doi << r.kind << r.year; }
+  Dump& operator<<(const SourceRow& r) {
+    return *this << r.id << r.citation << r.doi << r.doi_basis << r.kind << r.year;
+  }
   Dump& operator<<(const BondRow& r) {
     *this << r.molecule << r.radical << r.leaving << r.d298 << r.u << r.coverage;
     return tail(r);

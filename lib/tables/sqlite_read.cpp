@@ -74,8 +74,8 @@ void read_into(sqlite3* db, const char* sql, std::vector<Row>& rows, Read read) 
 }
 
 void read_evidence(sqlite3* db, Table& t) {
-  read_into(db, "SELECT name,citation,doi,kind,year FROM source ORDER BY id", t.sources,
-            [](Query& q, SourceRow& r) { q >> r.id >> r.citation >> r.doi >> r.kind >> r.year; });
+  read_into(db, "SELECT name,citation,doi,doi_basis,kind,year FROM source ORDER BY id", t.sources,
+            [](Query& q, SourceRow& r) { q >> r.id >> r.citation >> r.doi >> r.doi_basis >> r.kind >> r.year; });
   read_into(db,
             "SELECT molecule,radical,leaving,d298,u,coverage,method,provenance,note,reason,superseded,source "
             "FROM bond_row ORDER BY id",

@@ -51,8 +51,8 @@ void each(const std::vector<Row>& rows, Write write) {
 }
 
 void write_evidence(SQLite::Database& db, const Table& t) {
-  Insert source(db, "source", 6);
-  each(t.sources, [&](int id, const SourceRow& r) { source(id, r.id, r.citation, r.doi, r.kind, r.year); });
+  Insert source(db, "source", 7);
+  each(t.sources, [&](int id, const SourceRow& r) { source(id, r.id, r.citation, r.doi, r.doi_basis, r.kind, r.year); });
   Insert bond(db, "bond_row", 13);
   each(t.bond_rows, [&](int id, const BondRow& r) {
     bond(id, r.molecule, r.radical, r.leaving, r.d298, r.u, r.coverage, r.method, r.provenance, r.note, r.reason,

@@ -239,7 +239,7 @@ def help_examples(command):
 def self_test(command):
     """Each kind of check must notice a wrong expectation."""
     good = {"name": "version", "args": ["--version"], "exit": 0, "stdout": ["halostep"]}
-    table = {"name": "table", "args": ["table", "--format", "json"], "exit": 0, "json": {"/table/layout": 2}}
+    table = {"name": "table", "args": ["table", "--format", "json"], "exit": 0, "json": {"/table/layout": 3}}
     bad = [{**good, "exit": 3}, {**good, "stdout": ["nonsense"]}, {**good, "absent": ["halostep"]},
            {**good, "stderr": ["x"]}, {**table, "json": {"/table/layout": 99}}, {**table, "json": {"/nowhere": 1}},
            {**table, "json": {"/counts/sources": {"max": -1}}}, {**good, "csv": {"header": ["nonsense"]}}]

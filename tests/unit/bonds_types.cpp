@@ -7,6 +7,7 @@
 
 #include "bonds/analysis.hpp"
 #include "bonds/features.hpp"
+#include "bonds/heavy_type.hpp"
 #include "bonds/locate.hpp"
 #include "structure_read.hpp"
 
@@ -294,6 +295,37 @@ TEST(ExchangeFeatures, RepresentativeCarbons) {
   EXPECT_EQ(exchange_of("CC(F)(F)F", 0), (Counts{{base, 1}, {"alkyl on the carbon", 1}, {"beta F", 3}}));
   EXPECT_EQ(exchange_of("C1CC1", 0),
             (Counts{{base, 1}, {"alkyl on the carbon", 2}, {"pair alkyl,alkyl", 1}, {"ring of three", 1}}));
+}
+
+// Class names of halides, peroxides and azo compounds (textbook knowledge).
+TEST(HeavyType, IsCalledAsAChemistWould) {
+  const std::pair<const char*, std::vector<std::string>> cases[] = {
+      {"CCl", {"methyl C-Cl"}},
+      {"CCCl", {"primary C-Cl"}},
+      {"CC(C)I", {"secondary C-I"}},
+      {"CC(C)(C)Br", {"tertiary C-Br"}},
+      {"ClCc1ccccc1", {"benzylic C-Cl, primary"}},
+      {"C=CCBr", {"allylic C-Br, primary"}},
+      {"Clc1ccccc1", {"C-Cl, aryl"}},
+      {"C=CCl", {"C-Cl, vinyl"}},
+      {"CC(=O)Cl", {"C-Cl, acyl"}},
+      {"FC(F)(F)I", {"C-F alpha to halogen", "C-I alpha to halogen"}},
+      {"COOC", {"peroxide O-O"}},
+      {"CN=NC", {"azo C-N"}},
+      {"C[Si](C)(C)Cl", {"silyl Si-Cl"}},
+      {"CS(=O)(=O)Cl", {"sulfonyl S-Cl"}},
+      {"CSCl", {"sulfenyl S-Cl"}},
+      {"CN(C)Cl", {"N-halo N-Cl"}},
+      {"COCl", {"hypohalite O-Cl"}},
+      {"BrBr", {"halogen Br-Br"}},
+      {"ICl", {"interhalogen Cl-I"}}};
+  for (const auto& [smiles, types] : cases) {
+    const Molecule m = read(smiles);
+    const Analysis a(m);
+    std::vector<std::string> found;
+    for (const auto& b : a.heavy_bonds()) found.push_back(heavy_type(a, b));
+    EXPECT_EQ(found, types) << smiles;
+  }
 }
 
 // Which atom lost its hydrogen, also where the radical is written in another resonance form.

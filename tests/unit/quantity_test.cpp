@@ -66,21 +66,41 @@ TEST(ParseNumber, WholeTextOrNothing) {
 }
 
 TEST(ParseTemperature, UnitsAndLimits) {
-  const std::pair<std::string_view, double> good[] = {
-      {"25C", 298.15},          {"298.15K", 298.15},   {"25c", 298.15},        {"25 C", 298.15},
-      {"25 c", 298.15},         {"400  K ", 400},      {"298k", 298},          {"298 k", 298},
-      {"25\u00B0C", 298.15},    {"25 \u00B0C", 298.15}, {"25 \u00B0 C", 298.15}, {"25\u00B0c", 298.15},
-      {"25\u00A0\u00B0C", 298.15}, {"25\u2103", 298.15}, {"25\xB0" "C", 298.15}, {" 25C", 298.15},
-      {"-78C", 195.15},         {"-78 \u00B0C", 195.15}, {"0C", 273.15},       {"100K", 100},
-      {"2000K", 2000},          {"1e3K", 1000},        {"+25C", 298.15}};
+  const std::pair<std::string_view, double> good[] = {{"25C", 298.15},
+                                                      {"298.15K", 298.15},
+                                                      {"25c", 298.15},
+                                                      {"25 C", 298.15},
+                                                      {"25 c", 298.15},
+                                                      {"400  K ", 400},
+                                                      {"298k", 298},
+                                                      {"298 k", 298},
+                                                      {"25\u00B0C", 298.15},
+                                                      {"25 \u00B0C", 298.15},
+                                                      {"25 \u00B0 C", 298.15},
+                                                      {"25\u00B0c", 298.15},
+                                                      {"25\u00A0\u00B0C", 298.15},
+                                                      {"25\u2103", 298.15},
+                                                      {"25 \u00BA"
+                                                       "C",
+                                                       298.15},
+                                                      {"25\xB0"
+                                                       "C",
+                                                       298.15},
+                                                      {" 25C", 298.15},
+                                                      {"-78C", 195.15},
+                                                      {"-78 \u00B0C", 195.15},
+                                                      {"0C", 273.15},
+                                                      {"100K", 100},
+                                                      {"2000K", 2000},
+                                                      {"1e3K", 1000},
+                                                      {"+25C", 298.15}};
   for (const auto& [text, kelvin] : good) {
     const auto r = parse_temperature(text);
     ASSERT_TRUE(r.ok()) << text;
     EXPECT_NEAR(r.value(), kelvin, 1e-9) << text;
   }
-  for (const std::string_view bad :
-       {"", "C", "K", "warm", "77F", "25CC", "25KC", "1,5C", "C25", "25\u00B0", "298\u00B0K", "25\u00B0\u00B0C", "nanK",
-        "infK", "two K"}) {
+  for (const std::string_view bad : {"", "C", "K", "warm", "77F", "25CC", "25KC", "1,5C", "C25", "25\u00B0",
+                                     "298\u00B0K", "25\u00B0\u00B0C", "nanK", "infK", "two K"}) {
     const auto r = parse_temperature(bad);
     ASSERT_FALSE(r.ok()) << bad;
     EXPECT_EQ(r.error().cls, ErrorClass::usage);

@@ -22,8 +22,8 @@ Table small_table() {
   t.content_hash = std::string(64, '0');
   t.origin = "built-in";
   t.sources = {{"blanksby2003", "S. J. Blanksby, G. B. Ellison, Acc. Chem. Res. 36, 255 (2003)", "10.1021/ar020230d",
-                "evaluation", 2003},
-               {"old1970", "A book", "", "textbook", 1970}};
+                "evaluation", 2003, "read"},
+               {"old1970", "A book", "", "textbook", 1970, ""}};
   t.bond_rows = {{"C", "[CH3]", "[H]", 439.3, 0.2, "1s", "evaluated", "memory", "", "", false, 0},
                  {"C", "[CH3]", "[H]", 435.0, 4.0, "none", "measured", "memory", "", "older \"scale\", low", true, 1}};
   t.bonds = {{"C", "[CH3]", "[H]", {439.3, 0.3}, {439.3, 0.3}, -1, -1, -1, {0, 1}}};
@@ -120,7 +120,15 @@ TEST(BondsReport, SmallUncertaintyIsShown) {
   EXPECT_THAT(bonds_text(small_table(), std::vector{exact}, {}), HasSubstr("436.00"));
   Table t = small_table();
   t.bond_rows[0].u = 0.004;
-  EXPECT_THAT(table_text(t, {TableView::show, RowKind::bonds, {0}}, EnergyUnit::kj), HasSubstr("439.300     0.004  1s"));
+  EXPECT_THAT(table_text(t, {TableView::show, RowKind::bonds, {0}}, EnergyUnit::kj),
+              HasSubstr("439.300     0.004  1s"));
+}
+
+TEST(Phrases, UnreadableInputIsShownShort) {
+  const std::string text =
+      head_text({std::string(70000, 'C'), "", "", "", Error{ErrorClass::too_long, "70000 bytes", ""}});
+  EXPECT_LT(text.size(), 300u);
+  EXPECT_THAT(text, HasSubstr("CCC...\n"));
 }
 
 TEST(Phrases, ErrorIsOneLine) {

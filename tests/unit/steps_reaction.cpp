@@ -170,9 +170,7 @@ TEST(FreeStep, HeavyLabelsTakeTheNaturalFigures) {
 }
 
 // The table holds a tin hydride, so its bond is answered although tin is no element of the substrates.
-TEST(FreeStep, MetalsAreAnsweredWhereTheTableHoldsThem) {
-  EXPECT_TRUE(reaction("C[SnH](C)C>>[H].C[Sn](C)C").dh);
-}
+TEST(FreeStep, MetalsAreAnsweredWhereTheTableHoldsThem) { EXPECT_TRUE(reaction("C[SnH](C)C>>[H].C[Sn](C)C").dh); }
 
 // The class of steps without a rate model says so; an abstraction and its reverse have one.
 TEST(FreeStep, BarriersOnlyWhereTheModelSpeaks) {

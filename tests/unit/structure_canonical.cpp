@@ -298,6 +298,51 @@ TEST(OpenSmiles, StereoMarks) {
   EXPECT_EQ(same_as("C[C@@H]1CCO1"), same_as("O1CC[C@H]1C"));
 }
 
+int marked_centres(const std::string& text) {
+  int n = 0;
+  for (std::size_t i = 0; i < text.size(); ++i) n += text[i] == '@' && (i == 0 || text[i - 1] != '@');
+  return n;
+}
+
+// A centre or double bond whose inversion gives the same structure carries no mark (textbook definition of a
+// stereogenic unit: exchange of two ligands gives a stereoisomer; IUPAC Gold Book, stereogenic centre, from memory).
+TEST(OpenSmiles, NoMarkOnceTwoBranchesAreEqual) {
+  const auto fluorinated = [](std::string_view smiles, int atom) {
+    return canonical_smiles(read(smiles).with_substituent(atom, element::F));
+  };
+  EXPECT_EQ(fluorinated("C[C@H](CF)O", 0), same_as("FCC(CF)O"));
+  const auto beside = fluorinated("C[C@H](CF)[C@H](Cl)Br", 0);
+  EXPECT_EQ(marked_centres(beside), 1) << beside;
+  EXPECT_EQ(beside, same_as("FCC(CF)[C@H](Cl)Br"));
+  const auto bond = fluorinated("C/C(CF)=C/[C@H](Cl)Br", 0);
+  EXPECT_EQ(bond.find_first_of("/\\"), std::string::npos) << bond;
+  EXPECT_EQ(marked_centres(bond), 1) << bond;
+  EXPECT_EQ(same_as("C[C@H](C)[C@H](F)Cl"), same_as("CC(C)[C@H](F)Cl"));
+  // Equal branches of equal sense: the middle is none. Of opposite sense: it is one, and its forms differ.
+  EXPECT_EQ(marked_centres(same_as("C[C@H](F)[C@H](O)[C@H](F)C")), 3);
+  EXPECT_EQ(marked_centres(same_as("C[C@H](F)[C@H](O)[C@@H](F)C")), 2);
+  EXPECT_EQ(same_as("C[C@H](F)[C@H](O)[C@@H](F)C"), same_as("C[C@H](F)[C@@H](O)[C@@H](F)C"));
+  // Across a ring the marks belong together.
+  EXPECT_EQ(marked_centres(same_as("C[C@H]1CC[C@@H](C)CC1")), 2);
+  EXPECT_EQ(marked_centres(same_as("C[C@H]1CC[C@@H](F)C1")), 2);
+}
+
+// The text of a radical on a ring nitrogen reads back to itself, however its double bonds were written.
+TEST(OpenSmiles, RingNitrogenRadicals) {
+  for (const std::string_view s :
+       {"c1ccc2[nH]ccc2c1", "c1ccc2[nH]c3ccccc3c2c1", "c1ccc2[nH]cnc2c1", "Cc1c[nH]c2ccccc12", "c1cnc2[nH]ccc2c1",
+        "c1ccc2c(c1)[nH]nn2", "O=c1[nH]cnc2[nH]cnc12"}) {
+    const Molecule m = read(s);
+    for (int i = 0; i < m.atom_count(); ++i) {
+      if (m.atom(i).element != element::N || m.atom(i).hydrogens != 1) continue;
+      const auto text = canonical_smiles(m.without_hydrogen(i));
+      EXPECT_EQ(same_as(text), text) << s;
+    }
+  }
+  EXPECT_EQ(same_as("C1=Cc2ccccc2[N]1"), same_as("[N]1C=CC2=CC=CC=C21"));
+  EXPECT_EQ(same_as("[N]1C=CC2=C1C=CC=C2"), same_as("[N]1C=CC2=CC=CC=C21"));
+}
+
 // Both sides' text in one: fragments are kept apart and none is lost.
 TEST(OpenSmiles, EmptyAndLong) {
   EXPECT_EQ(canonical_smiles(Molecule{}), "");

@@ -69,6 +69,13 @@ constexpr Seeded kWords[] = {
     {"Use", "mixtures.csv", "fit", "maybe", 2, "use 'maybe' is unknown"},
     {"Type", "rates_other.csv", "halogen-transfer", "transfer", 2, "type 'transfer' is unknown"},
     {"RateUnit", "rates_other.csv", "cm3", "L/mol", 2, "unit 'L/mol' is unknown"},
+    {"DoiPrefix", "sources.csv", "10.1000/a", "11.1000/a", 2, "doi '11.1000/a' is not of the form"},
+    {"DoiDigits", "sources.csv", "10.1000/a", "10.100/a", 2, "is not of the form"},
+    {"DoiBlank", "sources.csv", "10.1000/a", "10.1000/a b", 2, "is not of the form"},
+    {"DoiLink", "sources.csv", "10.1000/a", "doi:10.1000/a", 2, "is not of the form"},
+    {"DoiBasis", "sources.csv", "/a,read", "/a,hearsay", 2, "doi_basis 'hearsay' is unknown"},
+    {"DoiWithoutBasis", "sources.csv", "/a,read", "/a,", 2, "doi_basis"},
+    {"BasisWithoutDoi", "sources.csv", "Second,,,,", "Second,,,rule,", 3, "doi_basis without a doi"},
     {"Kind", "sources.csv", "measurement", "rumour", 2, "kind 'rumour' is unknown"},
 };
 
@@ -129,9 +136,9 @@ constexpr Seeded kEvidence[] = {
     {"SourceMissing", "bonds_rx.csv", "4,none,derived,read,alpha2001", "4,none,derived,read,gamma", 3,
      "source 'gamma' is not in sources.csv"},
     {"SourceEmpty", "bonds_rh.csv", "measured,read,alpha2001", "measured,read,", 2, "source is empty"},
-    {"SourceUnused", "sources.csv", "", "gamma,Third,,,practice", 4, "source 'gamma' is used by no row"},
-    {"SourceTwice", "sources.csv", "", "beta,Third,,,practice", 4, "source 'beta' is already in line 3"},
-    {"SourceName", "sources.csv", "", "Beta,Third,,,practice", 4, "id 'Beta' is not lower-case"},
+    {"SourceUnused", "sources.csv", "", "gamma,Third,,,,practice", 4, "source 'gamma' is used by no row"},
+    {"SourceTwice", "sources.csv", "", "beta,Third,,,,practice", 4, "source 'beta' is already in line 3"},
+    {"SourceName", "sources.csv", "", "Beta,Third,,,,practice", 4, "id 'Beta' is not lower-case"},
     {"Duplicate", "bonds_rh.csv", "", "C,[CH3],439,kJ/mol,3,none,measured,read,alpha2001,current,,again", 6,
      "the same as line 2"},
     {"DuplicateInOtherSpelling", "bonds_rh.csv", "",
@@ -175,7 +182,7 @@ TEST(RefuseAll, AllFaultsAreToldInTheOrderOfFilesAndLines) {
   table.edit("mixtures.csv", "0.45", "x");
   table.edit("bonds_rh.csv", "439", "x");
   table.edit("bonds_rh.csv", "[Cl],103.15", "[Br],103.15");
-  table.append("sources.csv", "gamma,Third,,,practice");
+  table.append("sources.csv", "gamma,Third,,,,practice");
   Faults faults;
   table.read(faults);
   std::vector<std::string> told;

@@ -51,7 +51,8 @@ class SmallTable {
         "sources.csv\nbonds_rh.csv\nbonds_rx.csv\nspecies.csv\nrates_abstraction.csv\nrates_other.csv\n"
         "relative_rates.csv\nmixtures.csv\nleft_out.csv\n");
     add("sources.csv",
-        "id,citation,year,doi,kind\nalpha2001,First,2001,10.1000/a,measurement\nbeta,Second,,,evaluation\n");
+        "id,citation,year,doi,doi_basis,kind\nalpha2001,First,2001,10.1000/a,read,measurement\n"
+        "beta,Second,,,,evaluation\n");
     add("bonds_rh.csv",
         "molecule,radical,d298,unit,u,coverage,method,provenance,source,status,reason,note\n"
         "C,[CH3],439,kJ/mol,1,1s,measured,read,alpha2001,current,,\n"

@@ -1,4 +1,6 @@
 // halostep outcome: rates and shares of the C-H sites, and the comparison for one wanted site.
+#include <fmt/format.h>
+
 #include <memory>
 
 #include "common.hpp"
@@ -13,10 +15,16 @@ struct Wanted {
   std::optional<Halogen> halogen;  // of the wanted product
 };
 
+/// An unreadable value of an option, placed at the option.
+Error placed_at(const char* option, Error e) {
+  e.place = e.place.empty() ? option : fmt::format("{}, {}", option, e.place);
+  return e;
+}
+
 /// The site whose radical is the one asked for.
 Result<int> site_of_radical(const Molecule& m, std::span<const SiteOutcome> sites, const std::string& text) {
   const auto radical = parse_smiles(text, ParseMode::species);
-  if (!radical.ok()) return radical.error();
+  if (!radical.ok()) return placed_at("--site", radical.error());
   const auto hash = structure_hash(radical.value());
   for (const auto& site : sites) {
     if (structure_hash(m.without_hydrogen(site.atom)) == hash) return site.atom;
@@ -27,11 +35,12 @@ Result<int> site_of_radical(const Molecule& m, std::span<const SiteOutcome> site
 /// The site where a halogen in place of H gives the product asked for.
 Result<Wanted> site_of_product(const Molecule& m, std::span<const SiteOutcome> sites, const std::string& text) {
   const auto product = parse_smiles(text);
-  if (!product.ok()) return product.error();
+  if (!product.ok()) return placed_at("--product", product.error());
   const auto hash = structure_hash(product.value());
   for (const auto& site : sites) {
     for (const Halogen x : kAllHalogens) {
-      if (structure_hash(m.with_substituent(site.atom, halogen_element(x))) == hash) return Wanted{site.atom, "product", x};
+      if (structure_hash(m.with_substituent(site.atom, halogen_element(x))) == hash)
+        return Wanted{site.atom, "product", x};
     }
   }
   return Error{ErrorClass::domain, "no C-H site of the substrate gives " + text + " by taking up one halogen",

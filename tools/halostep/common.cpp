@@ -72,8 +72,9 @@ void add_common(CLI::App& app, Options& o) {
   app.add_option("--format", o.format, "text, json or csv")->capture_default_str();
   app.add_option("--units", o.units, "kj or kcal per mole, in text and csv; JSON keys name their unit")
       ->capture_default_str();
-  app.add_option("--table", o.table, "use this table instead of the built-in one")
-      ->check([](const std::string& path) { return std::string(path.empty() ? "a path is needed" : ""); });
+  app.add_option("--table", o.table, "use this table instead of the built-in one")->check([](const std::string& path) {
+    return std::string(path.empty() ? "a path is needed" : "");
+  });
 }
 
 void add_input(CLI::App& app, Options& o) {
@@ -89,7 +90,8 @@ void add_halogens(CLI::App& app, Options& o) {
 }
 
 void add_temperatures(CLI::App& app, Options& o) {
-  repeatable(app, "--temperature", o.temperatures, "number with unit C or K: 25C, '25 °C', 298.15K (repeatable; default 298.15K)");
+  repeatable(app, "--temperature", o.temperatures,
+             "number with unit C or K: 25C, '25 °C', 298.15K (repeatable; default 298.15K)");
 }
 
 Result<Settings> check(const Options& o) {

@@ -162,6 +162,10 @@ Result<std::vector<Input>> read_inputs(const CLI::App& app, const Options& optio
     ++number;
     if (text == "-") {
       read_file(text, reactions, out);
+    } else if (text.find_first_of("\r\n") != std::string::npos) {  // "$(cat substrates.smi)"
+      const std::size_t before = out.size();
+      read_lines(text, fmt::format("argument {}", number), reactions, out);
+      if (out.size() == before) out.push_back(from_text({}, fmt::format("argument {}", number), reactions));
     } else {
       out.push_back(from_text(text, fmt::format("argument {}", number), reactions));
     }

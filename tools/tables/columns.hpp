@@ -27,6 +27,7 @@ inline constexpr auto carrier = std::to_array<W>({"F", "Cl", "Br", "I"});
 inline constexpr auto use = std::to_array<W>({"fit", "show"});
 inline constexpr auto source_kind =
     std::to_array<W>({"measurement", "evaluation", "compilation", "textbook", "computation", "practice"});
+inline constexpr auto doi_basis = std::to_array<W>({"read", "rule", "memory"});
 inline constexpr auto step =
     std::to_array<W>({"halogen-transfer", "reverse-abstraction", "recombination", "disproportionation", "dissociation",
                       "addition", "beta-scission", "ring-opening", "elimination", "oxygen"});

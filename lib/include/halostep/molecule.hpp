@@ -104,6 +104,9 @@ class Molecule {
   /// The two radicals left when an acyclic single bond breaks (first contains bond(i).a).
   /// Precondition: bond i is single and not in a ring.
   [[nodiscard]] std::pair<Molecule, Molecule> broken(int bond) const;
+  /// The same constitution with other stereo.
+  [[nodiscard]] Molecule with_stereo(std::vector<TetrahedralStereo> tetrahedral,
+                                     std::vector<DoubleBondStereo> double_bonds) const;
   /// The fragments as molecules of their own, by first atom.
   [[nodiscard]] std::vector<Molecule> fragments() const;
 

@@ -13,11 +13,12 @@
 namespace halostep {
 
 /// Version of the table's layout this library reads.
-inline constexpr int kTableLayout = 2;
+inline constexpr int kTableLayout = 3;
 
 struct SourceRow {
   std::string id, citation, doi, kind;
   int year = 0;
+  std::string doi_basis;                   // how the DOI was obtained: read, rule, memory; empty without one
 };
 
 /// One piece of evidence for one bond; energies in kJ/mol.
