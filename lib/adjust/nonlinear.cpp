@@ -11,6 +11,7 @@ constexpr int kRounds = 12;
 constexpr int kSteps = 60;
 
 Eigen::MatrixXd jacobian(const NonlinearProblem& p, const Eigen::VectorXd& b) {
+  if (p.jacobian) return p.jacobian(b);
   Eigen::MatrixXd j(p.u.size(), b.size());
   for (Eigen::Index k = 0; k < b.size(); ++k) {
     const double h = 1e-5 * std::max(1.0, std::abs(b[k]));

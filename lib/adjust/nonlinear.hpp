@@ -10,6 +10,8 @@ namespace halostep {
 struct NonlinearProblem {
   /// Residuals (observed - model) for parameters b; same length always.
   std::function<Eigen::VectorXd(const Eigen::VectorXd&)> residual;
+  /// Derivatives of the residuals in closed form; empty: central differences.
+  std::function<Eigen::MatrixXd(const Eigen::VectorXd&)> jacobian{};
   Eigen::VectorXd u;            // standard uncertainty of each residual
   Eigen::VectorXd scale;        // share of the model scatter that a residual sees; empty: all 1
   Eigen::VectorXd start;        // starting values = prior means
@@ -27,7 +29,7 @@ struct NonlinearSolution {
   bool converged = false;
 };
 
-/// Levenberg (1944) - Marquardt (1963) steps with central differences; Huber weights (k = 2) and scatter as in
+/// Levenberg (1944) - Marquardt (1963) steps; Huber weights (k = 2) and scatter as in
 /// solve_ridge, renewed between rounds. Deterministic. Errors: table (sizes, singular normal matrix).
 Result<NonlinearSolution> solve_nonlinear(const NonlinearProblem& p);
 

@@ -84,6 +84,13 @@ const char* RateBook::thin(int x, const RateSite& s) const {
       return "a substituent without measured rates for this halogen";
     }
   }
+  int halogens = 0;
+  for (std::size_t g = 0; g < 4; ++g) halogens += s.count[g][0];
+  if (is_acyl(s.a_class) && halogens > 0 && few(kp::acyl_halide)) return "no measured rate for an acyl C-H beside halogen";
+  if (s.far_halogens > 0 && few(kp::tie)) return "no measured rate for ethers halogenated on the far side";
+  if (s.oxygens > 0 && s.count[static_cast<std::size_t>(PolarGroup::fluorine)][0] > 0 && few(kp::fluoro_ether)) {
+    return "no measured rate for F beside O on the carbon";
+  }
   return nullptr;
 }
 

@@ -6,7 +6,7 @@
 namespace halostep {
 namespace {
 
-constexpr double kPlainShare = 0.06, kShare = 0.4, kSharePerGroup = 0.15, kMostShare = 2.0;
+constexpr double kPlainShare = 0.25, kShare = 0.35, kSharePerGroup = 0.2, kMostShare = 2.0;
 
 constexpr std::array<const char*, kAClasses> kClassNames = {"alkyl",   "alpha-O", "alpha-N/S", "benzylic", "allylic",
                                                             "acyl",    "formate", "cyclopropyl", "unsaturated"};
@@ -78,6 +78,25 @@ AClass class_of(const Molecule& m, const std::vector<AtomInfo>& info, int i) {
   return a.ring == 3 ? AClass::cyclopropyl : AClass::alkyl;
 }
 
+int halogens_on(const Molecule& m, int carbon) {
+  int n = 0;
+  for (const auto& b : m.neighbours(carbon)) n += is_halogen(m.atom(b.atom).element);
+  return n;
+}
+
+// Halogens behind the oxygens on the centre: their C-X bonds take up the lone pair that would help the centre.
+void see_behind_oxygens(const Molecule& m, const std::vector<AtomInfo>& info, int centre, RateSite& s) {
+  for (const auto& n : m.neighbours(centre)) {
+    const auto kind = info[static_cast<std::size_t>(n.atom)].kind;
+    if (m.bond(n.bond).order != BondOrder::single || (kind != Substituent::oxygen && kind != Substituent::peroxy)) continue;
+    ++s.oxygens;
+    for (const auto& far : m.neighbours(n.atom)) {
+      if (far.atom == centre || m.atom(far.atom).element != element::C) continue;
+      s.far_halogens = static_cast<std::uint8_t>(s.far_halogens + halogens_on(m, far.atom));
+    }
+  }
+}
+
 }  // namespace
 
 const char* a_class_name(AClass c) noexcept { return kClassNames[static_cast<std::size_t>(c)]; }
@@ -98,6 +117,7 @@ RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int ato
   const auto& a = info[static_cast<std::size_t>(atom)];
   s.small_ring = a.ring >= 3 && a.ring <= 5 ? a.ring : 0;
   s.covered = a.hybrid == Hybrid::sp3 || a.carbonyl;
+  if (s.a_class == AClass::alpha_oxygen) see_behind_oxygens(m, info, atom, s);
   // Breadth-first over heavy atoms; the ring atoms of an aryl group count once, at their first atom.
   std::array<int, 512> queue;
   std::array<std::int8_t, 512> depth;

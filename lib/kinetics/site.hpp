@@ -30,9 +30,15 @@ struct RateSite {
   int small_ring = 0;         // 3, 4, 5 or 0
   bool covered = true;        // false where the rate model has no evidence for the kind of centre
   std::uint32_t present = 0;  // bit g set where group g has a count
+  std::uint8_t oxygens = 0;       // oxygens on the centre whose lone pair is free
+  std::uint8_t far_halogens = 0;  // halogens on the carbons behind those oxygens
   // count[group][distance-1]
   std::array<std::array<std::uint8_t, kPolarReach>, kPolarGroups> count{};
+  bool operator==(const RateSite&) const = default;
 };
+
+/// Acyl and formate C-H: the centre is a carbonyl carbon.
+inline bool is_acyl(AClass c) noexcept { return c == AClass::acyl || c == AClass::formate; }
 
 /// Share of the rate model's scatter that a site sees: alkane sites scatter little, others the more the more groups
 /// act on them.

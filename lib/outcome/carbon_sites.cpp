@@ -6,8 +6,7 @@ namespace halostep {
 namespace {
 
 bool same(const SiteKind& a, const SiteKind& b) {
-  return a.sum.empty() == b.sum.empty() && a.d.value == b.d.value && a.d.u == b.d.u && a.rate.a_class == b.rate.a_class &&
-         a.rate.carbons == b.rate.carbons && a.rate.small_ring == b.rate.small_ring && a.rate.count == b.rate.count;
+  return a.sum.empty() == b.sum.empty() && a.d.value == b.d.value && a.d.u == b.d.u && a.rate == b.rate;
 }
 
 }  // namespace

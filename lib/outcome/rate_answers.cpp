@@ -244,13 +244,9 @@ Selectivity selectivity(const CarbonSites& s, const KindRates& r, const CarrierM
   // The quadratic barrier form has the mean of the two positions as its exact mean slope at small differences.
   const double mean = 0.5 * (ra.position + rb.position);
   const double d_polar = ra.polar - rb.polar;
-  const auto shift = [&](const RateSite& q) {
-    const int c = static_cast<int>(q.a_class);
-    return c > 0 ? m.p[static_cast<std::size_t>(kp::shift_class + c - 1)] : 0.0;
-  };
   out.enthalpy = -mean * (ka.d.value - kb.d.value) / rt;
   out.polar = -(m.form.polar_outside ? 1.0 : mean) * d_polar / rt;
-  const double class_part = -mean * (shift(ka.rate) - shift(kb.rate)) / rt;
+  const double class_part = -mean * (ra.shift - rb.shift) / rt;
   out.a_factor = ra.ln_a - rb.ln_a + class_part;
   out.curvature = -(ra.barrier - rb.barrier) / rt - out.enthalpy - out.polar - class_part;
   out.statistical = std::log(static_cast<double>(s.sites[a].site->h_count) / s.sites[b].site->h_count);

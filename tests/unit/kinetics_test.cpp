@@ -26,6 +26,12 @@ Parameters random_parameters(std::mt19937& random) {
   p[kp::limit_power] = between(0.2, 0.7);
   p[kp::saturation] = between(5, 40);
   p[kp::screen] = between(0.5, 1.2);
+  p[kp::repeat] = between(0.3, 1);
+  p[kp::repeat + 1] = between(0.3, 1);
+  p[kp::alkyl_repeat] = between(0.3, 1);
+  p[kp::tie] = between(0.2, 2);
+  p[kp::oxygen_field] = between(0.2, 1);
+  p[kp::acyl_field] = between(0.2, 1);
   return p;
 }
 
@@ -42,6 +48,15 @@ RateSite random_site(std::mt19937& random) {
     for (std::size_t d = 0; d < s.count[g].size(); ++d) {
       if (random() % 4 == 0) put(s, g, d, static_cast<int>(1 + random() % 3));
     }
+  }
+  if (random() % 3 == 0) {  // few groups, so that nothing on the centre may give electrons
+    s.count.fill({});
+    s.present = 0;
+    put(s, random() % 4, 0, static_cast<int>(1 + random() % 3));
+  }
+  if (s.a_class == AClass::alpha_oxygen) {
+    s.oxygens = static_cast<std::uint8_t>(1 + random() % 2);
+    s.far_halogens = static_cast<std::uint8_t>(random() % 4);
   }
   return s;
 }
@@ -83,6 +98,10 @@ Parameters plain_form(double width) {
   p[kp::decay] = 0.5;
   p[kp::saturation] = 1e6;
   p[kp::screen] = 1;
+  p[kp::repeat] = p[kp::repeat + 1] = 1;
+  p[kp::alkyl_repeat] = 1;
+  p[kp::oxygen_field] = 1;
+  p[kp::acyl_field] = 1;
   return p;
 }
 
@@ -177,6 +196,42 @@ TEST(SiteRate, GroupsSaturate) {
     EXPECT_LT(e, 10);
     last_gain = e - last;
     last = e;
+  }
+}
+
+// Halogens on one carbon back-bond to one another, so each further one takes less (repeat < 1).
+TEST(SiteRate, FurtherHalogensOnOneCarbonCountLess) {
+  auto p = plain_form(4);
+  p[kp::repeat] = 0.5;
+  p[kp::polar_alpha] = 8;
+  const double expected[] = {8, 12, 14};
+  for (int n = 1; n <= 3; ++n) {
+    RateSite s;
+    put(s, static_cast<std::size_t>(PolarGroup::fluorine), 0, n);
+    EXPECT_NEAR(site_rate(p, {true}, s, -20, 298).polar, expected[n - 1], 1e-3);
+  }
+}
+
+// An ether oxygen helps the carbon beside it by its lone pair; C-X bonds on its other side take that up (negative
+// hyperconjugation: Roberts, Webb & McElhill, J. Am. Chem. Soc. 1950, 72, 408), and the carbon goes back to being a plain one.
+TEST(SiteRate, HalogensBehindAnOxygenHoldItsLonePair) {
+  auto p = plain_form(4);
+  p[kp::a_class + static_cast<int>(AClass::alpha_oxygen) - 1] = 1.5;
+  p[kp::shift_class + static_cast<int>(AClass::alpha_oxygen) - 1] = -5;
+  p[kp::tied_shift] = 12;
+  p[kp::tie] = 1;
+  p[kp::bare] = 7;
+  RateSite s;
+  s.a_class = AClass::alpha_oxygen;
+  s.oxygens = 1;
+  double last = 1e9;
+  for (int n = 0; n <= 3; ++n) {
+    s.far_halogens = static_cast<std::uint8_t>(n);
+    const auto r = site_rate(p, {true}, s, -20, 298);
+    EXPECT_NEAR(r.shift, (-5.0 + 12.0 * n) / (1 + n), 1e-12);
+    EXPECT_NEAR(r.polar, 7.0 * n / (1 + n), 1e-12);
+    EXPECT_LT(r.ln_k, last);
+    last = r.ln_k;
   }
 }
 

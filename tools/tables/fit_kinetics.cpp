@@ -3,222 +3,17 @@
 #include <algorithm>
 #include <cmath>
 #include <numeric>
-#include <optional>
 
 #include "adjust/nonlinear.hpp"
-#include "bonds/answers.hpp"
-#include "bonds/locate.hpp"
+#include "kinetics/gradient.hpp"
 #include "tables/fit_bonds.hpp"
-#include "halostep/structure.hpp"
 
 namespace halostep {
 namespace {
 
 constexpr const char* kNames[] = {"F", "Cl", "Br", "I"};
-constexpr int kNumbers[] = {9, 17, 35, 53};
-const double kLn10 = std::log(10.0);
-
-int carrier_index(const std::string& c) {
-  for (int i = 0; i < 4; ++i) {
-    if (c == kNames[i] || c == std::string(kNames[i]) + "2") return i;
-  }
-  return -1;
-}
-
-struct Prepared {
-  Molecule m;
-  std::vector<AtomInfo> info;
-  std::vector<int> classes;
-  std::string text;
-};
-
-std::optional<Prepared> prepare(const std::string& smiles) {
-  auto m = parse_smiles(smiles, ParseMode::species);
-  if (!m.ok()) return std::nullopt;
-  Prepared p{std::move(m).value(), {}, {}, {}};
-  p.info = environment(p.m);
-  p.classes = symmetry_classes(p.m);
-  p.text = canonical_smiles(p.m, false);
-  return p;
-}
-
-class Sampler {
- public:
-  Sampler(const Table& t, const BondModel& b) : book_(t, b) {
-    for (int x = 0; x < 4; ++x) {
-      const auto hx = parse_smiles(kNames[x], ParseMode::species);
-      const int e = hx.ok() ? b.measured(canonical_smiles(hx.value(), false), std::string("[") + kNames[x] + "]", "[H]") : -1;
-      d_hx_[x] = e < 0 ? 0.0 : t.bonds[static_cast<std::size_t>(e)].d298.value;
-    }
-  }
-
-  std::optional<RatedSite> rated(const Prepared& p, const HydrogenSite& h, int carrier) const {
-    RatedSite r;
-    r.site = rate_site(p.m, p.info, h.atom);
-    r.h_count = h.h_count;
-    if (!r.site.covered) return std::nullopt;
-    // The D a user of the engine gets.
-    const auto d = book_.hydrogen(Analysis(p.m, false), h, false).d;
-    if (!d) return std::nullopt;
-    r.dh = d->value - d_hx_[carrier];
-    r.u_dh = d->u;
-    return r;
-  }
-
-  // Sites of `radical` ("total": every C-H site the model covers); empty when the row cannot be used.
-  std::vector<RatedSite> sites(const Prepared& p, const std::string& radical, int carrier) const {
-    std::vector<RatedSite> out;
-    int wanted = -1;
-    if (radical != "total") {
-      const auto r = parse_smiles(radical, ParseMode::species);
-      if (!r.ok()) return out;
-      wanted = find_site(p.m, p.classes, r.value());
-      if (wanted < 0) return out;
-    }
-    for (const auto& h : hydrogen_sites(p.m, p.classes)) {
-      if (wanted >= 0 ? h.atom != wanted : p.m.atom(h.atom).element != element::C) continue;
-      if (p.m.atom(h.atom).element != element::C) return {};
-      auto r = rated(p, h, carrier);
-      if (r) out.push_back(*r);
-      else if (wanted >= 0 || p.info[static_cast<std::size_t>(h.atom)].hybrid == Hybrid::sp3) return {};
-    }
-    return out;
-  }
-
- private:
-  BondBook book_;
-  double d_hx_[4] = {};
-};
-
-int heavy_atoms(const Molecule& m) {
-  int n = 0;
-  for (int i = 0; i < m.atom_count(); ++i) n += m.atom(i).element > 1;
-  return n;
-}
-
-double row_ln_k(const RateRow& r, double t) {
-  if (!r.a) return std::log(*r.k298);
-  return std::log(*r.a) + r.n * std::log(t / 298.0) - *r.ea / (kGasConstant * t);
-}
-
-// ln of a rate coefficient that flow and photolysis methods reach, cm3 molecule-1 s-1.
-const double kMeasurable = std::log(1e-15);
-
-// Temperatures at which a row speaks: its own range where it has one.
-std::vector<double> row_temperatures(const RateRow& r) {
-  const bool range = r.t_min && r.t_max;
-  if (range && r.a && *r.t_max - *r.t_min < 40) return {0.5 * (*r.t_min + *r.t_max)};
-  if (!range || !r.a) {
-    // Slow rates are measured hot: without a stated range a row speaks where it first reaches what can be measured.
-    double t = kReferenceTemperature;
-    while (r.a && row_ln_k(r, t) < kMeasurable && t < 700) t += 10;
-    return {t};
-  }
-  const double lo = std::max(*r.t_min, 200.0), hi = std::min(*r.t_max, 900.0);
-  if (lo < 290 && hi > 306) return {lo, 298.15, 0.5 * (298.15 + hi), hi};
-  return {lo, 0.5 * (lo + hi), hi};
-}
-
-// The site that becomes `product` by taking the halogen; its H in `h_count`, -1 when there is none.
-int site_of_product(const Prepared& p, const std::string& product, int carrier, int& h_count) {
-  const auto wanted = prepare(product);
-  if (!wanted) return -1;
-  for (const auto& h : hydrogen_sites(p.m, p.classes)) {
-    if (canonical_smiles(p.m.with_substituent(h.atom, kNumbers[carrier]), false) != wanted->text) continue;
-    h_count = h.h_count;
-    return h.atom;
-  }
-  return -1;
-}
-
-// A mixture of monohalides speaks of ratios only: each product against the most abundant one, per H.
-void add_mixtures(const Table& t, const Sampler& sampler, std::vector<RateSample>& out) {
-  const auto same = [](const MixtureRow& a, const MixtureRow& b) {
-    return a.reagent == b.reagent && a.molecule == b.molecule && a.t == b.t && a.medium == b.medium && a.source == b.source;
-  };
-  for (std::size_t i = 0; i < t.mixtures.size(); ++i) {
-    const auto& r = t.mixtures[i];
-    const int x = carrier_index(r.reagent);
-    if (r.superseded || !r.fitted || x < 0 || r.medium != "gas" || !(r.fraction > 0)) continue;
-    const auto* top = &r;
-    for (const auto& q : t.mixtures) {
-      if (same(q, r) && !q.superseded && q.fraction > top->fraction) top = &q;
-    }
-    const auto p = prepare(r.molecule);
-    int n = 0, n_top = 0;
-    const int site = p ? site_of_product(*p, r.product, x, n) : -1, reference = p ? site_of_product(*p, top->product, x, n_top) : -1;
-    if (site < 0 || reference < 0 || site == reference) continue;
-    RateSample s;
-    s.carrier = x;
-    s.relative = true;
-    s.molecule = p->text;
-    s.sites = sampler.sites(*p, canonical_smiles(p->m.without_hydrogen(site)), x);
-    s.reference = sampler.sites(*p, canonical_smiles(p->m.without_hydrogen(reference)), x);
-    s.temperature = r.t;
-    s.ln_value = std::log(r.fraction / n / (top->fraction / n_top));
-    // Fractions are good to about two points.
-    s.u = std::hypot(0.02 / r.fraction, 0.02 / top->fraction);
-    if (!s.sites.empty() && !s.reference.empty()) out.push_back(std::move(s));
-  }
-}
 
 }  // namespace
-
-std::vector<RateSample> rate_samples(const Table& t, const BondModel& bonds) {
-  const Sampler sampler(t, bonds);
-  std::vector<RateSample> out;
-  for (std::size_t i = 0; i < t.rates.size(); ++i) {
-    const auto& r = t.rates[i];
-    if (r.superseded || !r.fitted || r.carrier.empty()) continue;
-    const int x = carrier_index(r.carrier);
-    const auto p = prepare(r.molecule);
-    if (x < 0 || !p) continue;
-    RateSample s;
-    s.carrier = x;
-    s.molecule = p->text;
-    s.sites = sampler.sites(*p, r.radical, x);
-    s.heavy = heavy_atoms(p->m);
-    s.row = static_cast<int>(i);
-    if (s.sites.empty()) continue;
-    if (!r.k298 && !r.a) {
-      if (!r.ea) continue;
-      s.ea_only = true;
-      s.ea = *r.ea;
-      s.temperature = r.t_min && r.t_max ? 0.5 * (*r.t_min + *r.t_max) : 450.0;
-      s.u = 4.0;
-      out.push_back(std::move(s));
-      continue;
-    }
-    const auto temps = row_temperatures(r);
-    for (const double temperature : temps) {
-      s.temperature = temperature;
-      s.ln_value = row_ln_k(r, temperature);
-      // Points of one row share its error: each counts as part of one observation.
-      s.u = kLn10 * std::max(r.u_log10, 0.03) * std::sqrt(static_cast<double>(temps.size()));
-      out.push_back(s);
-    }
-  }
-  for (std::size_t i = 0; i < t.relative_rates.size(); ++i) {
-    const auto& r = t.relative_rates[i];
-    const int x = carrier_index(r.reagent);
-    if (r.superseded || !r.fitted || x < 0 || !(r.ratio > 0)) continue;
-    const auto p = prepare(r.molecule), q = prepare(r.reference_molecule);
-    if (!p || !q) continue;
-    RateSample s;
-    s.carrier = x;
-    s.relative = true;
-    s.molecule = p->text;
-    s.sites = sampler.sites(*p, r.radical, x);
-    s.reference = sampler.sites(*q, r.reference_radical, x);
-    s.row = static_cast<int>(i);
-    s.temperature = r.t;
-    s.ln_value = std::log(r.ratio);
-    s.u = kLn10 * std::max(r.u_log10, 0.05);
-    if (!s.sites.empty() && !s.reference.empty()) out.push_back(std::move(s));
-  }
-  add_mixtures(t, sampler, out);
-  return out;
-}
 
 double model_ln(const std::vector<double>& p, const KineticForm& form, const RateSample& s) {
   const auto sum = [&](const std::vector<RatedSite>& sites, double temperature) {
@@ -234,122 +29,182 @@ double model_ln(const std::vector<double>& p, const KineticForm& form, const Rat
   return std::log(limited_total(sum(s.sites, s.temperature), limit));
 }
 
-KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
-  KineticStart k;
-  k.start.assign(kp::total, 0.0);
-  k.prior.assign(kp::total, 1e-6);
-  const auto set = [&](int i, double v, double sd) {
-    k.start[static_cast<std::size_t>(i)] = v;
-    k.prior[static_cast<std::size_t>(i)] = sd;
-  };
-  set(kp::decay, 0.45, 0.03);
-  set(kp::ln_limit, std::log(2e-10), 0.5);
-  set(kp::limit_power, 0.45, 0.15);
-  set(kp::saturation, cl ? (*cl)[kp::saturation] : 20.0, cl ? 3.0 : 3.0);
-  set(kp::screen, cl ? (*cl)[kp::screen] : 0.6, cl ? 0.1 : 0.2);
-  set(kp::bare, 0.0, 1.0);
-  // The late transition states of Br and I loosen with each alkyl group; those of F and Cl are loose from the start.
-  set(kp::a_alkyl, 0.0, carrier > 1 ? 0.5 : 1e-6);
-  for (int c = 1; c < kAClasses; ++c) {
-    set(kp::a_class + c - 1, 0.0, 0.7);
-    set(kp::shift_class + c - 1, 0.0, 4.0);
+namespace {
+
+// d ln(sum over sites of their k) times `factor`, added to `out`; returns that sum.
+double add_gradient(const std::vector<double>& p, const KineticForm& form, const std::vector<RatedSite>& sites, double temperature,
+                    double factor, std::vector<double>& out) {
+  double sum = 0;
+  std::vector<SiteRate> at;
+  for (const auto& r : sites) {
+    at.push_back(site_rate(p, form, r.site, r.dh, temperature));
+    sum += r.h_count * std::exp(at.back().ln_k);
   }
-  const double scale = carrier == 1 ? 1.0 : carrier == 0 ? 0.35 : 1.0;
-  for (int g = 0; g < kPolarGroups; ++g) {
-    const auto a = static_cast<std::size_t>(kp::polar_alpha + g), b = static_cast<std::size_t>(kp::polar_beyond + g);
-    k.start[a] = cl ? scale * (*cl)[a] : conjugates(g) ? 10.0 : 6.0;
-    k.start[b] = cl ? scale * (*cl)[b] : 3.0;
-    // The late transition states of Br and I may feel conjugation otherwise than chlorine's early ones.
-    k.prior[a] = carrier == 1 ? 6.0 : carrier > 1 && conjugates(g) ? 8.0 : 3.0;
-    k.prior[b] = carrier == 1 ? 6.0 : 3.0;
+  for (std::size_t i = 0; i < sites.size(); ++i) {
+    const double share = factor * sites[i].h_count * std::exp(at[i].ln_k) / sum;
+    for (const auto& g : rate_gradient(p, form, sites[i].site, at[i], temperature).parameters) {
+      out[static_cast<std::size_t>(g.parameter)] += share * g.value;
+    }
   }
-  k.form.polar_outside = true;
-  switch (carrier) {
-    case 0:
-      set(kp::ln_a, std::log(5e-11), 1.0);
-      set(kp::tightness, 0.0, 1e-6);
-      set(kp::exponent, 0.5, 0.3);
-      set(kp::shift, 0.0, 1e-6);
-      set(kp::width, 16.0, 5.0);
-      set(kp::ln_limit, std::log(4e-10), 0.5);
-      set(kp::alkyl, 0.0, 1.0);
-      k.form.polar_outside = true;
-      break;
-    case 1:
-      set(kp::ln_a, std::log(6e-11), 0.5);
-      set(kp::tightness, 2.5, 1.0);
-      set(kp::exponent, -0.5, 0.3);
-      set(kp::shift, 10.0, 3.0);
-      set(kp::width, 4.0, 1.0);
-      set(kp::alkyl, 0.0, 0.3);
-      break;
-    default:
-      set(kp::ln_a, std::log(6e-11), 1.0);
-      set(kp::tightness, 0.0, 1e-6);
-      set(kp::exponent, 0.3, 0.2);
-      set(kp::shift, 3.0, 6.0);
-      set(kp::width, 3.0, 1.5);
-      set(kp::alkyl, -3.0, 6.0);
-  }
-  return k;
+  return sum;
 }
 
-Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* cl,
-                                 double floor) {
+}  // namespace
+
+std::vector<double> model_gradient(const std::vector<double>& p, const KineticForm& form, const RateSample& s) {
+  std::vector<double> out(p.size(), 0.0);
+  const double sum = add_gradient(p, form, s.sites, s.temperature, 1, out);
+  if (s.relative) {
+    add_gradient(p, form, s.reference, s.temperature, -1, out);
+    return out;
+  }
+  const double q = sum / encounter_limit(p, s.heavy), q3 = q * q * q;
+  for (auto& g : out) g /= 1 + q3;
+  out[kp::ln_limit] = q3 / (1 + q3);
+  out[kp::limit_power] = out[kp::ln_limit] * std::log(static_cast<double>(s.heavy));
+  return out;
+}
+
+namespace {
+
+constexpr double kFixed = 1e-5;  // a smaller prior deviation holds a parameter
+
+double residual_of(const std::vector<double>& v, const KineticForm& form, const RateSample& s) {
+  if (!s.ea_only) return s.ln_value - model_ln(v, form, s);
+  RateSample up = s, down = s;
+  up.temperature += 1;
+  down.temperature -= 1;
+  return s.ea - kGasConstant * s.temperature * s.temperature * (model_ln(v, form, up) - model_ln(v, form, down)) / 2;
+}
+
+// d residual / d parameters.
+std::vector<double> slope_of(const std::vector<double>& v, const KineticForm& form, const RateSample& s) {
+  auto out = model_gradient(v, form, s);
+  if (s.ea_only) {
+    RateSample up = s, down = s;
+    up.temperature += 1;
+    down.temperature -= 1;
+    out = model_gradient(v, form, up);
+    const auto low = model_gradient(v, form, down);
+    for (std::size_t i = 0; i < out.size(); ++i) out[i] = kGasConstant * s.temperature * s.temperature * (out[i] - low[i]) / 2;
+  }
+  for (auto& g : out) g = -g;
+  return out;
+}
+
+// Variance of ln k from the uncertainty of the bonds.
+double bond_variance(const std::vector<double>& v, const KineticForm& form, const RateSample& s) {
+  double sum = 0, variance = 0;
+  for (const auto* sites : {&s.sites, &s.reference}) {
+    sum = 0;
+    for (const auto& r : *sites) sum += r.h_count * std::exp(site_rate(v, form, r.site, r.dh, s.temperature).ln_k);
+    for (const auto& r : *sites) {
+      const auto at = site_rate(v, form, r.site, r.dh, s.temperature);
+      const double d = r.h_count * std::exp(at.ln_k) / sum * rate_gradient(v, form, r.site, at, s.temperature).dh * r.u_dh;
+      variance += d * d;
+    }
+  }
+  return variance;
+}
+
+// Least scatter that, beside the errors of rows and bonds, has 95 % of the rows within 2 u: what answers may claim.
+double claimed_scatter(const std::vector<const RateSample*>& rows, const std::vector<double>& v, const KineticForm& form,
+                       const Eigen::VectorXd& scale, double floor) {
+  std::vector<double> least;
+  for (std::size_t i = 0; i < rows.size(); ++i) {
+    if (rows[i]->ea_only) continue;
+    const double r = residual_of(v, form, *rows[i]) / 2, rest = r * r - rows[i]->u * rows[i]->u - bond_variance(v, form, *rows[i]);
+    least.push_back(std::sqrt(std::max(0.0, rest)) / scale[static_cast<Eigen::Index>(i)]);
+  }
+  if (least.empty()) return floor;
+  std::sort(least.begin(), least.end());
+  return std::max(floor, least[std::min(least.size() - 1, static_cast<std::size_t>(0.95 * static_cast<double>(least.size())))]);
+}
+
+std::vector<int> supports(const std::vector<const RateSample*>& rows, const KineticStart& k) {
+  std::vector<int> support(kp::total, 0);
+  for (const auto* m : rows) {
+    std::vector<bool> touched(kp::total, false);
+    for (const auto& r : m->sites) {
+      const auto at = site_rate(k.start, k.form, r.site, r.dh, m->temperature);
+      for (const auto& g : rate_gradient(k.start, k.form, r.site, at, m->temperature).parameters) {
+        if (g.value != 0) touched[static_cast<std::size_t>(g.parameter)] = true;
+      }
+    }
+    for (std::size_t i = 0; i < touched.size(); ++i) support[i] += touched[i];
+  }
+  return support;
+}
+
+}  // namespace
+
+std::vector<const RateSample*> of_carrier(const std::vector<RateSample>& samples, int carrier) {
   std::vector<const RateSample*> mine;
   for (const auto& s : samples) {
     if (s.carrier == carrier) mine.push_back(&s);
   }
-  const auto k = kinetic_start(carrier, cl);
+  return mine;
+}
+
+Result<KineticFit> fit_form(const std::vector<const RateSample*>& rows, const KineticStart& k, double floor) {
+  std::vector<Eigen::Index> free;
+  for (std::size_t i = 0; i < k.prior.size(); ++i) {
+    if (k.prior[i] > kFixed) free.push_back(static_cast<Eigen::Index>(i));
+  }
+  const Eigen::Map<const Eigen::VectorXd> start(k.start.data(), kp::total), prior(k.prior.data(), kp::total);
+  const auto n = static_cast<Eigen::Index>(rows.size());
   NonlinearProblem p;
-  const auto n = static_cast<Eigen::Index>(mine.size());
-  p.start = Eigen::Map<const Eigen::VectorXd>(k.start.data(), kp::total);
-  p.prior = Eigen::Map<const Eigen::VectorXd>(k.prior.data(), kp::total);
+  p.start = start(free);
+  p.prior = prior(free);
   p.u.resize(n);
   p.scale.resize(n);
   for (Eigen::Index i = 0; i < n; ++i) {
-    const auto& s = *mine[static_cast<std::size_t>(i)];
+    const auto& s = *rows[static_cast<std::size_t>(i)];
     p.u[i] = s.u;
     p.scale[i] = 0;
     for (const auto& r : s.sites) p.scale[i] = std::max(p.scale[i], scatter_share(r.site));
   }
   p.scatter_floor = floor;
+  const auto whole = [&](const Eigen::VectorXd& b) {
+    Eigen::VectorXd v = start;
+    v(free) = b;
+    return std::vector<double>(v.data(), v.data() + v.size());
+  };
   p.residual = [&](const Eigen::VectorXd& b) {
-    const std::vector<double> v(b.data(), b.data() + b.size());
+    const auto v = whole(b);
     Eigen::VectorXd r(n);
-    for (Eigen::Index i = 0; i < n; ++i) {
-      const auto& s = *mine[static_cast<std::size_t>(i)];
-      if (s.ea_only) {
-        RateSample up = s, down = s;
-        up.temperature += 1;
-        down.temperature -= 1;
-        const double ea = kGasConstant * s.temperature * s.temperature * (model_ln(v, k.form, up) - model_ln(v, k.form, down)) / 2;
-        r[i] = s.ea - ea;
-      } else {
-        r[i] = s.ln_value - model_ln(v, k.form, s);
-      }
-    }
+    for (Eigen::Index i = 0; i < n; ++i) r[i] = residual_of(v, k.form, *rows[static_cast<std::size_t>(i)]);
     return r;
   };
-  auto s = solve_nonlinear(p);
-  if (!s.ok()) return s.error();
-  std::vector<int> support(kp::total, 0);
-  for (const auto* m : mine) {
-    std::vector<bool> touched(kp::total, false);
-    for (const auto& r : m->sites) {
-      if (const int c = static_cast<int>(r.site.a_class); c > 0) touched[static_cast<std::size_t>(kp::a_class + c - 1)] = touched[static_cast<std::size_t>(kp::shift_class + c - 1)] = true;
-      else touched[kp::ln_a] = true;
-      for (int g = 0; g < kPolarGroups; ++g) {
-        const auto& c = r.site.count[static_cast<std::size_t>(g)];
-        if (c[0]) touched[static_cast<std::size_t>(kp::polar_alpha + g)] = true;
-        if (std::any_of(c.begin() + 1, c.end(), [](int q) { return q > 0; })) touched[static_cast<std::size_t>(kp::polar_beyond + g)] = true;
-      }
+  p.jacobian = [&](const Eigen::VectorXd& b) {
+    const auto v = whole(b);
+    Eigen::MatrixXd j(n, b.size());
+    for (Eigen::Index i = 0; i < n; ++i) {
+      const auto slope = slope_of(v, k.form, *rows[static_cast<std::size_t>(i)]);
+      for (Eigen::Index q = 0; q < b.size(); ++q) j(i, q) = slope[static_cast<std::size_t>(free[static_cast<std::size_t>(q)])];
     }
-    for (std::size_t i = 0; i < touched.size(); ++i) support[i] += touched[i];
-  }
-  return pack_model(std::string("kinetics.") + kNames[carrier], kinetic_parameter_names(), s.value().b, s.value().covariance,
-                    std::move(support),
-                    {{"scatter", s.value().scatter}, {"rows", static_cast<double>(n)}, {"effective parameters", s.value().effective},
+    return j;
+  };
+  const auto s = solve_nonlinear(p);
+  if (!s.ok()) return s.error();
+  Eigen::MatrixXd c = Eigen::MatrixXd::Zero(kp::total, kp::total);
+  c(free, free) = s.value().covariance;
+  const auto values = whole(s.value().b);
+  return KineticFit{values, std::vector<double>(c.data(), c.data() + c.size()), claimed_scatter(rows, values, k.form, p.scale, floor),
+                    s.value().effective};
+}
+
+Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* cl,
+                                 double floor) {
+  const auto mine = of_carrier(samples, carrier);
+  const auto k = kinetic_start(carrier, cl);
+  const auto s = fit_form(mine, k, floor);
+  if (!s.ok()) return s.error();
+  const auto& f = s.value();
+  return pack_model(std::string("kinetics.") + kNames[carrier], kinetic_parameter_names(),
+                    Eigen::Map<const Eigen::VectorXd>(f.values.data(), kp::total),
+                    Eigen::Map<const Eigen::MatrixXd>(f.covariance.data(), kp::total, kp::total), supports(mine, k),
+                    {{"scatter", f.scatter}, {"rows", static_cast<double>(mine.size())}, {"effective parameters", f.effective},
                      {"polar outside", k.form.polar_outside ? 1.0 : 0.0}});
 }
 

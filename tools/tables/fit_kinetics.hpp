@@ -38,6 +38,18 @@ struct KineticStart {
 KineticStart kinetic_start(int carrier, const std::vector<double>* chlorine);
 /// Model value matching sample.ln_value.
 double model_ln(const std::vector<double>& p, const KineticForm& form, const RateSample& s);
+/// Its derivatives by all parameters.
+std::vector<double> model_gradient(const std::vector<double>& p, const KineticForm& form, const RateSample& s);
+
+/// The fit of one carrier's rows from these starts; parameters with a tiny prior deviation stay where they are.
+struct KineticFit {
+  std::vector<double> values, covariance;  // row-major
+  double scatter = 0, effective = 0;
+};
+Result<KineticFit> fit_form(const std::vector<const RateSample*>& rows, const KineticStart& k, double floor);
+/// Rows of one carrier.
+std::vector<const RateSample*> of_carrier(const std::vector<RateSample>& samples, int carrier);
+
 /// `floor`: least scatter of ln k the model may claim; a carrier with few rows takes chlorine's.
 Result<FittedModel> fit_kinetics(const std::vector<RateSample>& samples, int carrier, const std::vector<double>* chlorine,
                                  double floor = 0.02);

@@ -90,6 +90,15 @@ std::string calibration_markdown(const Section& s) {
 
 }  // namespace
 
+double rms_of(const std::vector<double>& e) { return figures(e).rms; }
+
+double quantile_of(std::vector<double> e, double q) {
+  if (e.empty()) return 0;
+  for (auto& v : e) v = std::abs(v);
+  std::sort(e.begin(), e.end());
+  return e[std::min(e.size() - 1, static_cast<std::size_t>(q * static_cast<double>(e.size())))];
+}
+
 std::string section_markdown(const Section& s) {
   std::string out = fmt::format("## {}\n\n{}\n\n", s.title, s.note);
   out += fmt::format("Errors in {}. Naive rule on the same rows: {}.\n\n", s.unit, s.naive);
@@ -105,6 +114,8 @@ std::string section_markdown(const Section& s) {
                        number(n.rms, naive), c.refused);
   }
   out += calibration_markdown(s);
+  if (!s.remarks.empty()) out += "\n";
+  for (const auto& r : s.remarks) out += "- " + r + "\n";
   auto rows = s.rows;
   std::sort(rows.begin(), rows.end(), [](const auto& a, const auto& b) { return a.first != b.first ? a.first > b.first : a.second < b.second; });
   if (!rows.empty()) out += "\nFarthest:\n\n";
@@ -134,6 +145,7 @@ nlohmann::json section_json(const Section& s) {
     }
     out["classes"].push_back(std::move(one));
   }
+  out["remarks"] = s.remarks;
   return out;
 }
 

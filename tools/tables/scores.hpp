@@ -32,9 +32,14 @@ struct Section {
   int decimals = 2;
   std::map<std::string, Score> classes;
   std::vector<std::pair<double, std::string>> rows;  // |error|, what
+  std::vector<std::string> remarks{};                // printed below the table
 
   void row(double error, std::string what) { rows.emplace_back(error < 0 ? -error : error, std::move(what)); }
 };
+
+/// Root mean square, and the quantile q of the absolute values; 0 of nothing.
+double rms_of(const std::vector<double>& e);
+double quantile_of(std::vector<double> e, double q);
 
 std::string section_markdown(const Section& s);
 nlohmann::json section_json(const Section& s);

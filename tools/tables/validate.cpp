@@ -31,6 +31,14 @@ Validation sections() {
                 "per H primary : secondary : tertiary 1:3.8:5 (Cl), 1:82:1600 (Br), 1:1.2:1.4 (F)",
                 "Every measured mixture with two or more products whose molecule is held out, the shares of its products alone. "
                 "Not counted: compositions computed back from scales or rate expressions, limits, textbook figures.", 3, {}, {}};
+  v.temperatures = {"temperatures", "Rate coefficients with temperature", "log10 k", "none",
+                    "Rows with a range of 40 K or more: five temperatures over their own range within 200 to 700 K, beside the one nearest 298 K.", 2, {}, {}};
+  v.ratios = {"ratios", "Relative rates per H", "log10 of the ratio", "per H as for mixtures",
+              "Relative rates of two sites (self-references left out); rows set aside in the table and complexing solvents apart.", 2, {}, {}};
+  v.reverse = {"reverse", "Activation energies of R + HX", "kJ/mol", "none",
+               "Ea of the forward step at the middle of the range less dH(T) there, against measured ones. R + HX itself is in no fit.", 1, {}, {}};
+  v.forms = {"forms", "What each term buys", "log10 k", "none",
+             "Cl, rows near 298 K, the same folds: forms of the rate model, each with the terms of the one before, fitted anew.", 3, {}, {}};
   return v;
 }
 
@@ -61,32 +69,49 @@ bool validate_bonds(const Table& table, Validation& v) {
   return true;
 }
 
-}  // namespace
-
-int validate(const Table& table, const std::string& markdown, const std::string& json) {
-  auto v = sections();
-  if (!validate_bonds(table, v)) return 1;
+// `fitted`: the same rows with models of all of them.
+bool judge_folds(const Table& table, const Table& fitted, Validation& v) {
   Folds folds(kFolds);
+  const auto whole = Engine::from_table(fitted);
   for (int f = 0; f < kFolds; ++f) {
     Table t = without_fold(table, folds, f);
     auto models = fit_models(t);
     if (!models.ok()) {
       fmt::print(stderr, "fold {}: {}\n", f, models.error().message);
-      return 1;
+      return false;
     }
     t.models = std::move(models).value();
     const auto engine = Engine::from_table(std::move(t));
     const FoldView view{table, engine.value(), folds, f};
     judge_rates(view, v);
     judge_mixtures(view, v);
+    judge_ratios(view, v);
+    judge_reverse(view, whole.value(), v);
+    judge_forms(view, v);
   }
+  return true;
+}
+
+}  // namespace
+
+int validate(const Table& table, const std::string& markdown, const std::string& json) {
+  auto v = sections();
+  Table fitted = table;
+  auto all = fit_models(table);
+  if (!all.ok()) {
+    fmt::print(stderr, "{}\n", all.error().message);
+    return 1;
+  }
+  fitted.models = std::move(all).value();
+  if (!validate_bonds(table, v) || !judge_folds(table, fitted, v) || !judge_alone(table, v)) return 1;
+  finish_rates(fitted, v);
   std::string text = fmt::format(
       "# Validation\n\nWritten by `halostep-tables validate`. Molecules are held out of every file of the table at once, in {} folds ({} for bonds); "
       "molecules with the same kinds of C-H site (homologues) share a fold. All models are fitted anew for each fold and asked "
       "through the engine. Table {}.\n\n", kFolds, kBondFolds, content_hash(table).substr(0, 16));
   nlohmann::json doc = {{"schema", "halostep.validation/1"}, {"folds", kFolds}, {"bond_folds", kBondFolds}, {"sections", nlohmann::json::array()}};
   judge_sources(table, v.sources);
-  for (const auto* s : {&v.bonds, &v.halides, &v.sources, &v.rates, &v.mixtures}) {
+  for (const auto* s : {&v.bonds, &v.halides, &v.sources, &v.rates, &v.temperatures, &v.forms, &v.reverse, &v.ratios, &v.mixtures}) {
     text += section_markdown(*s);
     doc["sections"].push_back(section_json(*s));
   }

@@ -1,6 +1,8 @@
 // How well the engine meets molecules it has not seen.
 #pragma once
+#include <map>
 #include <string>
+#include <vector>
 
 #include "halostep/engine.hpp"
 #include "tables/hold_out.hpp"
@@ -8,9 +10,18 @@
 
 namespace halostep {
 
+/// One rate coefficient judged.
+struct JudgedRate {
+  std::string carrier;
+  double error = 0, u = 0;  // log10; u of the model
+  bool marked = false;      // as extrapolated
+};
+
 /// Everything judged, over all folds.
 struct Validation {
-  Section bonds, halides, sources, rates, mixtures;
+  Section bonds, halides, sources, rates, mixtures, temperatures, ratios, reverse, forms;
+  std::vector<JudgedRate> rows;
+  std::map<std::string, std::vector<double>> ranges;  // share of pairs ordered right, by class: 1 or 0
 };
 
 /// One fold: `engine` has not seen its molecules, `full` has the values that judge.
@@ -26,6 +37,13 @@ void judge_bonds(const FoldView& v, Validation& out);
 void judge_sources(const Table& t, Section& s);
 void judge_rates(const FoldView& v, Validation& out);
 void judge_mixtures(const FoldView& v, Validation& out);
+void judge_ratios(const FoldView& v, Validation& out);
+void judge_reverse(const FoldView& v, const Engine& whole, Validation& out);
+void judge_forms(const FoldView& v, Validation& out);
+/// Molecules whose bonds stay while their rates alone are left out.
+bool judge_alone(const Table& table, Validation& out);
+/// What is said of all rows together.
+void finish_rates(const Table& table, Validation& out);
 
 /// Prints the report; writes it to the files named (empty: not). Exit code of the command.
 int validate(const Table& table, const std::string& markdown, const std::string& json);

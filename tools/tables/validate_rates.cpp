@@ -2,11 +2,12 @@
 
 #include <algorithm>
 #include <cmath>
-#include <limits>
+#include <optional>
 
 #include "bonds/environment.hpp"
 #include "bonds/locate.hpp"
 #include "halostep/structure.hpp"
+#include "tables/fit.hpp"
 #include "tables/validate.hpp"
 
 namespace halostep {
@@ -24,8 +25,10 @@ std::string class_of(const Molecule& m, const std::string& carrier) {
   }
   for (int i = 0; i < m.bond_count(); ++i) unsaturated = unsaturated || m.bond(i).order != BondOrder::single;
   std::string name = "other organics";
-  if (carbon_only && !unsaturated) name = m.atom_count() == 1 ? "methane" : "alkanes, cycloalkanes";
-  else if (halogen && !other && !unsaturated) name = "haloalkanes";
+  if (carbon_only && !unsaturated)
+    name = m.atom_count() == 1 ? "methane" : "alkanes, cycloalkanes";
+  else if (halogen && !other && !unsaturated)
+    name = "haloalkanes";
   if (m.atom_count() == 3 && m.ring_count() == 1 && carbon_only) name = "cyclopropane";
   return carrier + " + " + name;
 }
@@ -53,45 +56,168 @@ double naive_log_k(const std::vector<SiteOutcome>& sites, const Molecule& m) {
   return std::log10(k);
 }
 
+// Why a row does not count among the figures of its class, or nullptr.
+const char* set_aside(const RateRow& r) {
+  constexpr double kOrderOfMagnitude = 0.4;
+  if (!r.fitted) return "rows set aside in the table";
+  return r.u_log10 >= kOrderOfMagnitude ? "order of magnitude only" : nullptr;
+}
+
+struct Answer {
+  double log_k = 0, u = 0;
+  bool marked = false;
+  bool partly = false;  // a C-H the row speaks of is outside the domain and left out
+  std::vector<SiteOutcome> sites;
+};
+
+// The sites a row speaks of; `partly` where the engine leaves one of them out.
+std::vector<SiteOutcome> sites_of(const RateRow& r, const Molecule& m, std::vector<SiteOutcome> sites, bool& partly) {
+  const auto classes = symmetry_classes(m);
+  if (r.radical != "total") {
+    const auto radical = parse_smiles(r.radical, ParseMode::species);
+    const int site = radical.ok() ? find_site(m, classes, radical.value()) : -1;
+    std::erase_if(sites, [&](const SiteOutcome& s) { return s.atom != site; });
+    return sites;
+  }
+  const auto info = environment(m);
+  for (const auto& h : hydrogen_sites(m, classes)) {
+    const auto& a = info[static_cast<std::size_t>(h.atom)];
+    if (m.atom(h.atom).element != element::C || (a.hybrid != Hybrid::sp3 && !a.carbonyl)) continue;
+    partly = partly || std::none_of(sites.begin(), sites.end(), [&](const SiteOutcome& s) { return s.atom == h.atom; });
+  }
+  return sites;
+}
+
+std::optional<Answer> asked(const Engine& engine, const RateRow& r, const Molecule& m, double t) {
+  const auto x = parse_halogen(r.carrier);
+  if (!x.ok()) return std::nullopt;
+  const Halogen one[] = {x.value()};
+  const auto o = engine.outcome(m, one, t);
+  if (!o.ok()) return std::nullopt;
+  Answer a;
+  a.sites = sites_of(r, m, o.value()[0].sites, a.partly);
+  if (a.sites.empty()) return std::nullopt;
+  double k = 0;
+  for (const auto& s : a.sites) {
+    k += s.k_cm3_s;
+    a.u += s.k_cm3_s * s.u_log10_k;  // errors of sites taken as one
+    a.marked = a.marked || s.extrapolated;
+  }
+  a.log_k = std::log10(k);
+  a.u /= k;
+  return a;
+}
+
+constexpr double kColdest = 200, kHottest = 700, kLeastRange = 40;
+constexpr int kTemperatures = 5;
+
+// One row over its own range, and at the temperature nearest 298 K.
+void judge_range(const Engine& engine, const RateRow& r, const Molecule& m, Validation& out) {
+  if (!r.a || !r.ea || !r.t_min || !r.t_max) return;
+  const double low = std::max(*r.t_min, kColdest), high = std::min(*r.t_max, kHottest);
+  if (high - low < kLeastRange) return;
+  const auto at = [&](double t, const std::string& name) {
+    const auto a = asked(engine, r, m, t);
+    if (a && !a->partly)
+      out.temperatures.classes[r.carrier + name].add(a->log_k - std::log10(rate_of(r, t)), std::hypot(a->u, r.u_log10),
+                                                     std::nan(""));
+  };
+  at(std::clamp(kReferenceTemperature, low, high), ", the same rows near 298 K");
+  for (int i = 0; i < kTemperatures; ++i) at(low + (high - low) * i / (kTemperatures - 1), ", five temperatures");
+}
+
 }  // namespace
 
 void judge_rates(const FoldView& v, Validation& out) {
   for (const auto& r : v.full.rates) {
     if (r.superseded || r.carrier.empty() || v.folds.of(r.molecule) != v.fold) continue;
     const auto m = parse_smiles(r.molecule);
-    const auto x = parse_halogen(r.carrier);
     const double t = temperature_of(r);
-    if (!m.ok() || !x.ok() || t == 0) continue;
-    auto& c = out.rates.classes[class_of(m.value(), r.carrier)];
-    const Halogen one[] = {x.value()};
-    const auto o = v.engine.outcome(m.value(), one, t);
-    if (!o.ok()) {
+    if (!m.ok() || !parse_halogen(r.carrier).ok()) continue;
+    const auto* aside = set_aside(r);
+    if (aside == nullptr) judge_range(v.engine, r, m.value(), out);
+    if (t == 0) continue;
+    const std::string name =
+        aside != nullptr ? fmt::format("{} + {}", r.carrier, aside) : class_of(m.value(), r.carrier);
+    auto& c = out.rates.classes[name];
+    const auto a = asked(v.engine, r, m.value(), t);
+    if (!a) {
       ++c.refused;
       continue;
     }
-    std::vector<SiteOutcome> sites = o.value()[0].sites;
-    if (r.radical != "total") {
-      const auto radical = parse_smiles(r.radical, ParseMode::species);
-      const int site = radical.ok() ? find_site(m.value(), symmetry_classes(m.value()), radical.value()) : -1;
-      std::erase_if(sites, [&](const SiteOutcome& s) { return s.atom != site; });
-    }
-    if (sites.empty()) {
+    const double seen = std::log10(rate_of(r, t)), e = a->log_k - seen, u = std::hypot(a->u, r.u_log10);
+    const double naive = r.carrier == "Cl" ? naive_log_k(a->sites, m.value()) - seen : std::nan("");
+    out.rates.classes[fmt::format("{} + all, set aside and partly answered too", r.carrier)].add(e, u, naive);
+    if (a->partly) {
       ++c.refused;
       continue;
     }
-    double k = 0, u = 0;
-    bool marked = false;
-    for (const auto& s : sites) {
-      k += s.k_cm3_s;
-      u = std::max(u, s.u_log10_k);
-      marked = marked || s.extrapolated;
+    c.add(e, u, naive);
+    if (aside != nullptr) continue;
+    out.rates.classes[fmt::format("{} + all", r.carrier)].add(e, u, naive);
+    out.rows.push_back({r.carrier, e, a->u, a->marked});
+    out.rates.row(
+        e, fmt::format("{} + {} ({}) at {:.0f} K: {:.2e}, row {:.2e} cm3/s{}", r.carrier, r.molecule, r.radical, t,
+                       std::pow(10, a->log_k), rate_of(r, t), a->marked ? " (marked extrapolated)" : ""));
+  }
+}
+
+bool judge_alone(const Table& table, Validation& out) {
+  for (const char* smiles : {"C", "C1CC1"}) {
+    Table t = table;
+    const auto is = [&](const std::string& s) { return s == smiles; };
+    std::erase_if(t.rates, [&](const RateRow& r) { return !r.carrier.empty() && is(r.molecule); });
+    std::erase_if(t.relative_rates,
+                  [&](const RelativeRateRow& r) { return is(r.molecule) || is(r.reference_molecule); });
+    auto models = fit_models(t);
+    if (!models.ok()) return false;
+    t.models = std::move(models).value();
+    const auto engine = Engine::from_table(std::move(t));
+    for (const auto& r : table.rates) {
+      if (r.superseded || r.carrier != "Cl" || !is(r.molecule) || temperature_of(r) == 0) continue;
+      const auto m = parse_smiles(r.molecule);
+      const auto a = asked(engine.value(), r, m.value(), kReferenceTemperature);
+      auto& c = out.rates.classes[class_of(m.value(), r.carrier) + ", its rates alone left out"];
+      if (!a || a->partly)
+        ++c.refused;
+      else
+        c.add(a->log_k - std::log10(rate_of(r, kReferenceTemperature)), std::hypot(a->u, r.u_log10), std::nan(""));
     }
-    const double seen = std::log10(rate_of(r, t)), e = std::log10(k) - seen;
-    const double naive = r.carrier == "Cl" ? naive_log_k(sites, m.value()) - seen : std::numeric_limits<double>::quiet_NaN();
-    c.add(e, std::hypot(u, r.u_log10), naive);
-    if (r.carrier == "Cl") out.rates.classes["Cl + all"].add(e, std::hypot(u, r.u_log10), naive);
-    out.rates.row(e, fmt::format("{} + {} ({}) at {:.0f} K: {:.2e}, row {:.2e} cm3/s{}", r.carrier, r.molecule, r.radical, t, k,
-                                 rate_of(r, t), marked ? " (marked extrapolated)" : ""));
+  }
+  return true;
+}
+
+void finish_rates(const Table& table, Validation& out) {
+  for (const char* carrier : {"Cl", "F", "Br"}) {
+    std::vector<double> e, u;
+    int far = 0, far_marked = 0;
+    for (const auto& r : out.rows) {
+      if (r.carrier != carrier) continue;
+      e.push_back(r.error);
+      u.push_back(r.u);
+      if (std::abs(r.error) > 2) ++(r.marked ? far_marked : far);
+    }
+    out.rates.remarks.push_back(
+        fmt::format("{} + all, {} rows: 95 % within {:.2f}, median u(log10 k) {:.2f}; off by more than two decades: {} "
+                    "without a mark, {} marked extrapolated",
+                    carrier, e.size(), quantile_of(e, 0.95), quantile_of(u, 0.5), far, far_marked));
+  }
+  for (const auto& [reagent, right] : out.ranges) {
+    double sum = 0;
+    for (const double r : right) sum += r;
+    out.ratios.remarks.push_back(
+        fmt::format("{}: of {} pairs measured to differ by more than 1.5, {:.0f} % are ordered right", reagent,
+                    right.size(), 100 * sum / static_cast<double>(right.size())));
+  }
+  for (const char* x : {"F", "Cl", "Br", "I"}) {
+    for (const auto& m : table.models) {
+      if (m.name != std::string("line.") + x || m.values.size() != 2) continue;
+      double rows = 0;
+      for (const auto& [key, value] : m.settings) rows = key == "rows" ? value : rows;
+      out.forms.remarks.push_back(
+          fmt::format("straight line through the measured activation energies, {}: alpha {:.2f}, u {:.2f}, {:.0f} rows",
+                      x, m.values[1], std::sqrt(m.covariance[3]), rows));
+    }
   }
 }
 
