@@ -53,7 +53,7 @@ const char* step_kind_name(StepKind k) noexcept {
 
 Engine::Impl::Impl(Table t)
     : table(std::move(t)), model(make_model(table)), bonds(table, model), thermo(table), steps(table, model, bonds, thermo),
-      rates(table), rate_evidence(table) {}
+      rates(table), rate_evidence(table), media(table), reversal(table, thermo) {}
 
 Result<std::vector<BondAnswer>> Engine::Impl::bond_answers(const Analysis& a, const std::vector<SiteBond>& sites,
                                                                const BondOptions& o) const {
@@ -144,6 +144,8 @@ Result<std::vector<StepAnswer>> Engine::steps(const Molecule& m, std::span<const
   return impl_->step_answers(a, sites, c, impl_->halogen_rates(a, c, halogens, temperature, o.details), temperature, o);
 }
 
+Result<Medium> Engine::medium(std::string_view text) const { return impl_->media.parse(text); }
+
 Result<StepAnswer> Engine::reaction(std::string_view text, double temperature) const {
   auto s = impl_->steps.reaction(text, temperature);
   if (s.ok()) impl_->add_rate(s.value(), text);
@@ -152,9 +154,12 @@ Result<StepAnswer> Engine::reaction(std::string_view text, double temperature) c
 
 Result<std::vector<HalogenOutcome>> Engine::outcome(const Molecule& m, std::span<const Halogen> halogens, double temperature,
                                                     const OutcomeOptions& o) const {
+  const auto conditions = impl_->conditions(o);
+  if (!conditions.ok()) return conditions.error();
   const Analysis a(m);
   const auto c = carbon_sites(a, impl_->bonds.sites(a, o.typed), impl_->model);
-  return impl_->outcome_answers(a, c, impl_->halogen_rates(a, c, halogens, temperature, true), temperature, o.details);
+  return impl_->outcome_answers(a, c, impl_->halogen_rates(a, c, halogens, temperature, true), temperature, o.details,
+                                conditions.value());
 }
 
 Result<Study> Engine::study(const Molecule& m, std::span<const Halogen> halogens, double temperature,

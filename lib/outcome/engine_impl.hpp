@@ -4,8 +4,10 @@
 #include "halostep/engine.hpp"
 #include "kinetics/rates.hpp"
 #include "outcome/carbon_sites.hpp"
+#include "outcome/medium.hpp"
 #include "outcome/rate_answers.hpp"
 #include "outcome/rate_evidence.hpp"
+#include "outcome/reversal.hpp"
 #include "steps/steps.hpp"
 #include "steps/thermo.hpp"
 
@@ -15,6 +17,12 @@ namespace halostep {
 struct HalogenRates {
   Halogen halogen = Halogen::Cl;
   std::optional<KindRates> rates;
+};
+
+/// Medium and conversion, checked.
+struct Conditions {
+  Medium medium;
+  double conversion = 0, per_x2 = 0;
 };
 
 struct Engine::Impl {
@@ -28,7 +36,12 @@ struct Engine::Impl {
                                                      const BondOptions& o) const;
   [[nodiscard]] Result<std::vector<HalogenOutcome>> outcome_answers(const Analysis& a, const CarbonSites& c,
                                                                     std::span<const HalogenRates> rated, double temperature,
-                                                                    bool details) const;
+                                                                    bool details, const Conditions& conditions = {}) const;
+  /// Errors: usage.
+  [[nodiscard]] Result<Conditions> conditions(const OutcomeOptions& o) const;
+  /// The rates that shares are made of: those of the free atom with medium and reversal in. Adds notes.
+  [[nodiscard]] KindRates share_rates(const Analysis& a, const CarbonSites& c, const KindRates& free, int x, double temperature,
+                                      const Conditions& conditions, std::vector<std::string>& notes, std::string& why_forward) const;
   /// Rates of all kinds for each halogen; `with_errors` where shares are wanted.
   [[nodiscard]] std::vector<HalogenRates> halogen_rates(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
                                                         double temperature, bool with_errors) const;
@@ -42,6 +55,8 @@ struct Engine::Impl {
   StepBook steps;
   RateBook rates;
   RateEvidence rate_evidence;
+  MediumBook media;
+  ReversalBook reversal;
 };
 
 }  // namespace halostep

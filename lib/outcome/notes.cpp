@@ -51,6 +51,9 @@ std::vector<std::string> competing_channels(const Analysis& a, Halogen x) {
   if (g.sulfide) out.push_back("halogen adds to the sulfide sulfur first");
   if (g.small_ring) out.push_back("a cyclopropylmethyl radical opens to the homoallyl radical; products may differ from the site attacked");
   if (g.bromide_or_iodide) out.push_back("a radical beside C-Br or C-I may lose the halogen atom");
+  if (g.bromide_or_iodide && x == Halogen::Br) {
+    out.push_back("a bromine on the next carbon helps bromine atoms to attack there (Thaler, J. Am. Chem. Soc. 1963, 85, 2607); not in the shares");
+  }
   if (x == Halogen::F) out.push_back("F2 attacks without initiation and the heat of one turn exceeds a C-C bond: fragmentation and fire are the rule without dilution and cooling");
   if (x == Halogen::I) out.push_back("abstraction by I is far uphill and HI reduces the iodide: the chain does not carry itself");
   return out;

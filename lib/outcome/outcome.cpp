@@ -51,7 +51,7 @@ void compare_sites(const CarbonSites& c, const KindRates& r, const CarrierModel&
 
 Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis& a, const CarbonSites& c,
                                                                   std::span<const HalogenRates> rated, double temperature,
-                                                                  bool details) const {
+                                                                  bool details, const Conditions& conditions) const {
   if (c.sites.empty()) return Error{ErrorClass::domain, "no C-H bond in this structure", {}};
   if (c.kinds.empty()) return Error{ErrorClass::domain, fmt::format("no C-H site inside the domain: {}", c.sites.front().refusal), {}};
   std::vector<HalogenOutcome> out;
@@ -72,10 +72,16 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
     if (!one.rates) return Error{ErrorClass::no_data, fmt::format("the table holds no rate model for {}", halogen_name(halogen)), {}};
     const auto& d_hx = *steps.halogen(x).d_hx;
     const auto& r = *one.rates;
-    const auto share = shares(c, r);
     HalogenOutcome h;
     h.halogen = halogen;
     h.temperature = temperature;
+    h.medium = MediumBook::text(conditions.medium);
+    h.conversion = conditions.conversion;
+    h.hx_per_x2 = conditions.per_x2;
+    std::vector<std::string> condition_notes;
+    std::string why_forward;
+    const auto weights = share_rates(a, c, r, x, temperature, conditions, condition_notes, why_forward);
+    const auto share = shares(c, weights);
     h.slope = m->slope;
     h.slope_over = m->slope_over;
     h.k_total = r.total * r.damping;
@@ -99,6 +105,10 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
       o.share = share[i].share;
       o.share_low = share[i].low;
       o.share_high = share[i].high;
+      o.why_forward = why_forward;
+      const bool factored = !weights.factors.kinds.empty();
+      if (why_forward.empty()) o.forward = factored ? weights.factors.kinds[k].forward : 1.0;
+      if (factored) o.complexed = weights.factors.kinds[k].complexed;
       const char* thin = rates.thin(x, c.kinds[k].rate);
       o.extrapolated = thin != nullptr || s.extrapolated || temperature < m->t_low || temperature > m->t_high;
       if (details) {
@@ -112,9 +122,10 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
       }
       h.sites.push_back(std::move(o));
     }
-    compare_sites(c, r, *m, answered, temperature, h);
+    compare_sites(c, weights, *m, answered, temperature, h);
     if (details) {
       h.notes = competing_channels(a, halogen);
+      h.notes.insert(h.notes.begin(), condition_notes.begin(), condition_notes.end());
       h.refused = refused;
       std::vector<std::string> left_out;
       for (const auto& s : refused) {

@@ -27,6 +27,15 @@ struct Projection {
 
 constexpr double kNearlyAll = 0.99;
 
+// a' C b over the outer parameters.
+double outer_product(const KindRates& r, const std::array<double, 3>& a, const std::array<double, 3>& b) {
+  double sum = 0;
+  for (std::size_t i = 0; i < a.size(); ++i) {
+    for (std::size_t j = 0; j < b.size(); ++j) sum += a[i] * b[j] * r.factors.outer_covariance[3 * i + j];
+  }
+  return sum;
+}
+
 struct Carrier {
   const RateBook& rates;
   const BondModel& model;
@@ -40,12 +49,15 @@ Projection project(const KindRates& r, const CarbonSites& s, const Carrier& c, c
   std::vector<double> total(c.rates.carrier(c.x)->p.size(), 0.0), corrections(bonds.value.size(), 0.0);
   double by_hx = 0;
   EnthalpySum enthalpies;
+  std::array<double, 3> outer{};
+  const auto& factors = r.factors.kinds;
   for (std::size_t k = 0; k < weight.size(); ++k) {
     const double w = weight[k], g = r.gradient[k].dh;
     for (const auto& p : r.gradient[k].parameters) total[static_cast<std::size_t>(p.parameter)] += w * p.value;
     for (const auto& f : s.kinds[k].features) corrections[static_cast<std::size_t>(f.feature)] += w * g * f.count;
     if (!s.kinds[k].sum.empty()) add_terms(enthalpies, s.kinds[k].sum, w * g);
     by_hx += w * g * c.d_hx.u * c.d_hx.u;
+    for (std::size_t j = 0; j < outer.size() && !factors.empty(); ++j) outer[j] += w * factors[k].outer[j];
   }
   const auto c_total = c.rates.times_covariance(c.x, total);
   std::vector<FeatureCount> mixed;
@@ -60,6 +72,7 @@ Projection project(const KindRates& r, const CarbonSites& s, const Carrier& c, c
     for (const auto& p : r.gradient[k].parameters) sum += p.value * c_total[static_cast<std::size_t>(p.parameter)];
     if (!s.kinds[k].features.empty()) sum += g * bonds.covariance_of(s.kinds[k].features, mixed);
     if (!s.kinds[k].sum.empty()) sum += g * c.adjusted.covariance(s.kinds[k].sum, enthalpies);
+    if (!factors.empty()) sum += outer_product(r, factors[k].outer, outer);
     out.row[k] = sum;
     out.whole += weight[k] * sum;
   }
@@ -78,6 +91,10 @@ void add_errors(KindRates& r, const CarbonSites& s, const Carrier& c) {
     r.shared[k] = c.rates.variance(c.x, r.gradient[k]) +
                   g * g * (c.d_hx.u * c.d_hx.u + kind.fitted_u2 +
                            c.adjusted.covariance(kind.sum, kind.sum));
+    if (r.factors.kinds.empty()) continue;
+    const auto& f = r.factors.kinds[k];
+    r.own[k] += f.own;
+    r.shared[k] += outer_product(r, f.outer, f.outer);
   }
   r.row.assign(n, 0.0);
   // One site takes all, whatever the errors.
@@ -143,6 +160,25 @@ KindRates kind_rates(const CarbonSites& s, const RateBook& rates, const BondMode
   }
   if (with_errors) add_errors(r, s, {rates, model, adjusted, x, d_hx});
   return r;
+}
+
+KindRates reweighted(const KindRates& r, const CarbonSites& s, const RateBook& rates, const BondModel& model,
+                     const AdjustedBook& adjusted, int x, const Quantity& d_hx, ShareFactors factors) {
+  KindRates out;
+  out.factors = std::move(factors);
+  out.at = r.at;
+  for (std::size_t k = 0; k < out.at.size(); ++k) {
+    out.at[k].ln_k += out.factors.kinds[k].medium + out.factors.kinds[k].reversal;
+    out.gradient.push_back(out.factors.kinds[k].gradient);
+  }
+  out.by_kind.assign(s.kinds.size(), 0.0);
+  for (std::size_t i = 0; i < s.sites.size(); ++i) {
+    const double k = raw(s, out, i);
+    out.total += k;
+    if (k > 0) out.by_kind[kind_of(s, i)] += k;
+  }
+  add_errors(out, s, {rates, model, adjusted, x, d_hx});
+  return out;
 }
 
 double site_k(const CarbonSites& s, const KindRates& r, std::size_t site) { return raw(s, r, site) * r.damping; }
@@ -252,7 +288,12 @@ Selectivity selectivity(const CarbonSites& s, const KindRates& r, const CarrierM
   out.statistical = std::log(static_cast<double>(s.sites[a].site->h_count) / s.sites[b].site->h_count);
   // The limit acts on the molecule as a whole and takes the same factor from every site.
   out.encounter = 0;
-  out.ln_ratio = out.enthalpy + out.polar + out.a_factor + out.curvature + out.statistical + out.encounter;
+  if (!r.factors.kinds.empty()) {
+    const auto &fa = r.factors.kinds[kind_of(s, a)], &fb = r.factors.kinds[kind_of(s, b)];
+    out.medium = fa.medium - fb.medium;
+    out.reversal = fa.reversal - fb.reversal;
+  }
+  out.ln_ratio = out.enthalpy + out.polar + out.a_factor + out.curvature + out.statistical + out.encounter + out.medium + out.reversal;
   return out;
 }
 

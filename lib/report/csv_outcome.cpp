@@ -5,7 +5,7 @@ namespace halostep {
 
 namespace {
 
-constexpr std::size_t kCells = 23;
+constexpr std::size_t kCells = 25;
 
 const char* truth(bool value) { return value ? "true" : "false"; }
 
@@ -51,6 +51,7 @@ std::vector<std::string> site_cells(const OutcomeRecord& record, const HalogenOu
                                  truth(s.extrapolated),
                                  s.extrapolated ? "extrapolated: " + s.why_extrapolated : ""};
   add_comparison(cells, record, compared(record, outcome, s.radical), unit);
+  cells.insert(cells.end(), {outcome.medium, csv_number(outcome.conversion)});
   return cells;
 }
 
@@ -63,6 +64,8 @@ std::vector<std::string> refused_cells(const HalogenOutcome& outcome, const Refu
   cells[3] = std::to_string(s.h_count);
   cells[4] = s.type;
   cells[15] = "no rate: " + s.why;
+  cells[23] = outcome.medium;
+  cells[24] = csv_number(outcome.conversion);
   return cells;
 }
 
@@ -87,7 +90,8 @@ std::string outcome_csv(const Table&, std::span<const OutcomeRecord> records, En
                              "u_log10_k", "ea_" + suffix,     "ts_position",    "share",
                              "share_low", "share_high",       "extrapolated",   "why",
                              "best",      "verdict",          "propagates",     "hazardous",
-                             "slow",      "dh_net_" + suffix, "reason"});
+                             "slow",      "dh_net_" + suffix, "reason",         "medium",
+                             "conversion"});
   for (auto& column : error_columns()) grid.columns.push_back(column);
   for (const auto& record : records) {
     for (auto& cells : outcome_rows(record, unit)) {

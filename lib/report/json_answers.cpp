@@ -46,6 +46,8 @@ Json json_site(const SiteOutcome& site) {
   record.put_number("share", site.share, 15);
   record.put_number("share_low", site.share_low, 15);
   record.put_number("share_high", site.share_high, 15);
+  record.put_number("complexed_fraction", site.complexed, kRateDigits);
+  record.put_number("forward_fraction", site.forward, kRateDigits, site.why_forward);
   record.put("extrapolated", site.extrapolated);
   if (site.extrapolated) record.add_reason("extrapolated", site.why_extrapolated);
   return record.finish();
@@ -63,6 +65,8 @@ Json json_selectivity(const HalogenOutcome& outcome, const Selectivity& s) {
   record.put_number("statistical", s.statistical, kEnergyDigits);
   record.put_number("a_factor", s.a_factor, kEnergyDigits);
   record.put_number("encounter", s.encounter, kEnergyDigits);
+  record.put_number("medium", s.medium, kEnergyDigits);
+  record.put_number("reversal", s.reversal, kEnergyDigits);
   return record.finish();
 }
 
@@ -145,6 +149,9 @@ Json json_halogen(const Table& table, const HalogenOutcome& outcome) {
   } else {
     record.put_null("slope", "fewer than three measured activation energies");
   }
+  record.put("medium", outcome.medium);
+  record.put_number("conversion", outcome.conversion, kRateDigits);
+  record.put_number("hx_per_x2", outcome.hx_per_x2, kRateDigits);
   record.put("notes", outcome.notes);
   Json sites = Json::array();
   for (const auto& site : outcome.sites) sites.push_back(json_site(site));

@@ -1,6 +1,8 @@
 // Rates, shares and the comparison for people and as CSV.
 #include <fmt/format.h>
 
+#include <algorithm>
+
 #include "phrases.hpp"
 
 namespace halostep {
@@ -34,16 +36,23 @@ std::string sites_text(const HalogenOutcome& outcome, EnergyUnit unit) {
 
 std::string selectivity_text(const HalogenOutcome& outcome) {
   if (outcome.selectivity.empty()) return {};
+  // Most answers are for an inert medium and the first attack; their table stays narrow.
+  const bool medium = std::any_of(outcome.selectivity.begin(), outcome.selectivity.end(), [](const Selectivity& s) { return s.medium != 0; });
+  const bool reversal = std::any_of(outcome.selectivity.begin(), outcome.selectivity.end(), [](const Selectivity& s) { return s.reversal != 0; });
   Grid grid;
   grid.indent = "    ";
   grid.columns = {{"ln(k/k) of", false}, {"against", false},  {"total", true},
                   {"enthalpy", true},    {"curvature", true}, {"polar", true},
                   {"number of H", true}, {"A factor", true},  {"encounter", true}};
+  if (medium) grid.columns.push_back({"medium", true});
+  if (reversal) grid.columns.push_back({"reversal", true});
   for (const auto& s : outcome.selectivity) {
     grid.rows.push_back({outcome.sites[static_cast<std::size_t>(s.a)].radical,
                          outcome.sites[static_cast<std::size_t>(s.b)].radical, format_fixed(s.ln_ratio, 2),
                          format_fixed(s.enthalpy, 2), format_fixed(s.curvature, 2), format_fixed(s.polar, 2),
                          format_fixed(s.statistical, 2), format_fixed(s.a_factor, 2), format_fixed(s.encounter, 2)});
+    if (medium) grid.rows.back().push_back(format_fixed(s.medium, 2));
+    if (reversal) grid.rows.back().push_back(format_fixed(s.reversal, 2));
   }
   return aligned(grid);
 }
@@ -66,6 +75,10 @@ std::string halogen_text(const HalogenOutcome& outcome, EnergyUnit unit) {
   if (outcome.slope) {
     const auto slope = quantity_text(*outcome.slope, 2);
     out += fmt::format("; Evans-Polanyi slope over the {} {} (u {})", outcome.slope_over, slope.value, slope.u);
+  }
+  if (outcome.medium != "gas") out += "; medium " + outcome.medium;
+  if (outcome.conversion > 0) {
+    out += fmt::format("; conversion {}, HX per X2 {}", format_fixed(outcome.conversion, 3), format_fixed(outcome.hx_per_x2, 3));
   }
   return out + "\n" + sites_text(outcome, unit) + selectivity_text(outcome) + notes_text(outcome);
 }
@@ -122,7 +135,7 @@ std::string outcome_text(const Table& table, std::span<const OutcomeRecord> reco
       {"H: equivalent hydrogens. dH298: enthalpy of X. + RH -> HX + R., gas, 298.15 K; u: standard uncertainty. "
        "Ea: Arrhenius activation energy at T (may be negative). k: rate coefficient of all H of the site.",
        "TS: position of the transition state, 0 like the reactants, 1 like the products. share: of the C-H sites; "
-       "first attack only, no conversion, inert medium. The second table splits ln(k/k) into the parts it is the "
+       "first attack in an inert medium unless a medium or conversion is named. The second table splits ln(k/k) into the parts it is the "
        "sum of.",
        "extrapolated, outside the evidence: temperature or structure beyond the measured rates.",
        compared

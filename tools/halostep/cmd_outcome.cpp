@@ -77,10 +77,27 @@ std::optional<Error> compare(const Engine& engine, const Molecule& m, const Opti
   return std::nullopt;
 }
 
-void answer(const Engine& engine, const Options& options, const Settings& settings, const Input& input,
+/// Medium and conversion of the options, checked against the table.
+Result<OutcomeOptions> outcome_options(const Engine& engine, const Options& options) {
+  OutcomeOptions o;
+  o.typed = options.typed;
+  const auto medium = engine.medium(options.medium);
+  if (!medium.ok()) return Error{ErrorClass::usage, medium.error().message, "--medium"};
+  o.medium = options.medium;
+  const auto conversion = parse_number(options.conversion), ratio = parse_number(options.halogen_ratio);
+  if (!conversion.ok()) return Error{ErrorClass::usage, conversion.error().message, "--conversion"};
+  if (!ratio.ok()) return Error{ErrorClass::usage, ratio.error().message, "--halogen-ratio"};
+  o.conversion = conversion.value();
+  o.halogen_ratio = ratio.value();
+  const auto left = check_conversion(o.conversion, o.halogen_ratio);
+  if (left) return Error{ErrorClass::usage, left->message, "--conversion"};
+  return o;
+}
+
+void answer(const Engine& engine, const Options& options, const OutcomeOptions& conditions, const Settings& settings, const Input& input,
             OutcomeRecord& record) {
   for (const double t : settings.temperatures) {
-    auto halogens = engine.outcome(*input.molecule, settings.halogens, t, {options.typed, true});
+    auto halogens = engine.outcome(*input.molecule, settings.halogens, t, conditions);
     if (!halogens.ok()) {
       record.head.error = halogens.error();
       return;
@@ -99,13 +116,15 @@ int run(const CLI::App& app, const Options& options) {
   if (!inputs.ok()) return complain(inputs.error()), kUsage;
   const auto engine = open_engine(options);
   if (!engine) return kTableFault;
+  const auto conditions = outcome_options(*engine, options);
+  if (!conditions.ok()) return complain(conditions.error()), kUsage;
 
   Tally tally;
   const auto& s = settings.value();
   std::vector<OutcomeRecord> records;
   for (auto& input : inputs.value()) {
     OutcomeRecord record{std::move(input.head), {}, {}};
-    if (!record.head.error) answer(*engine, options, s, input, record);
+    if (!record.head.error) answer(*engine, options, conditions.value(), s, input, record);
     if (record.head.error) {
       record.head.error = refuse(input, *record.head.error);
       tally.refused(*record.head.error);
@@ -132,6 +151,12 @@ void add_outcome(CLI::App& app, int& exit_code) {
   add_input(*sub, *options);
   add_halogens(*sub, *options);
   add_temperatures(*sub, *options);
+  sub->add_option("--medium", options->medium,
+                  "\"benzene 8 M\", \"CS2 12 M\", neat, CCl4, gas: complexing solvents make chlorine more selective")
+      ->capture_default_str();
+  sub->add_option("--conversion", options->conversion, "of the substrate, 0 to 1: the HX formed takes radicals back")
+      ->capture_default_str();
+  sub->add_option("--halogen-ratio", options->halogen_ratio, "X2 per substrate at the start")->capture_default_str();
   auto* compare_flag = sub->add_flag("--compare", options->compare,
                                      "one wanted site against halogens and temperatures, and the best choice");
   auto* site = sub->add_option("--site", options->site, "the wanted site: SMILES of its radical")->needs(compare_flag);
@@ -140,7 +165,9 @@ void add_outcome(CLI::App& app, int& exit_code) {
   set_usage(*sub, "halostep outcome [options] SMILES... | --file FILE | -");
   sub->footer(
       "Example: halostep outcome 'CC(C)C' --halogen Br --temperature 127C\n"
-      "Example: halostep outcome 'CC(C)C' --compare --product 'CC(C)(C)Br' --temperature 25C --temperature 127C");
+      "Example: halostep outcome 'CC(C)C' --compare --product 'CC(C)(C)Br' --temperature 25C --temperature 127C\n"
+      "Example: halostep outcome 'CC(C)C(C)C' --halogen Cl --medium 'benzene 8 M'\n"
+      "Example: halostep outcome 'CCC' --halogen Br --temperature 127C --conversion 0.5");
   sub->callback([sub, options, &exit_code] { exit_code = run(*sub, *options); });
 }
 

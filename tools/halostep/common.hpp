@@ -22,6 +22,7 @@ struct Options {
   std::vector<std::string> files, halogens, temperatures, reactions;
   bool typed = false, evidence = false, compare = false;
   std::string site, product;
+  std::string medium = "gas", conversion = "0", halogen_ratio = "1";
 };
 
 /// Options once checked.

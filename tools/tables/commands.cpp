@@ -11,6 +11,7 @@
 #include "tables/columns.hpp"
 #include "tables/fit.hpp"
 #include "tables/fitted_file.hpp"
+#include "tables/hammond.hpp"
 #include "tables/read_tables.hpp"
 #include "tables/table_io.hpp"
 #include "tables/validate.hpp"
@@ -125,6 +126,19 @@ int refit_command(const std::string& dir) {
 int validate_command(const std::string& dir, const std::string& markdown, const std::string& json) {
   const auto curated = checked(dir);
   return curated ? validate(curated->table, markdown, json) : 1;
+}
+
+int hammond_command(const std::string& dir, const std::string& markdown) {
+  auto curated = checked(dir);
+  if (!curated) return 1;
+  Faults faults;
+  auto file = read_fitted(in_dir(dir, kFittedFile));
+  if (!file.ok()) {
+    faults.add(kFittedFile, 0, file.error().message);
+    return tell(dir, faults);
+  }
+  curated->table.models = std::move(file.value().models);
+  return hammond(std::move(curated->table), markdown);
 }
 
 int adjust_command(const std::string& dir, const std::string& csv) {

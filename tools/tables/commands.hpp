@@ -13,6 +13,8 @@ int compile_command(const std::string& dir, const std::string& out);
 int refit_command(const std::string& dir);
 /// Checks, then judges the engine on molecules held out of every file; writes to the files named, if any.
 int validate_command(const std::string& dir, const std::string& markdown, const std::string& json);
+/// Checks and writes the Hammond table from the models of fitted.json.
+int hammond_command(const std::string& dir, const std::string& markdown);
 /// Checks, then adjusts all enthalpies jointly and prints the result; `csv` (may be empty): where the system goes.
 int adjust_command(const std::string& dir, const std::string& csv);
 

@@ -8,6 +8,7 @@
 #include "adjust/ridge.hpp"
 #include "tables/fit_bonds.hpp"
 #include "tables/fit_kinetics.hpp"
+#include "tables/fit_medium.hpp"
 
 namespace halostep {
 namespace {
@@ -129,6 +130,11 @@ Result<std::vector<FittedModel>> fit_models(const Table& table) {
     if (!m.ok()) return m.error();
     if (m.value()) out.push_back(std::move(*m.value()));
   }
+  Table so_far = table;
+  so_far.models = out;
+  auto media = fit_media(so_far);
+  if (!media.ok()) return media.error();
+  for (auto& m : media.value()) out.push_back(std::move(m));
   return out;
 }
 

@@ -23,6 +23,9 @@ int main(int argc, char** argv) {
   check_engine->add_option("--markdown", markdown, "write the report to this file");
   check_engine->add_option("--json", json, "write the figures to this file");
   check_engine->callback([&] { code = halostep::validate_command(dir, markdown, json); });
+  auto* parts = command("hammond", "take the selectivity of F, Cl, Br, I apart on hydrocarbons and polar substrates, from fitted.json");
+  parts->add_option("--markdown", markdown, "write the table to this file");
+  parts->callback([&] { code = halostep::hammond_command(dir, markdown); });
   auto* adjust = command("adjust", "adjust all enthalpies of formation and bond energies jointly and print the result");
   std::string csv;
   adjust->add_option("--csv", csv, "write the system and its solution to this file");

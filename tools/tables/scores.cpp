@@ -120,6 +120,7 @@ std::string section_markdown(const Section& s) {
   std::sort(rows.begin(), rows.end(), [](const auto& a, const auto& b) { return a.first != b.first ? a.first > b.first : a.second < b.second; });
   if (!rows.empty()) out += "\nFarthest:\n\n";
   for (std::size_t i = 0; i < std::min(kFar, rows.size()); ++i) out += "- " + rows[i].second + "\n";
+  if (!s.tail.empty()) out += "\n" + s.tail;
   return out + "\n";
 }
 

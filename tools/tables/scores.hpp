@@ -33,6 +33,7 @@ struct Section {
   std::map<std::string, Score> classes;
   std::vector<std::pair<double, std::string>> rows;  // |error|, what
   std::vector<std::string> remarks{};                // printed below the table
+  std::string tail{};                                // printed after the rows
 
   void row(double error, std::string what) { rows.emplace_back(error < 0 ? -error : error, std::move(what)); }
 };

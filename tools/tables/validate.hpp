@@ -1,6 +1,7 @@
 // How well the engine meets molecules it has not seen.
 #pragma once
 #include <map>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -19,7 +20,7 @@ struct JudgedRate {
 
 /// Everything judged, over all folds.
 struct Validation {
-  Section bonds, halides, sources, rates, mixtures, temperatures, ratios, reverse, forms;
+  Section bonds, halides, sources, rates, mixtures, temperatures, ratios, media, reverse, forms;
   std::vector<JudgedRate> rows;
   std::map<std::string, std::vector<double>> ranges;  // share of pairs ordered right, by class: 1 or 0
 };
@@ -37,13 +38,23 @@ void judge_bonds(const FoldView& v, Validation& out);
 void judge_sources(const Table& t, Section& s);
 void judge_rates(const FoldView& v, Validation& out);
 void judge_mixtures(const FoldView& v, Validation& out);
-void judge_ratios(const FoldView& v, Validation& out);
 void judge_reverse(const FoldView& v, const Engine& whole, Validation& out);
 void judge_forms(const FoldView& v, Validation& out);
 /// Molecules whose bonds stay while their rates alone are left out.
 bool judge_alone(const Table& table, Validation& out);
 /// What is said of all rows together.
 void finish_rates(const Table& table, Validation& out);
+/// Relative rates per H.
+void judge_ratios(const FoldView& v, Validation& out);
+/// Complexing solvents: each row left out in turn of its solvent's fit; `table` holds the models of all rows. Errors: table.
+std::optional<Error> judge_media(const Table& table, Validation& out);
+/// The carrier atom of a reagent, and the medium in which a row is judged.
+std::optional<Halogen> carrier_of(const std::string& reagent);
+OutcomeOptions judged_conditions(const Engine& engine, const Molecule& m, const std::string& medium, const std::string& reagent);
+/// Carbons and hydrogens only.
+bool is_hydrocarbon(const Molecule& m);
+/// Naive rate per H, relative: one factor per carbon class.
+double naive_per_h(Halogen x, const Molecule& m, int atom);
 
 /// Prints the report; writes it to the files named (empty: not). Exit code of the command.
 int validate(const Table& table, const std::string& markdown, const std::string& json);

@@ -91,6 +91,8 @@ struct Selectivity {
   double a_factor = 0;               // per-H pre-exponential factors and offsets of the classes of C-H
   double encounter = 0;              // what the encounter limit takes away; it is one factor for the whole molecule,
                                      // so 0 between two sites of one molecule
+  double medium = 0;                 // what attack by the complexed atom adds
+  double reversal = 0;               // what R + HX takes back at the conversion asked for
 };
 
 struct SiteOutcome {
@@ -105,6 +107,9 @@ struct SiteOutcome {
   double a_cm3_s = 0;                // Arrhenius A at T, all H of the site
   double ts_position = 0, u_ts_position = 0;  // 0 reactant-like to 1 product-like
   double share = 0, share_low = 0, share_high = 0;  // over C-H sites; 95 % range
+  double complexed = 0;              // part of the attack on this site that the complexed atom makes
+  std::optional<double> forward;     // part of its radicals that become halide, the rest takes H back from HX; absent
+  std::string why_forward;           // with `why_forward`
   bool extrapolated = false;         // T or structure outside the evidence
   std::string why_extrapolated;
 };
@@ -124,14 +129,30 @@ struct HalogenOutcome {
   double k_total = 0;                // cm3 molecule-1 s-1, C-H sites
   std::optional<Quantity> slope;     // fitted straight Evans-Polanyi slope alpha; absent with fewer than three rates
   std::string slope_over;            // what it was fitted over: "alkanes" or "hydrocarbons"
+  std::string medium;                // "gas", "neat", "benzene 8 M"
+  double conversion = 0;             // of the substrate, 0 to 1
+  double hx_per_x2 = 0;              // at that conversion
   std::vector<std::string> notes;    // competing channels and cautions
   std::vector<int> sources;          // rows behind the kinetic model's class
+};
+
+/// Where the atom attacks. Complexing solvents make chlorine atoms slower and more selective.
+struct Medium {
+  std::string solvent = "gas";
+  double molarity = 0;               // mol/L; 0 for inert media, where it does not matter
+  bool complexing = false;
 };
 
 struct OutcomeOptions {
   bool typed = false;
   bool details = true;
+  std::string medium = "gas";        // as Engine::medium() reads it
+  double conversion = 0;             // of the substrate; shares are those at that moment
+  double halogen_ratio = 1;          // X2 per substrate at the start
 };
+
+/// What is wrong with a conversion and X2 per substrate at the start, or nothing.
+std::optional<Error> check_conversion(double conversion, double halogen_ratio);
 
 /// Everything about one molecule at one temperature, worked out together.
 struct Study {
@@ -161,10 +182,15 @@ class Engine {
   [[nodiscard]] Result<std::vector<StepAnswer>> steps(const Molecule& m, std::span<const Halogen> halogens,
                                                       double temperature, const BondOptions& o = {}) const;
 
+  /// Reads "benzene 8 M", "CS2 12 M", "neat", "gas", "CCl4". Errors: usage (unknown solvent: lists the known ones; a
+  /// complexing one without its molarity, or more of it than the pure liquid holds).
+  [[nodiscard]] Result<Medium> medium(std::string_view text) const;
+
   /// One elementary step as reaction SMILES, checked for balance. Errors: reaction, unbalanced, no_data.
   [[nodiscard]] Result<StepAnswer> reaction(std::string_view text, double temperature) const;
 
-  /// Rates and shares of the C-H sites for each halogen. Errors: domain (no C-H site inside the domain).
+  /// Rates and shares of the C-H sites for each halogen. Rates are those of the free atom in the gas; medium and
+  /// conversion act on the shares. Errors: domain (no C-H site inside the domain), usage (medium, conversion).
   [[nodiscard]] Result<std::vector<HalogenOutcome>> outcome(const Molecule& m, std::span<const Halogen> halogens,
                                                             double temperature, const OutcomeOptions& o = {}) const;
 
