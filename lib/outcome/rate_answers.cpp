@@ -169,6 +169,7 @@ KindRates reweighted(const KindRates& r, const CarbonSites& s, const RateBook& r
   out.at = r.at;
   for (std::size_t k = 0; k < out.at.size(); ++k) {
     out.at[k].ln_k += out.factors.kinds[k].medium + out.factors.kinds[k].reversal;
+    out.k.push_back(std::exp(out.at[k].ln_k));
     out.gradient.push_back(out.factors.kinds[k].gradient);
   }
   out.by_kind.assign(s.kinds.size(), 0.0);

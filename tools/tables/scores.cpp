@@ -90,8 +90,6 @@ std::string calibration_markdown(const Section& s) {
 
 }  // namespace
 
-double rms_of(const std::vector<double>& e) { return figures(e).rms; }
-
 double quantile_of(std::vector<double> e, double q) {
   if (e.empty()) return 0;
   for (auto& v : e) v = std::abs(v);

@@ -38,8 +38,7 @@ struct Section {
   void row(double error, std::string what) { rows.emplace_back(error < 0 ? -error : error, std::move(what)); }
 };
 
-/// Root mean square, and the quantile q of the absolute values; 0 of nothing.
-double rms_of(const std::vector<double>& e);
+/// Quantile q of the absolute values; 0 of nothing.
 double quantile_of(std::vector<double> e, double q);
 
 std::string section_markdown(const Section& s);
