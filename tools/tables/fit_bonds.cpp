@@ -63,7 +63,7 @@ std::vector<BondSample> bond_samples(const Table& t) {
     if (atom < 0) continue;
     auto f = site_features(m.value(), info, atom);
     if (f.not_covered != nullptr || f.features.empty()) continue;
-    out.push_back({static_cast<int>(i), b.molecule, std::move(f), b.d298.value, b.d298.u,
+    out.push_back({static_cast<int>(i), b.molecule, std::move(f), b.d298.value, std::max(b.d298.u, b.combined.u),
                    std::string(site_type(m.value(), info, atom))});
   }
   return out;

@@ -54,6 +54,13 @@ double mean_error(const std::vector<double>& a, const std::vector<double>& b) {
   return sum / static_cast<double>(a.size());
 }
 
+// A neat arene complexes chlorine itself.
+bool needs_complexing(const Molecule& m, const std::string& medium, const std::string& reagent) {
+  if (carrier_of(reagent) != Halogen::Cl || medium != "neat") return false;
+  const auto info = environment(m);
+  return std::any_of(info.begin(), info.end(), [](const AtomInfo& i) { return i.kind == Substituent::aryl; });
+}
+
 constexpr double kUnnamed = 0.03;  // more than rounding
 
 // Products with their site; one that no site gives makes the mixture unanswered.
@@ -124,12 +131,8 @@ double naive_per_h(Halogen x, const Molecule& m, int atom) {
 OutcomeOptions judged_conditions(const Engine& engine, const Molecule& m, const std::string& medium,
                                  const std::string& reagent) {
   OutcomeOptions o;
-  const auto info = environment(m);
-  const bool arene =
-      std::any_of(info.begin(), info.end(), [](const AtomInfo& i) { return i.kind == Substituent::aryl; });
   if (engine.medium(medium).ok()) o.medium = medium;
-  if (arene && carrier_of(reagent) == Halogen::Cl && medium == "neat" && engine.medium("toluene 8 M").ok())
-    o.medium = "toluene 8 M";
+  if (needs_complexing(m, medium, reagent) && engine.medium("toluene 8 M").ok()) o.medium = "toluene 8 M";
   if (reagent == "Br2") o.conversion = 0.5;  // NBS uses the HBr up
   return o;
 }
@@ -153,6 +156,12 @@ void judge_mixtures(const FoldView& v, Validation& out) {
     // The substrate of the solvents' fits is the only one they have: judge_media takes these.
     if (r.medium.find(" M") != std::string::npos) continue;
     const auto conditions = judged_conditions(v.engine, m.value(), r.medium, r.reagent);
+    // Without the solvents' substrate in the fold there is no solvent to stand for a neat arene.
+    const bool self_complexing = needs_complexing(m.value(), r.medium, r.reagent), complexing = conditions.medium.find(" M") != std::string::npos;
+    if (self_complexing && !complexing) {
+      ++out.mixtures.classes[fmt::format("{}, complexing medium", r.reagent)].refused;
+      continue;
+    }
     auto& c = out.mixtures.classes[class_of(r, m.value(), *x, conditions.medium)];
     const Halogen one[] = {*x};
     const auto o = v.engine.outcome(m.value(), one, r.t, conditions);
