@@ -51,10 +51,17 @@ Table without_derived(Table t) {
       if (!r.superseded && (r.method != "derived" || !halide)) rest.push_back({r.d298, r.u});
     }
     if (rest.empty()) continue;
-    b.d298 = combine(rest).value;
+    b.d298 = b.combined = combine(rest).value;
+    b.at_molecule = b.at_radical = b.at_leaving = -1;
     kept.push_back(std::move(b));
   }
   t.bonds = std::move(kept);
+  // The joint adjustment knows both sides of the comparison: bonds and enthalpies are taken from their own rows instead.
+  t.adjusted.clear();
+  for (auto& s : t.species) {
+    s.dfh298 = s.combined;
+    s.at = -1;
+  }
   return t;
 }
 
