@@ -97,8 +97,8 @@ TEST(JointAdjustment, OtherSourcesMeetTheLargestEvaluation) {
         kJudge, atoms ? " (its atoms kept)" : "", t.judged, t.within, 100.0 * t.within / t.judged,
         std::sqrt(t.sum_z2 / t.judged), t.unreached);
     EXPECT_GE(t.judged, 60);
-    // Measured 89.6 % (88.6 % with the atoms kept); the aim is 90 %. A fall below this floor is a step back.
-    EXPECT_GE(t.within, 0.88 * t.judged);
+    // Measured 92.4 % (91.7 % with the atoms kept).
+    EXPECT_GE(t.within, 0.90 * t.judged);
   }
 }
 
