@@ -134,7 +134,6 @@ std::vector<SiteBond> BondBook::sites(const Analysis& a, bool typed_only) const 
 BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, const BondValue& parent, const Quantity& delta,
                            bool typed_only) const {
   BondValue v;
-  const int parent_index = typed_only ? -1 : adjusted_index(a);
   // Only molecules of the table's composition can be in it; others skip the text of the halide.
   if (!typed_only && adjusted_.possible(a.signature() + element_signature(kHalogenNumbers[x]))) {
     const int atom = a.to_plain(s.atom);
@@ -147,7 +146,7 @@ BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, cons
       v.sum = entry_sum(v.entry);
       return v;
     }
-    const int halide = adjusted_.find(key), free = adjusted_.find(species_key_of_atom(x));
+    const int parent_index = adjusted_index(a), halide = adjusted_.find(key), free = adjusted_.find(species_key_of_atom(x));
     if (halide >= 0 && free >= 0 && parent_index >= 0 && parent.d && adjusted_.firm(halide)) {
       EnthalpySum exchange{{parent_index, 1}, {free, 1}, {halide, -1}, {hydrogen_, -1}};
       const auto known_delta = adjusted_.value(exchange);
@@ -175,7 +174,7 @@ BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, cons
                             element_symbol(a.original().atom(s.atom).element), element_symbol(kHalogenNumbers[x]));
     return v;
   }
-  v.d = Quantity{parent.d->value + delta.value, std::hypot(parent.d->u, delta.u)};
+  v.d = Quantity{parent.d->value + delta.value, std::sqrt(parent.d->u * parent.d->u + delta.u * delta.u)};
   v.extrapolated = parent.extrapolated;
   return v;
 }
