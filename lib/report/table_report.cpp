@@ -132,6 +132,8 @@ Json json_combined(const Table& table, const std::vector<int>& bonds) {
                    {"leaving", b.leaving},
                    {"d298_kj_mol", rounded(b.d298.value, 9)},
                    {"u_kj_mol", rounded(b.d298.u, 9)},
+                   {"rows_d298_kj_mol", rounded(b.combined.value, 9)},
+                   {"rows_u_kj_mol", rounded(b.combined.u, 9)},
                    {"rows", json_rows(cell_rows_of_bonds(table, {i}))}});
   }
   return out;
@@ -151,9 +153,9 @@ std::string show_text(const Table& table, const TableQuery& query, EnergyUnit un
   std::set<int> cited;
   for (const int i : query.bonds) {
     const auto& b = table.bonds[static_cast<std::size_t>(i)];
-    const auto d = energy_text(b.d298, unit);
-    out += fmt::format("{} -> {} + {}   combined D298 {} u {} {}\n", b.molecule, b.radical, b.leaving, d.value, d.u,
-                       energy_unit_name(unit));
+    const auto d = energy_text(b.d298, unit), own = energy_text(b.combined, unit);
+    out += fmt::format("{} -> {} + {}   D298 {} u {} {} by the joint adjustment; these rows alone {} u {}\n", b.molecule, b.radical,
+                       b.leaving, d.value, d.u, energy_unit_name(unit), own.value, own.u);
     CellTable cells = cell_rows_of_bonds(table, {i});
     for (std::size_t c = 0; c < 3; ++c) cells.columns[c].wide = true;  // said in the line above
     Grid grid = grid_of(cells, unit, false);

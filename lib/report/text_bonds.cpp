@@ -81,8 +81,8 @@ std::string bonds_text(const Table& table, std::span<const BondsRecord> records,
   out +=
       legend({"n: equivalent hydrogens, or equivalent bonds where no hydrogen is lost. D298: enthalpy of breaking the "
               "bond, gas, 298.15 K. u: its standard uncertainty; D +/- 2u holds about 95 %.",
-              "route: measured = rows of the table for this very bond, combined; typed = fitted type value plus group "
-              "corrections; (thin) = few rows behind a correction, u widened. --evidence lists what is behind."});
+              "route: measured = rows of the table for this very bond, adjusted together with what is tied to them; adjusted = "
+              "from the adjusted enthalpies of its parts; typed = fitted type value plus group corrections; (thin) = few rows behind a correction, u widened. --evidence lists what is behind."});
   return out + source_list(table, cited) + table_line(table);
 }
 
