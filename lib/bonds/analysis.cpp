@@ -12,8 +12,15 @@ bool weak_pair(int a, int b) {
   if (a > b) std::swap(a, b);
   const auto is = [&](int x, int y) { return a == x && b == y; };
   using namespace element;
-  return is(O, O) || (is_halogen(b) && (a == N || a == O || a == S)) || (a == F && (b == S || b == O || b == N)) ||
+  return is(O, O) || is(S, S) || (is_halogen(b) && (a == N || a == O || a == S)) || (a == F && (b == S || b == O || b == N)) ||
          (is_halogen(a) && is_halogen(b));
+}
+
+// O-N of nitrites, nitrates, hydroxylamines; not of nitro groups and N-oxides.
+bool weak_oxygen_nitrogen(const Molecule& m, const Bond& b) {
+  const int za = m.atom(b.a).element, zb = m.atom(b.b).element;
+  const int o = za == element::O && zb == element::N ? b.a : za == element::N && zb == element::O ? b.b : -1;
+  return o >= 0 && m.atom(o).charge == 0 && (m.degree(o) == 2 || m.atom(o).hydrogens > 0);
 }
 
 // C-X, the weak bonds, and the C-N bonds of azo compounds: acyclic single bonds only.
@@ -21,6 +28,7 @@ bool spoken_of(const Molecule& m, const Bond& b) {
   if (b.order != BondOrder::single || b.in_ring) return false;
   const int za = m.atom(b.a).element, zb = m.atom(b.b).element;
   if ((za == element::C && is_halogen(zb)) || (zb == element::C && is_halogen(za)) || weak_pair(za, zb)) return true;
+  if (weak_oxygen_nitrogen(m, b)) return true;
   if ((za == element::Si && is_halogen(zb)) || (zb == element::Si && is_halogen(za))) return true;
   const int n = za == element::N && zb == element::C ? b.a : zb == element::N && za == element::C ? b.b : -1;
   if (n < 0) return false;

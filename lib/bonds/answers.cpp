@@ -354,7 +354,7 @@ void BondBook::deuterium(const Analysis& a, std::vector<BondAnswer>& out) const 
     b.type = "isotope";
     b.radical = canonical_smiles(m.neighbours(i)[0].atom == m.bond(m.neighbours(i)[0].bond).a ? m.broken(m.neighbours(i)[0].bond).first
                                                                                              : m.broken(m.neighbours(i)[0].bond).second);
-    b.why = Error{ErrorClass::isotope, fmt::format("no data for bonds to {}", label), fmt::format("atom {}", i + 1)};
+    b.why = Error{ErrorClass::isotope, fmt::format("no data for bonds to {}; those to H have the figures of the unlabelled molecule", label), fmt::format("atom {}", i + 1)};
     out.push_back(std::move(b));
   }
 }

@@ -4,6 +4,8 @@
 #include <array>
 #include <bit>
 
+#include "untyped.hpp"
+
 namespace halostep {
 namespace {
 
@@ -280,7 +282,7 @@ void Builder::sp3() {
   for (const auto& n : m_.neighbours(c_)) {
     const auto k = at(n.atom).kind;
     if (k == Substituent::unknown) {
-      refuse("a substituent of a kind the typed model does not know");
+      refuse(unknown_substituent(m_.atom(n.atom).element));
       continue;
     }
     ++kinds_[static_cast<std::size_t>(k)];
@@ -556,7 +558,8 @@ std::string_view site_type(const Molecule& m, const std::vector<AtomInfo>& info,
   static constexpr std::array<std::string_view, 4> kPropargylic = {"propargylic C-H", "propargylic C-H, primary", "propargylic C-H, secondary", "propargylic C-H, tertiary"};
   const auto at = [&](int k) -> const AtomInfo& { return info[static_cast<std::size_t>(k)]; };
   const auto f = site_features(m, info, i);
-  if (f.centre != CentreType::c_sp3) return f.centre == CentreType::unknown ? "X-H, not typed" : centre_name(f.centre);
+  if (f.centre == CentreType::unknown) return untyped_name(m.atom(i).element);
+  if (f.centre != CentreType::c_sp3) return centre_name(f.centre);
   std::size_t carbons = 0;
   bool vin = false, ar = false, alkyn = false, carbonyl = false, cyan = false, o = false, n = false, s = false, hal = false, other = false;
   for (const auto& nb : m.neighbours(i)) {

@@ -32,6 +32,15 @@ std::string sulfur_name(const Molecule& m, int sulfur) {
   return oxo >= 2 ? "sulfonyl" : oxo == 1 ? "sulfinyl" : "sulfenyl";
 }
 
+// Nitrite, nitrate, or neither (hydroxylamine, oxime).
+std::string oxygen_nitrogen_name(const Molecule& m, int nitrogen) {
+  const auto n = m.neighbours(nitrogen);
+  const auto bare = std::count_if(n.begin(), n.end(), [&](const Neighbour& q) {
+    return m.atom(q.atom).element == element::O && m.degree(q.atom) == 1 && m.atom(q.atom).hydrogens == 0;
+  });
+  return bare >= 2 ? "nitrate " : bare == 1 ? "nitrite " : "";
+}
+
 }  // namespace
 
 std::string heavy_type(const Analysis& a, const HeavyBond& bond) {
@@ -51,6 +60,9 @@ std::string heavy_type(const Analysis& a, const HeavyBond& bond) {
     }
   }
   if (c == element::O && p == element::O) return "peroxide " + pair;
+  if (c == element::S && p == element::S) return "disulfide " + pair;
+  if ((c == element::O && p == element::N) || (c == element::N && p == element::O))
+    return oxygen_nitrogen_name(m, c == element::N ? bond.centre : bond.partner) + pair;
   if (c == element::N || p == element::N) return "azo " + pair;
   return pair;
 }

@@ -46,7 +46,9 @@ KindRates Engine::Impl::share_rates(const Analysis& a, const CarbonSites& c, con
         "the complexed atom attacks too, slower and more selectively: it acts on the shares; rate coefficients stay "
         "those of the free atom");
     if (temperature < solvent.t_low - 1 || temperature > solvent.t_high + 1) {
-      notes.push_back(fmt::format("{} was studied at {:.0f} to {:.0f} K", solvent.name, solvent.t_low, solvent.t_high));
+      const auto low = format_fixed(solvent.t_low, 0), high = format_fixed(solvent.t_high, 0);
+      notes.push_back(fmt::format("the evidence for {} is of {} K{}", solvent.name, low == high ? low : low + " to " + high,
+                                  low == high ? " alone" : ""));
     }
   }
   if (reversed) {

@@ -23,6 +23,13 @@ std::string_view trimmed(std::string_view s) {
   return s;
 }
 
+char lower(char c) { return c >= 'A' && c <= 'Z' ? static_cast<char>(c - 'A' + 'a') : c; }
+
+/// Names of solvents are read in either case: "Benzene", "cs2".
+bool same_name(std::string_view a, std::string_view b) {
+  return std::equal(a.begin(), a.end(), b.begin(), b.end(), [](char x, char y) { return lower(x) == lower(y); });
+}
+
 Error usage(std::string what) { return {ErrorClass::usage, std::move(what), "medium"}; }
 
 }  // namespace
@@ -30,8 +37,11 @@ Error usage(std::string what) { return {ErrorClass::usage, std::move(what), "med
 Result<Medium> split_medium(std::string_view text) {
   text = trimmed(text);
   Medium m;
-  if (text.size() > 2 && text.ends_with(" M")) {
-    const auto rest = trimmed(text.substr(0, text.size() - 2));
+  // "8 M" or "8M"; a name may itself end in M.
+  const bool molar = text.size() > 2 && text.ends_with('M') &&
+                     (text[text.size() - 2] == ' ' || (text[text.size() - 2] >= '0' && text[text.size() - 2] <= '9'));
+  if (molar) {
+    const auto rest = trimmed(text.substr(0, text.size() - 1));
     const auto space = rest.rfind(' ');
     const auto number =
         space == std::string_view::npos ? Result<double>(usage("")) : parse_number(rest.substr(space + 1));
@@ -64,20 +74,26 @@ MediumBook::MediumBook(const Table& table) {
 }
 
 bool MediumBook::inert(std::string_view solvent) {
-  return std::find(std::begin(kInert), std::end(kInert), solvent) != std::end(kInert);
+  return std::any_of(std::begin(kInert), std::end(kInert), [&](const char* s) { return same_name(s, solvent); });
 }
 
 const Complexing* MediumBook::find(std::string_view solvent) const {
   const auto it =
-      std::find_if(solvents_.begin(), solvents_.end(), [&](const Complexing& c) { return c.name == solvent; });
+      std::find_if(solvents_.begin(), solvents_.end(), [&](const Complexing& c) { return same_name(c.name, solvent); });
   return it == solvents_.end() ? nullptr : &*it;
 }
 
 Result<Medium> MediumBook::parse(std::string_view text) const {
   auto m = split_medium(text);
-  if (!m.ok() || inert(m.value().solvent)) return m;
+  if (!m.ok()) return m;
   auto& v = m.value();
+  for (const char* s : kInert) {
+    if (!same_name(s, v.solvent)) continue;
+    v.solvent = s;
+    return m;
+  }
   const auto* c = find(v.solvent);
+  if (c != nullptr) v.solvent = c->name;
   if (c == nullptr) {
     std::string known;
     for (const auto& s : solvents_) known += ", " + s.name;

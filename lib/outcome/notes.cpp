@@ -54,6 +54,9 @@ std::vector<std::string> competing_channels(const Analysis& a, Halogen x) {
   if (g.bromide_or_iodide && x == Halogen::Br) {
     out.push_back("a bromine on the next carbon helps bromine atoms to attack there (Thaler, J. Am. Chem. Soc. 1963, 85, 2607); not in the shares");
   }
+  if (a.deuterium_count() > 0) {
+    out.push_back("no data for bonds to D and T: the shares leave them out, and the C-H have the figures of the unlabelled molecule");
+  }
   if (x == Halogen::F) out.push_back("F2 attacks without initiation and the heat of one turn exceeds a C-C bond: fragmentation and fire are the rule without dilution and cooling");
   if (x == Halogen::I) out.push_back("abstraction by I is far uphill and HI reduces the iodide: the chain does not carry itself");
   return out;

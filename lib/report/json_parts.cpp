@@ -57,7 +57,8 @@ Json json_sources(const Table& table, std::span<const int> sources) {
     JsonRecord record;
     record.put("id", row.id);
     record.put("citation", row.citation);
-    record.put("year", row.year);
+    if (row.year > 0) record.put("year", row.year);
+    else record.put_null("year", "the table holds no year for this source");
     record.put_text("doi", row.doi, "the table holds no DOI for this source");
     out.push_back(record.finish());
   }

@@ -174,7 +174,7 @@ CellTable cell_rows_of_bonds(const Table& table, const std::vector<int>& bonds) 
 CellTable cell_sources(const Table& table) {
   CellTable out{{{"id"}, {"year"}, {"kind"}, {"doi"}, {"doi_basis"}, {"citation"}}, {}};
   for (const auto& s : table.sources) {
-    out.rows.push_back({s.id, s.year, text(s.kind), text(s.doi), text(s.doi_basis), text(s.citation)});
+    out.rows.push_back({s.id, s.year > 0 ? Cell{s.year} : Cell{}, text(s.kind), text(s.doi), text(s.doi_basis), text(s.citation)});
   }
   return out;
 }

@@ -2,6 +2,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <set>
 
 #include "phrases.hpp"
 
@@ -25,7 +26,8 @@ std::string sites_text(const HalogenOutcome& outcome, EnergyUnit unit) {
     row.push_back(energy_cell(s.ea, unit) + " ± " + energy_cell(s.u_ea, unit));
     row.push_back(format_scientific(s.k_cm3_s, 3));
     row.push_back(format_fixed(s.u_log10_k, decimals_for(s.u_log10_k, 2)));
-    row.push_back(format_fixed(s.ts_position, 2) + " ± " + format_fixed(s.u_ts_position, 2));
+    const auto ts = quantity_text({s.ts_position, s.u_ts_position}, 2);
+    row.push_back(ts.value + " ± " + ts.u);
     row.push_back(percent(s.share));
     row.push_back(percent_range(s.share_low, s.share_high));
     row.push_back(s.extrapolated ? "extrapolated" : "");
@@ -108,9 +110,33 @@ std::string comparison_text(const Comparison& c, EnergyUnit unit) {
          wrapped("best choice: " + c.why, 118, "    ");
 }
 
+/// What competes, each said once: under the comparison the blocks of the halogens are left out.
+std::string compared_notes(const OutcomeRecord& record) {
+  std::set<Halogen> asked;
+  std::vector<std::pair<std::string, std::set<Halogen>>> said;
+  for (const auto& outcome : record.halogens) {
+    asked.insert(outcome.halogen);
+    for (const auto& note : outcome.notes) {
+      auto at = std::find_if(said.begin(), said.end(), [&](const auto& s) { return s.first == note; });
+      if (at == said.end()) at = said.insert(said.end(), {note, {}});
+      at->second.insert(outcome.halogen);
+    }
+  }
+  std::string out;
+  for (const auto& [note, of] : said) {
+    std::string names;
+    for (const Halogen x : of) names += (names.empty() ? "" : ", ") + std::string(halogen_name(x));
+    out += wrapped("note: " + (of == asked ? "" : names + ": ") + note, 118, "    ");
+  }
+  return out;
+}
+
 std::string record_text(const OutcomeRecord& record, const TextOptions& options) {
   std::string out = head_text(record.head);
-  if (record.comparison) out += comparison_text(*record.comparison, options.unit);
+  if (record.comparison) {
+    out += comparison_text(*record.comparison, options.unit);
+    if (!options.evidence) out += compared_notes(record);
+  }
   if (!record.comparison || options.evidence) {
     for (const auto& outcome : record.halogens) out += halogen_text(outcome, options.unit) + '\n';
   }
@@ -133,7 +159,7 @@ std::string outcome_text(const Table& table, std::span<const OutcomeRecord> reco
   if (!answered) return out + table_line(table);
   out += legend(
       {"H: equivalent hydrogens. dH298: enthalpy of X. + RH -> HX + R., gas, 298.15 K; u: standard uncertainty. "
-       "Ea: Arrhenius activation energy at T (may be negative). k: rate coefficient of all H of the site.",
+       "Ea: Arrhenius activation energy at T (may be negative). k: rate coefficient of all H of the site. ±: standard uncertainty.",
        "TS: position of the transition state, 0 like the reactants, 1 like the products. share: of the C-H sites; "
        "first attack in an inert medium unless a medium or conversion is named. The second table splits ln(k/k) into the parts it is the "
        "sum of.",

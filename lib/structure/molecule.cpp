@@ -142,6 +142,12 @@ Molecule Molecule::without_hydrogen(int atom) const {
 
 Molecule Molecule::with_substituent(int atom, int z) const {
   Molecule m = *this;
+  // H2 becomes HX, written with its hydrogen implied like any other hydride.
+  if (m.atoms_[static_cast<std::size_t>(atom)].element == element::H &&
+      m.atoms_[static_cast<std::size_t>(atom)].isotope == 0) {
+    m.atoms_[static_cast<std::size_t>(atom)].element = static_cast<std::uint8_t>(z);
+    return m;
+  }
   --m.atoms_[static_cast<std::size_t>(atom)].hydrogens;
   // The new atom takes the hydrogen's place, so a stereocentre keeps its sense.
   const int added = atom_count();

@@ -114,7 +114,9 @@ bool Scanner::bracket() {
   const bool aromatic = std::islower(static_cast<unsigned char>(symbol[0])) != 0;
   static constexpr std::string_view kAromatic = "bcnops";
   if (element_number(symbol) == 0 || (aromatic && length == 1 && kAromatic.find(symbol[0]) == std::string_view::npos)) {
-    return fail(ErrorClass::element, fmt::format("'{}' is no element", symbol), name);
+    std::size_t end = i_ + length;  // the whole misspelt symbol: [Xx], not its X
+    while (std::islower(static_cast<unsigned char>(at(end)))) ++end;
+    return fail(ErrorClass::element, fmt::format("'{}' is no element", t_.substr(name, end - name)), name);
   }
   i_ += length;
   if (at(i_) == '@') {

@@ -29,6 +29,13 @@ Result<int> site_of_radical(const Molecule& m, std::span<const SiteOutcome> site
   for (const auto& site : sites) {
     if (structure_hash(m.without_hydrogen(site.atom)) == hash) return site.atom;
   }
+  for (int i = 0; i < m.atom_count(); ++i) {
+    if (m.atom(i).hydrogens == 0 || structure_hash(m.without_hydrogen(i)) != hash) continue;
+    const bool carbon = m.atom(i).element == element::C;
+    return Error{ErrorClass::domain,
+                 carbon ? "no measured rates for the C-H that gives " + text : text + " comes from no C-H of the substrate",
+                 "--site"};
+  }
   return Error{ErrorClass::domain, "no C-H site of the substrate gives the radical " + text, "--site"};
 }
 
@@ -41,6 +48,13 @@ Result<Wanted> site_of_product(const Molecule& m, std::span<const SiteOutcome> s
     for (const Halogen x : kAllHalogens) {
       if (structure_hash(m.with_substituent(site.atom, halogen_element(x))) == hash)
         return Wanted{site.atom, "product", x};
+    }
+  }
+  for (int i = 0; i < m.atom_count(); ++i) {
+    if (m.atom(i).hydrogens == 0 || m.atom(i).element != element::C) continue;
+    for (const Halogen x : kAllHalogens) {
+      if (structure_hash(m.with_substituent(i, halogen_element(x))) == hash)
+        return Error{ErrorClass::domain, "no measured rates for the C-H that gives " + text, "--product"};
     }
   }
   return Error{ErrorClass::domain, "no C-H site of the substrate gives " + text + " by taking up one halogen",
