@@ -175,7 +175,7 @@ BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, cons
     return v;
   }
   v.d = Quantity{parent.d->value + delta.value, std::sqrt(parent.d->u * parent.d->u + delta.u * delta.u)};
-  v.extrapolated = parent.extrapolated;
+  v.extrapolated = parent.extrapolated || v.d->u > kTypedLimit;
   return v;
 }
 

@@ -2,11 +2,15 @@
 fallen behind the floor below. The judges are the curated rows; each names its source in the table.
 
 Usage: validation.py halostep-tables SOURCE_DIR"""
+import csv
 import json
+import math
 import pathlib
 import subprocess
 import sys
 import tempfile
+
+import jsonschema
 
 # section, class: {figure: bound}; upper bounds, but lower ones for rows and within_2u. Aims are stricter; a step back fails.
 FLOORS = {
@@ -52,7 +56,69 @@ def beats_naive(doc):
             yield f"{section}, {name}: {c['mean_abs']:.2f}, no better than the naive {c['naive_mean_abs']:.2f}"
 
 
+def differences(a, b, at=""):
+    """Figures agree but for their last digits, all else is equal."""
+    if isinstance(a, dict) and isinstance(b, dict) and a.keys() == b.keys():
+        for k in a:
+            yield from differences(a[k], b[k], f"{at}/{k}")
+    elif isinstance(a, list) and isinstance(b, list) and len(a) == len(b):
+        for i, (x, y) in enumerate(zip(a, b)):
+            yield from differences(x, y, f"{at}/{i}")
+    elif isinstance(a, float) and isinstance(b, float):
+        if not math.isclose(a, b, rel_tol=1e-6, abs_tol=1e-9):
+            yield f"{at}: {a}, committed {b}"
+    elif a != b:
+        yield f"{at}: {str(a)[:60]}, committed {str(b)[:60]}"
+
+
+MOST_EXCLUDED = 0.10
+# Rows by group of the 10 % rule: section, start of the class.
+GROUPS = [("bonds", ""), ("halides", ""), ("rates", "Cl"), ("ratios", "Cl2"), ("mixtures", "")]
+
+
+def list_faults(today, frozen):
+    """The list of rows that judge may only change together with its committed copy, and each row left out says why."""
+    now = {(r["section"], r["key"]): r for r in today}
+    then = {(r["section"], r["key"]): r for r in frozen}
+    for key, r in now.items():
+        if key not in then:
+            yield f"{key}: judged today, not in the frozen list"
+        elif (r["excluded"] == "no") != (then[key]["excluded"] == "no"):
+            yield f"{key}: excluded {r['excluded']} ({r['reason']}), frozen as {then[key]['excluded']}"
+    for key, r in then.items():
+        if key not in now and r["excluded"] == "no":
+            yield f"{key}: frozen as judged, no longer there"
+        if r["excluded"] not in ("no", "yes", "not asked") or (r["excluded"] != "no") != bool(r["reason"]):
+            yield f"{key}: excluded {r['excluded']!r}, reason {r['reason']!r}"
+    for section, start in GROUPS:
+        rows = [r["excluded"] for r in today if r["section"] == section and r["class"].startswith(start)]
+        out, judged = rows.count("yes"), rows.count("no")
+        if out > MOST_EXCLUDED * (out + judged):
+            yield f"{section} {start}: {out} of {out + judged} rows are excluded"
+
+
+def read_rows(path):
+    with open(path, newline="", encoding="utf-8") as f:
+        return list(csv.DictReader(f))
+
+
+def list_self_test():
+    def row(section, n, excluded="no", reason=""):
+        return {"section": section, "key": str(n), "class": "Cl2", "excluded": excluded, "reason": reason}
+    good = [row(s, n) for s, _ in GROUPS for n in range(10)] + [row("bonds", 10, "yes", "doubtful")]
+    drop, late = good[:-1] + [row("bonds", 10)], good + [row("bonds", 11)]
+    silent = good[:-1] + [row("bonds", 10, "yes")]
+    many = good + [row("bonds", n, "yes", "doubtful") for n in range(11, 20)]
+    bad = [(good, drop), (late, good), (good, late), (good, silent), (many, many)]
+    far = list(differences({"a": [1.0, None]}, {"a": [1.00001, None]}))
+    near = list(differences({"a": [1.0, None]}, {"a": [1.00000001, None]}))
+    return not list(list_faults(good, good)) and all(list(list_faults(*b)) for b in bad) and far and not near
+
+
 def self_test():
+    if not list_self_test():
+        print("the list of rows or the figures: a fault is not found")
+        return 1
     good = {"sections": [{"id": i, "classes": [dict(b, **{"class": c}) for (s, c), b in FLOORS.items() if s == i]}
                          for i in sorted({section for section, _ in FLOORS})]}
     if list(shortfalls(good)):
@@ -71,11 +137,18 @@ def self_test():
 def main(tool, source):
     with tempfile.TemporaryDirectory() as tmp:
         report, figures = pathlib.Path(tmp, "v.md"), pathlib.Path(tmp, "v.json")
-        subprocess.run([tool, "validate", str(source / "bde_tables"), "--markdown", report, "--json", figures],
-                       check=True, stdout=subprocess.DEVNULL)
+        plot, rows = pathlib.Path(tmp, "v.svg"), pathlib.Path(tmp, "rows.csv")
+        subprocess.run([tool, "validate", str(source / "bde_tables"), "--markdown", report, "--json", figures,
+                        "--plot", plot, "--rows", rows], check=True, stdout=subprocess.DEVNULL)
         doc = json.loads(figures.read_text())
         faults = list(shortfalls(doc)) + list(beats_naive(doc))
-        if report.read_text() != (source / "docs" / "validation.md").read_text():
+        docs = source / "docs"
+        jsonschema.validate(doc, json.loads((docs / "schema" / "validation.json").read_text()))
+        faults += differences(doc, json.loads((docs / "validation.json").read_text()))
+        faults += list_faults(read_rows(rows), read_rows(source / "tests" / "reference" / "judged_rows.csv"))
+        if plot.read_text() != (docs / "reliability.svg").read_text():
+            faults.append("docs/reliability.svg is not what validate writes; see DEVELOPERS.md, Refit")
+        if report.read_text() != (docs / "validation.md").read_text():
             faults.append("docs/validation.md is not what validate writes; see DEVELOPERS.md, Refit")
     for fault in faults:
         print("FAULT", fault)

@@ -123,9 +123,9 @@ int refit_command(const std::string& dir) {
   return tell(dir, faults);
 }
 
-int validate_command(const std::string& dir, const std::string& markdown, const std::string& json) {
+int validate_command(const std::string& dir, const ValidateFiles& files) {
   const auto curated = checked(dir);
-  return curated ? validate(curated->table, markdown, json) : 1;
+  return curated ? validate(curated->table, files) : 1;
 }
 
 int hammond_command(const std::string& dir, const std::string& markdown) {

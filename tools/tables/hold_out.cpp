@@ -34,8 +34,13 @@ std::uint64_t hash_of(const std::string& text) {
 
 }  // namespace
 
+Folds::Folds(const std::vector<std::string>& molecules) : count_(static_cast<int>(molecules.size())), alone_(true) {
+  for (const auto& m : molecules) known_.emplace(m, static_cast<int>(known_.size()));
+}
+
 int Folds::of(const std::string& smiles) {
   if (const auto it = known_.find(smiles); it != known_.end()) return it->second;
+  if (alone_) return -1;
   const auto m = parse_smiles(smiles, ParseMode::species);
   const int fold = m.ok() ? static_cast<int>(hash_of(family(m.value())) % static_cast<std::uint64_t>(count_)) : -1;
   known_.emplace(smiles, fold);

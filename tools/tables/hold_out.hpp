@@ -2,6 +2,7 @@
 #pragma once
 #include <string>
 #include <unordered_map>
+#include <vector>
 
 #include "halostep/molecule.hpp"
 #include "halostep/tables.hpp"
@@ -12,12 +13,15 @@ namespace halostep {
 class Folds {
  public:
   explicit Folds(int count) : count_(count) {}
+  /// One molecule per fold, its kin in none; SMILES in the table's own spelling.
+  explicit Folds(const std::vector<std::string>& molecules);
   [[nodiscard]] int count() const { return count_; }
   /// By SMILES; -1 when it does not parse.
   [[nodiscard]] int of(const std::string& smiles);
 
  private:
   int count_;
+  bool alone_ = false;
   std::unordered_map<std::string, int> known_;
 };
 

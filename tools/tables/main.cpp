@@ -2,6 +2,7 @@
 #include <string>
 
 #include "tables/commands.hpp"
+#include "tables/validate.hpp"
 
 int main(int argc, char** argv) {
   CLI::App app("Checks the curated table of halostep, fits its models and compiles it.", "halostep-tables");
@@ -19,10 +20,14 @@ int main(int argc, char** argv) {
   compile->callback([&] { code = halostep::compile_command(dir, out); });
   command("refit", "check, fit, and write fitted.json")->callback([&] { code = halostep::refit_command(dir); });
   auto* check_engine = command("validate", "judge the engine on molecules held out of every file, and print the report");
-  std::string markdown, json;
-  check_engine->add_option("--markdown", markdown, "write the report to this file");
-  check_engine->add_option("--json", json, "write the figures to this file");
-  check_engine->callback([&] { code = halostep::validate_command(dir, markdown, json); });
+  halostep::ValidateFiles files;
+  check_engine->add_option("--markdown", files.markdown, "write the report to this file");
+  check_engine->add_option("--json", files.json, "write the figures to this file");
+  check_engine->add_option("--plot", files.plot, "write the reliability plot to this file, as SVG");
+  check_engine->add_option("--rows", files.rows, "write the list of rows that judge to this file, as CSV");
+  check_engine->add_flag("--thorough", files.thorough, "hold each molecule of a mixture out alone too; takes minutes");
+  check_engine->callback([&] { code = halostep::validate_command(dir, files); });
+  std::string markdown;
   auto* parts = command("hammond", "take the selectivity of F, Cl, Br, I apart on hydrocarbons and polar substrates, from fitted.json");
   parts->add_option("--markdown", markdown, "write the table to this file");
   parts->callback([&] { code = halostep::hammond_command(dir, markdown); });

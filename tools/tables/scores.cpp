@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <nlohmann/json.hpp>
 
 namespace halostep {
@@ -79,8 +80,9 @@ std::string calibration_markdown(const Section& s) {
     if (c.judged.empty()) continue;
     const auto k = calibration(c);
     const bool naive = c.naive_class.size() == c.judged.size();
-    out += fmt::format("| {} | {} | {:.0f} % | {:.1f} | {:.0f} | {} |\n", name, c.judged.size(), 100 * k.coverage, k.median_u,
-                       k.interval_score, naive ? fmt::format("{:.0f}", k.naive_interval_score) : "-");
+    const int coarse = std::max(0, s.decimals - 1);
+    out += fmt::format("| {} | {} | {:.0f} % | {:.{}f} | {:.{}f} | {} |\n", name, c.judged.size(), 100 * k.coverage, k.median_u, s.decimals,
+                       k.interval_score, coarse, naive ? fmt::format("{:.{}f}", k.naive_interval_score, coarse) : "-");
   }
   if (out.empty()) return out;
   return "\n95 % intervals, 1.96 u with the judge's own u; median u is that of the answer alone. Interval score: width plus 40 "
@@ -95,6 +97,14 @@ double quantile_of(std::vector<double> e, double q) {
   for (auto& v : e) v = std::abs(v);
   std::sort(e.begin(), e.end());
   return e[std::min(e.size() - 1, static_cast<std::size_t>(q * static_cast<double>(e.size())))];
+}
+
+std::pair<double, double> mean_and_deviation(const std::vector<double>& v) {
+  if (v.size() < 2) return {std::numeric_limits<double>::quiet_NaN(), 0};
+  double mean = 0, square = 0;
+  for (const double x : v) mean += x / static_cast<double>(v.size());
+  for (const double x : v) square += (x - mean) * (x - mean);
+  return {mean, std::sqrt(square / static_cast<double>(v.size() - 1))};
 }
 
 std::string section_markdown(const Section& s) {
@@ -132,6 +142,7 @@ nlohmann::json section_json(const Section& s) {
     put("median_abs", f.median, !c.error.empty());
     put("rms", f.rms, !c.error.empty());
     put("largest", f.largest, !c.error.empty());
+    put("p95", quantile_of(c.error, 0.95), !c.error.empty());
     put("within_2u", c.with_u > 0 ? static_cast<double>(c.within) / c.with_u : 0, c.with_u > 0);
     put("naive_mean_abs", n.mean, !c.naive.empty());
     put("naive_rms", n.rms, !c.naive.empty());

@@ -5,6 +5,8 @@
 #include <string>
 #include <vector>
 
+#include "tables/judged_list.hpp"
+
 namespace halostep {
 
 struct Score {
@@ -34,12 +36,19 @@ struct Section {
   std::vector<std::pair<double, std::string>> rows;  // |error|, what
   std::vector<std::string> remarks{};                // printed below the table
   std::string tail{};                                // printed after the rows
+  std::vector<JudgedRow> judged{};                   // every row that could judge
 
   void row(double error, std::string what) { rows.emplace_back(error < 0 ? -error : error, std::move(what)); }
+  void list(std::string group, std::string key, Judged state = Judged::yes, std::string reason = {}) {
+    judged.push_back({std::move(group), std::move(key), state, std::move(reason)});
+  }
 };
 
 /// Quantile q of the absolute values; 0 of nothing.
 double quantile_of(std::vector<double> e, double q);
+
+/// Mean and standard deviation; not a number of fewer than two.
+std::pair<double, double> mean_and_deviation(const std::vector<double>& v);
 
 std::string section_markdown(const Section& s);
 nlohmann::json section_json(const Section& s);

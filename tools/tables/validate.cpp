@@ -6,6 +6,8 @@
 #include <nlohmann/json.hpp>
 
 #include "tables/fit.hpp"
+#include "tables/reliability.hpp"
+#include "tables/summary.hpp"
 #include "tables/table_io.hpp"
 
 namespace halostep {
@@ -100,9 +102,86 @@ bool judge_folds(const Table& table, const Table& fitted, Validation& v) {
   return true;
 }
 
+std::vector<const Section*> reported(const Validation& v) {
+  return {&v.bonds, &v.halides, &v.sources, &v.rates, &v.temperatures, &v.forms, &v.reverse, &v.ratios, &v.mixtures, &v.media};
+}
+
+std::vector<const Section*> listed(const Validation& v) { return {&v.bonds, &v.halides, &v.rates, &v.reverse, &v.ratios, &v.mixtures, &v.media}; }
+
+std::vector<ReliabilityCurve> curves_of(const Validation& v) {
+  const auto z = [](const Section& s, const char* name) {
+    std::vector<double> out;
+    if (const auto it = s.classes.find(name); it != s.classes.end()) {
+      for (const auto& [e, u] : it->second.judged) out.push_back(e / u);
+    }
+    return out;
+  };
+  return {reliability("D(C-H), typed", z(v.bonds, "all C-H")), reliability("D(R-X)", z(v.halides, "all C-X")),
+          reliability("log k, Cl + C-H at 298 K", z(v.rates, "Cl + all")), reliability("shares of mixtures", v.share_z)};
+}
+
+nlohmann::json judged_json(const Validation& v) {
+  const struct {
+    const char* name;
+    const Section& section;
+    const char* prefix;
+  } groups[] = {{"D of X-H", v.bonds, ""}, {"D(R-X)", v.halides, ""}, {"rates, Cl", v.rates, "Cl"}, {"rates, Br", v.rates, "Br"},
+                {"rates, F", v.rates, "F"}, {"activation energies of R + HX", v.reverse, ""}, {"relative rates", v.ratios, ""},
+                {"mixtures", v.mixtures, ""}, {"solvents", v.media, ""}};
+  auto out = nlohmann::json::array();
+  for (const auto& g : groups) {
+    const auto n = count_judged(g.section, g.prefix);
+    out.push_back({{"group", g.name}, {"judged", n.judged}, {"excluded", n.excluded}, {"excluded_share", n.excluded_share()}, {"not_asked", n.not_asked}});
+  }
+  return out;
+}
+
+std::string judged_markdown(const nlohmann::json& judged) {
+  std::string out =
+      "## Rows that judge\n\nEvery row and the reason of each that is left out: tests/reference/judged_rows.csv. Excluded: could judge, but the "
+      "engine refuses, answers in part, or the row itself is doubtful; where the engine does answer, the classes that end in \"too\" have them in. "
+      "Not asked: no measurement of what is judged.\n\n| rows | judged | excluded | share | not asked |\n|---|---|---|---|---|\n";
+  for (const auto& g : judged)
+    out += fmt::format("| {} | {} | {} | {:.1f} % | {} |\n", g["group"].get<std::string>(), g["judged"].get<int>(), g["excluded"].get<int>(),
+                       100 * g["excluded_share"].get<double>(), g["not_asked"].get<int>());
+  return out + "\n";
+}
+
+std::string reliability_markdown(const std::vector<ReliabilityCurve>& curves) {
+  std::string out = "## Reliability\n\n![Nominal against observed coverage](reliability.svg)\n\nValues inside the interval, in %, by its nominal "
+                    "coverage; u is that of the answer with the judge's own, for shares the half of the 95 % interval on that side.\n\n| |";
+  for (const int p : kNominal) out += fmt::format(" {} |", p);
+  out += "\n|---|";
+  for (std::size_t i = 0; i < kNominal.size(); ++i) out += "---|";
+  out += "\n";
+  for (const auto& c : curves) {
+    out += fmt::format("| {} ({}) |", c.name, c.rows);
+    for (const double o : c.observed) out += fmt::format(" {:.0f} |", o);
+    out += "\n";
+  }
+  return out + "\n";
+}
+
+std::string head(const std::string& hash) {
+  return fmt::format(
+      "# Validation\n\nWritten by `halostep-tables validate`. Molecules are held out of every file of the table at once, in {} folds ({} for bonds); "
+      "molecules with the same kinds of C-H site (homologues) share a fold. All models are fitted anew for each fold and asked "
+      "through the engine. Table {}.\n\n", kFolds, kBondFolds, hash);
+}
+
+nlohmann::json document(const Validation& v, const std::vector<ReliabilityCurve>& curves) {
+  nlohmann::json doc = {{"schema", "halostep.validation/1"}, {"folds", kFolds}, {"bond_folds", kBondFolds}, {"sections", nlohmann::json::array()}};
+  for (const auto* s : reported(v)) doc["sections"].push_back(section_json(*s));
+  doc["judged"] = judged_json(v);
+  doc["reliability"] = {{"nominal", kNominal}, {"curves", nlohmann::json::array()}};
+  for (const auto& c : curves) doc["reliability"]["curves"].push_back({{"name", c.name}, {"rows", c.rows}, {"observed", c.observed}});
+  doc["summary"] = summary_json(doc);
+  return doc;
+}
+
 }  // namespace
 
-int validate(const Table& table, const std::string& markdown, const std::string& json) {
+int validate(const Table& table, const ValidateFiles& files) {
   auto v = sections();
   Table fitted = table;
   auto all = fit_models(table);
@@ -117,18 +196,16 @@ int validate(const Table& table, const std::string& markdown, const std::string&
     fmt::print(stderr, "solvents: {}\n", error->message);
     return 1;
   }
-  std::string text = fmt::format(
-      "# Validation\n\nWritten by `halostep-tables validate`. Molecules are held out of every file of the table at once, in {} folds ({} for bonds); "
-      "molecules with the same kinds of C-H site (homologues) share a fold. All models are fitted anew for each fold and asked "
-      "through the engine. Table {}.\n\n", kFolds, kBondFolds, content_hash(table).substr(0, 16));
-  nlohmann::json doc = {{"schema", "halostep.validation/1"}, {"folds", kFolds}, {"bond_folds", kBondFolds}, {"sections", nlohmann::json::array()}};
   judge_sources(table, v.sources);
-  for (const auto* s : {&v.bonds, &v.halides, &v.sources, &v.rates, &v.temperatures, &v.forms, &v.reverse, &v.ratios, &v.mixtures, &v.media}) {
-    text += section_markdown(*s);
-    doc["sections"].push_back(section_json(*s));
-  }
+  if (files.thorough && !judge_alone_mixtures(table, v)) return 1;
+  const auto curves = curves_of(v);
+  const auto doc = document(v, curves);
+  auto text = head(content_hash(table).substr(0, 16)) + summary_markdown(doc["summary"]) + judged_markdown(doc["judged"]) + reliability_markdown(curves);
+  for (const auto* s : reported(v)) text += section_markdown(*s);
   fmt::print("{}", text);
-  return write(markdown, text) && write(json, doc.dump(1) + "\n") ? 0 : 1;
+  const bool written = write(files.markdown, text) && write(files.json, doc.dump(1) + "\n") && write(files.plot, reliability_svg(curves)) &&
+                       write(files.rows, judged_csv(listed(v)));
+  return written ? 0 : 1;
 }
 
 }  // namespace halostep

@@ -22,6 +22,7 @@ struct JudgedRate {
 struct Validation {
   Section bonds, halides, sources, rates, mixtures, temperatures, ratios, media, reverse, forms;
   std::vector<JudgedRate> rows;
+  std::vector<double> share_z;  // errors of shares in their deviations
   std::map<std::string, std::vector<double>> ranges;  // share of pairs ordered right, by class: 1 or 0
 };
 
@@ -56,7 +57,16 @@ bool is_hydrocarbon(const Molecule& m);
 /// Naive rate per H, relative: one factor per carbon class.
 double naive_per_h(Halogen x, const Molecule& m, int atom);
 
-/// Prints the report; writes it to the files named (empty: not). Exit code of the command.
-int validate(const Table& table, const std::string& markdown, const std::string& json);
+/// Measured mixtures whose molecule alone is held out, its kin in; one fit of everything per molecule.
+bool judge_alone_mixtures(const Table& table, Validation& out);
+
+/// Files to write; empty: not.
+struct ValidateFiles {
+  std::string markdown, json, plot, rows;
+  bool thorough = false;  // what takes minutes too
+};
+
+/// Prints the report and writes the files. Exit code of the command.
+int validate(const Table& table, const ValidateFiles& files);
 
 }  // namespace halostep

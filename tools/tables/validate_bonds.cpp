@@ -68,15 +68,6 @@ std::optional<BondAnswer> ask(const FoldView& v, const BondEntry& b, bool hydrog
 // A value known to no better than this cannot judge an answer, kJ/mol; it is shown in a class of its own.
 constexpr double kJudgeLimit = 10.0;
 
-// Mean and standard deviation.
-std::pair<double, double> moments(const std::vector<double>& v) {
-  if (v.size() < 2) return {std::numeric_limits<double>::quiet_NaN(), 0};
-  double mean = 0, square = 0;
-  for (const double x : v) mean += x / static_cast<double>(v.size());
-  for (const double x : v) square += (x - mean) * (x - mean);
-  return {mean, std::sqrt(square / static_cast<double>(v.size() - 1))};
-}
-
 // How bonds of one kind are judged; `whole` is the class that takes all of them.
 struct Question {
   bool hydrogen = true, typed = true, detailed = true;
@@ -91,22 +82,31 @@ void judge(const FoldView& v, Section& s, const Question& q) {
   for (const auto& b : v.full.bonds) {
     if (v.folds.of(b.molecule) != v.fold) continue;
     const auto name = class_of(b, q.hydrogen);
-    const auto answer = name.empty() ? std::nullopt : ask(v, b, q.hydrogen, q.typed);
-    if (!answer) continue;
+    if (name.empty()) continue;
+    const auto answer = ask(v, b, q.hydrogen, q.typed);
+    const auto list = [&](Judged state, const char* why) {
+      if (q.detailed) s.list(name, b.molecule + " > " + b.radical, state, why);
+    };
+    if (!answer) {
+      list(Judged::excluded, "the engine finds no such bond in the molecule");
+      continue;
+    }
     const bool carbon = !q.hydrogen || answer->bond == "C-H", judges = b.d298.u <= kJudgeLimit;
     const std::string whole = q.whole;
     if (!answer->d298) {
+      list(Judged::excluded, "refused: outside the domain of the typed model");
       if (q.detailed) ++s.classes[name].refused;
       s.classes[whole].refused += carbon;
       continue;
     }
     const double e = answer->d298->value - b.d298.value, u = answer->d298->u;
-    auto mean = moments(seen[name]);
+    auto mean = mean_and_deviation(seen[name]);
     mean = {mean.first - b.d298.value, std::hypot(mean.second, b.d298.u)};
     const double naive = median(seen[name]) - b.d298.value;
     const auto add = [&](const std::string& c) { s.classes[c].add(e, u, b.d298.u, naive, mean); };
     if (carbon) add(whole + ", doubtful judges too");
     if (carbon && judges) add(whole);
+    list(judges ? Judged::yes : Judged::excluded, judges ? "" : "u of the table's value is above 10 kJ/mol");
     if (!q.detailed || !judges) continue;
     add(name);
     add(answer->extrapolated ? "marked thin" : "not marked thin");

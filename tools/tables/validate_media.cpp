@@ -29,7 +29,10 @@ void judge(const Engine::Impl& impl, const MediumSample& s, const FittedModel& m
   out.media.classes[name].add(e, free - s.ln_value);
   out.media.row(e, fmt::format("{} {} M at {:.0f} K: {:.1f}, row {:.1f} ({})", s.solvent, s.molarity, s.temperature,
                                std::exp(value), std::exp(s.ln_value), name));
-  if (name == "as fitted") return;
+  const bool fitted = name == "as fitted";
+  out.media.list(s.solvent, fmt::format("{} {} M at {:.0f} K", s.solvent, s.molarity, s.temperature), fitted ? Judged::not_asked : Judged::yes,
+                 fitted ? "the only row of its solvent: nothing is left when it is left out" : "");
+  if (fitted) return;
   // The same as a mixture of two parts; its mean absolute error is that of either part.
   const double seen = fraction(s, s.ln_value);
   out.mixtures.classes["Cl2, complexing solvent, molarity left out"].add(fraction(s, value) - seen,

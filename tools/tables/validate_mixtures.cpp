@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <map>
 #include <tuple>
 
@@ -34,7 +35,8 @@ const char* left_out(const MixtureRow& r) {
 
 struct Shares {
   std::vector<std::string> name;
-  std::vector<double> seen, engine, naive, low, high;
+  std::vector<double> seen, engine, naive, low, high, z;  // z: error in deviations of the share
+  bool marked = false;  // a site is extrapolated
 };
 
 double sum_of(const std::vector<double>& v) {
@@ -61,6 +63,13 @@ bool needs_complexing(const Molecule& m, const std::string& medium, const std::s
   return std::any_of(info.begin(), info.end(), [](const AtomInfo& i) { return i.kind == Substituent::aryl; });
 }
 
+// The two halves of a share's 95 % interval, each taken as half of a normal law.
+double deviations(const SiteOutcome& s, double seen) {
+  constexpr double kNormal = 1.96;
+  const double half = seen > s.share ? s.share_high - s.share : s.share - s.share_low, off = std::abs(seen - s.share);
+  return half > 0 ? kNormal * off / half : off > 0 ? std::numeric_limits<double>::infinity() : 0.0;
+}
+
 constexpr double kUnnamed = 0.03;  // more than rounding
 
 // Products with their site; one that no site gives makes the mixture unanswered.
@@ -68,6 +77,7 @@ bool collect(const std::vector<const MixtureRow*>& rows, const Molecule& m, Halo
              Shares& s) {
   double naive_all = 0;
   for (const auto& site : o.sites) naive_all += site.h_count * naive_per_h(x, m, site.atom);
+  for (const auto& site : o.sites) s.marked = s.marked || site.extrapolated;
   for (const auto* row : rows) {
     const auto product = parse_smiles(row->product);
     if (!product.ok()) return false;
@@ -79,6 +89,7 @@ bool collect(const std::vector<const MixtureRow*>& rows, const Molecule& m, Halo
     s.name.push_back(row->product);
     s.seen.push_back(row->fraction);
     s.engine.push_back(site->share);
+    s.z.push_back(deviations(*site, row->fraction));
     s.low.push_back(site->share_low);
     s.high.push_back(site->share_high);
     s.naive.push_back(site->h_count * naive_per_h(x, m, site->atom) / naive_all);
@@ -148,7 +159,12 @@ void judge_mixtures(const FoldView& v, Validation& out) {
     const auto x = carrier_of(r.reagent);
     const auto m = parse_smiles(r.molecule);
     if (!x || !m.ok()) continue;
+    const auto list = [&](Judged state, const char* why) {
+      out.mixtures.list(r.reagent, fmt::format("{} + {} at {:.0f} K, {}, {}", r.reagent, r.molecule, r.t, r.medium,
+                                               v.full.sources[static_cast<std::size_t>(r.source)].id), state, why);
+    };
     if (const char* why = left_out(r)) {
+      list(Judged::not_asked, why);
       out.mixtures.tail += fmt::format("- not judged: {} + {} at {:.0f} K, {} ({}): {}\n", r.reagent, r.molecule, r.t,
                                        r.medium, v.full.sources[static_cast<std::size_t>(r.source)].id, why);
       continue;
@@ -159,6 +175,7 @@ void judge_mixtures(const FoldView& v, Validation& out) {
     // Without the solvents' substrate in the fold there is no solvent to stand for a neat arene.
     const bool self_complexing = needs_complexing(m.value(), r.medium, r.reagent), complexing = conditions.medium.find(" M") != std::string::npos;
     if (self_complexing && !complexing) {
+      list(Judged::excluded, "an arene that complexes chlorine; the solvents' substrate is held out with it");
       ++out.mixtures.classes[fmt::format("{}, complexing medium", r.reagent)].refused;
       continue;
     }
@@ -167,16 +184,23 @@ void judge_mixtures(const FoldView& v, Validation& out) {
     const auto o = v.engine.outcome(m.value(), one, r.t, conditions);
     Shares s;
     if (!o.ok() || !collect(rows, m.value(), *x, o.value()[0], s)) {
+      list(Judged::excluded, o.ok() ? "a product at a site outside the domain" : "refused: outside the domain");
       ++c.refused;
       continue;
     }
     const double e = mean_error(s.engine, s.seen);
-    c.add(e, mean_error(s.naive, s.seen));
+    const double naive = mean_error(s.naive, s.seen);
+    list(Judged::yes, "");
+    auto& all = out.mixtures.classes["all of these"];
+    for (auto* to : {&c, &all, &out.mixtures.classes[s.marked ? "all, marked extrapolated" : "all, not marked extrapolated"]}) to->add(e, naive);
+    out.share_z.insert(out.share_z.end(), s.z.begin(), s.z.end());
     std::string text;
     for (std::size_t i = 0; i < s.seen.size(); ++i) {
       if (s.name[i] != "other") {
-        ++c.with_u;
-        c.within += s.seen[i] >= s.low[i] && s.seen[i] <= s.high[i];
+        for (auto* to : {&c, &all}) {
+          ++to->with_u;
+          to->within += s.seen[i] >= s.low[i] && s.seen[i] <= s.high[i];
+        }
       }
       text += fmt::format("{}{} {:.2f} (seen {:.2f})", i ? ", " : "", s.name[i], s.engine[i], s.seen[i]);
     }

@@ -2,6 +2,8 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
+#include <map>
 #include <optional>
 
 #include "bonds/environment.hpp"
@@ -62,6 +64,9 @@ const char* set_aside(const RateRow& r) {
   if (!r.fitted) return "rows set aside in the table";
   return r.u_log10 >= kOrderOfMagnitude ? "order of magnitude only" : nullptr;
 }
+
+// As the table says it, or in our own words.
+std::string why_aside(const RateRow& r, const char* aside) { return r.note.empty() ? aside : fmt::format("{}: {}", aside, r.note); }
 
 struct Answer {
   double log_k = 0, u = 0;
@@ -126,9 +131,44 @@ void judge_range(const Engine& engine, const RateRow& r, const Molecule& m, Vali
   for (int i = 0; i < kTemperatures; ++i) at(low + (high - low) * i / (kTemperatures - 1), ", five temperatures");
 }
 
+std::string name_of(const RateRow& r, const Molecule& m) {
+  const auto* aside = set_aside(r);
+  return aside != nullptr ? fmt::format("{} + {}", r.carrier, aside) : class_of(m, r.carrier);
+}
+
+// log10 k of the class's molecules that are not held out, as the naive answer with an uncertainty.
+std::map<std::string, std::vector<double>> seen_by_class(const FoldView& v) {
+  std::map<std::string, std::vector<double>> seen;
+  for (const auto& r : v.full.rates) {
+    if (r.superseded || r.carrier.empty() || v.folds.of(r.molecule) == v.fold || temperature_of(r) == 0) continue;
+    if (const auto m = parse_smiles(r.molecule); m.ok())
+      seen[name_of(r, m.value())].push_back(std::log10(rate_of(r, temperature_of(r))));
+  }
+  return seen;
+}
+
+// Ea of the step the rows of iodine tell of.
+void judge_iodine(const Engine& engine, const RateRow& r, const Molecule& m, Validation& out) {
+  constexpr double kUsual = 500;  // K, where a row states no range
+  if (r.carrier != "I" || !r.ea) return;
+  auto& c = out.reverse.classes["I + R-H, forward"];
+  const auto a = asked(engine, r, m, r.t_min && r.t_max ? 0.5 * (*r.t_min + *r.t_max) : kUsual);
+  if (!a || a->partly || a->sites.size() != 1)
+    ++c.refused;
+  else
+    c.add(a->sites.front().ea - *r.ea, std::nan(""));
+}
+
+std::string key_of(const FoldView& v, const RateRow& r) {
+  const auto range = r.t_min && r.t_max ? fmt::format("{:.0f}-{:.0f} K", *r.t_min, *r.t_max) : std::string("298 K");
+  return fmt::format("{} + {} ({}), {}, {}", r.carrier, r.molecule, r.radical, range,
+                     v.full.sources[static_cast<std::size_t>(r.source)].id);
+}
+
 }  // namespace
 
 void judge_rates(const FoldView& v, Validation& out) {
+  const auto others = seen_by_class(v);
   for (const auto& r : v.full.rates) {
     if (r.superseded || r.carrier.empty() || v.folds.of(r.molecule) != v.fold) continue;
     const auto m = parse_smiles(r.molecule);
@@ -136,25 +176,37 @@ void judge_rates(const FoldView& v, Validation& out) {
     if (!m.ok() || !parse_halogen(r.carrier).ok()) continue;
     const auto* aside = set_aside(r);
     if (aside == nullptr) judge_range(v.engine, r, m.value(), out);
-    if (t == 0) continue;
-    const std::string name =
-        aside != nullptr ? fmt::format("{} + {}", r.carrier, aside) : class_of(m.value(), r.carrier);
+    judge_iodine(v.engine, r, m.value(), out);
+    const auto name = name_of(r, m.value());
+    const auto list = [&](Judged state, const std::string& why) { out.rates.list(name, key_of(v, r), state, why); };
+    if (t == 0) {
+      list(Judged::not_asked, "no value at the temperature that is judged");
+      continue;
+    }
     auto& c = out.rates.classes[name];
     const auto a = asked(v.engine, r, m.value(), t);
     if (!a) {
+      list(Judged::excluded, "refused: outside the domain");
       ++c.refused;
       continue;
     }
     const double seen = std::log10(rate_of(r, t)), e = a->log_k - seen, u = std::hypot(a->u, r.u_log10);
+    const auto same = others.find(name);
+    auto mean = mean_and_deviation(same == others.end() ? std::vector<double>{} : same->second);
+    mean = {mean.first - seen, std::hypot(mean.second, r.u_log10)};
     const double naive = r.carrier == "Cl" ? naive_log_k(a->sites, m.value()) - seen : std::nan("");
     out.rates.classes[fmt::format("{} + all, set aside and partly answered too", r.carrier)].add(e, u, naive);
     if (a->partly) {
+      list(Judged::excluded, "answered in part: a C-H the row speaks of is outside the domain");
       ++c.refused;
       continue;
     }
-    c.add(e, u, naive);
+    const auto add = [&](const std::string& to) { out.rates.classes[to].add(e, a->u, r.u_log10, naive, mean); };
+    add(name);
+    list(aside == nullptr ? Judged::yes : Judged::excluded, aside == nullptr ? std::string() : why_aside(r, aside));
     if (aside != nullptr) continue;
-    out.rates.classes[fmt::format("{} + all", r.carrier)].add(e, u, naive);
+    add(fmt::format("{} + all", r.carrier));
+    add(fmt::format("{} + all, {}marked extrapolated", r.carrier, a->marked ? "" : "not "));
     out.rows.push_back({r.carrier, e, a->u, a->marked});
     out.rates.row(
         e, fmt::format("{} + {} ({}) at {:.0f} K: {:.2e}, row {:.2e} cm3/s{}", r.carrier, r.molecule, r.radical, t,

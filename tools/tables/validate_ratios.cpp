@@ -53,10 +53,14 @@ void judge_ratios(const FoldView& v, Validation& out) {
                                              is_hydrocarbon(m.value()) ? "hydrocarbons" : "polar substrates")];
     const auto a = site_of(v.engine, r.molecule, r.radical, r);
     const auto b = site_of(v.engine, r.reference_molecule, r.reference_radical, r);
+    const auto key = fmt::format("{} at {:.0f} K, {}: {} of {} against {} of {}, {}", r.reagent, r.t, r.medium, r.radical, r.molecule,
+                                 r.reference_radical, r.reference_molecule, v.full.sources[static_cast<std::size_t>(r.source)].id);
     if (!a || !b) {
+      out.ratios.list(r.reagent, key, Judged::excluded, "refused: outside the domain");
       ++c.refused;
       continue;
     }
+    out.ratios.list(r.reagent, key);
     const double seen = std::log10(r.ratio), e = std::log10(a->per_h / b->per_h) - seen;
     c.add(e, std::hypot(std::sqrt(a->variance + b->variance), r.u_log10), std::log10(a->naive / b->naive) - seen);
     if (std::abs(seen) > std::log10(kDiffer)) {
