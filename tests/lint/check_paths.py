@@ -1,4 +1,4 @@
-"""No path of one machine and no web address in the tree, but for DOIs and schema ids."""
+"""No path of one machine and no web address in the tree, but for DOIs, schema ids and the namespace of SVG."""
 import re
 import sys
 
@@ -8,7 +8,7 @@ import common  # noqa: E402
 MACHINE = re.compile(r"(?<![\w.-])/(work|root|home|Users|tmp)/")
 SLASHES = ":/" + "/"  # written apart, so that this file passes its own check
 ADDRESS = re.compile(rf"\b(?:https?|ftp|file){SLASHES}[^\s)>\"'|,]*")
-ALLOWED = re.compile(rf"https{SLASHES}doi\.org/.|https?{SLASHES}json-schema\.org/")
+ALLOWED = re.compile(rf"https{SLASHES}doi\.org/.|https?{SLASHES}json-schema\.org/|http{SLASHES}www\.w3\.org/2000/svg")
 
 
 def check(root):

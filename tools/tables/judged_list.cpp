@@ -14,6 +14,7 @@ const char* word(Judged j) {
   switch (j) {
     case Judged::yes: return "no";
     case Judged::excluded: return "yes";
+    case Judged::refused: return "refused";
     case Judged::not_asked: return "not asked";
   }
   return "";
@@ -29,15 +30,23 @@ std::string quoted(const std::string& text) {
 }  // namespace
 
 double JudgedCount::excluded_share() const {
-  const int all = judged + excluded;
+  const int all = judged + excluded + refused;
   return all == 0 ? 0 : static_cast<double>(excluded) / all;
 }
 
-JudgedCount count_judged(const Section& s, const std::string& prefix) {
+double JudgedCount::left_out_share() const {
+  const int all = judged + excluded + refused;
+  return all == 0 ? 0 : static_cast<double>(excluded + refused) / all;
+}
+
+JudgedCount count_judged(const Section& s, const std::function<bool(const std::string&)>& wanted) {
   JudgedCount n;
   for (const auto& r : s.judged) {
-    if (!r.group.starts_with(prefix)) continue;
-    ++(r.state == Judged::yes ? n.judged : r.state == Judged::excluded ? n.excluded : n.not_asked);
+    if (!wanted(r.group)) continue;
+    ++(r.state == Judged::yes        ? n.judged
+       : r.state == Judged::excluded ? n.excluded
+       : r.state == Judged::refused  ? n.refused
+                                     : n.not_asked);
   }
   return n;
 }

@@ -1,5 +1,6 @@
 // Which rows judge the engine: the list that is frozen in tests/reference/judged_rows.csv.
 #pragma once
+#include <functional>
 #include <string>
 #include <vector>
 
@@ -9,7 +10,8 @@ struct Section;
 
 enum class Judged {
   yes,
-  excluded,   // could judge, but does not: counts among the excluded
+  excluded,   // answered at least in part, but set aside
+  refused,    // the engine gives no answer
   not_asked,  // no measurement of what is asked
 };
 
@@ -21,13 +23,14 @@ struct JudgedRow {
 };
 
 struct JudgedCount {
-  int judged = 0, excluded = 0, not_asked = 0;
+  int judged = 0, excluded = 0, refused = 0, not_asked = 0;
   /// Of those that could judge.
   [[nodiscard]] double excluded_share() const;
+  [[nodiscard]] double left_out_share() const;
 };
 
-/// Rows of the section whose group starts with `prefix`.
-JudgedCount count_judged(const Section& s, const std::string& prefix);
+/// Rows of the section in the groups wanted.
+JudgedCount count_judged(const Section& s, const std::function<bool(const std::string&)>& wanted);
 
 /// CSV in order of section and key; equal keys are told apart by a number.
 std::string judged_csv(const std::vector<const Section*>& sections);

@@ -25,7 +25,6 @@ int main(int argc, char** argv) {
   check_engine->add_option("--json", files.json, "write the figures to this file");
   check_engine->add_option("--plot", files.plot, "write the reliability plot to this file, as SVG");
   check_engine->add_option("--rows", files.rows, "write the list of rows that judge to this file, as CSV");
-  check_engine->add_flag("--thorough", files.thorough, "hold each molecule of a mixture out alone too; takes minutes");
   check_engine->callback([&] { code = halostep::validate_command(dir, files); });
   std::string markdown;
   auto* parts = command("hammond", "take the selectivity of F, Cl, Br, I apart on hydrocarbons and polar substrates, from fitted.json");

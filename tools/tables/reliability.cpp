@@ -44,8 +44,9 @@ std::string band(std::size_t rows) {
 }
 
 std::string axes() {
-  std::string out = fmt::format("<rect x=\"{:.1f}\" y=\"{:.1f}\" width=\"{:.1f}\" height=\"{:.1f}\" fill=\"none\" stroke=\"#000\"/>\n",
-                                kLeft, kTop, kSide, kSide);
+  std::string out = fmt::format(
+      "<rect x=\"{:.1f}\" y=\"{:.1f}\" width=\"{:.1f}\" height=\"{:.1f}\" fill=\"none\" stroke=\"#000\"/>\n", kLeft,
+      kTop, kSide, kSide);
   for (int p = 0; p <= 100; p += 20) {
     out += line(x_of(p), y_of(0), x_of(p), y_of(0) + 6, "stroke=\"#000\"");
     out += line(x_of(0) - 6, y_of(p), x_of(0), y_of(p), "stroke=\"#000\"");
@@ -59,8 +60,9 @@ std::string axes() {
 }
 
 std::string mark(double x, double y, const Style& s) {
-  return fmt::format("<path transform=\"translate({:.1f} {:.1f})\" d=\"{}\" fill=\"#fff\" stroke=\"#000\" stroke-width=\"1.4\"/>\n",
-                     x, y, s.mark);
+  return fmt::format(
+      "<path transform=\"translate({:.1f} {:.1f})\" d=\"{}\" fill=\"#fff\" stroke=\"#000\" stroke-width=\"1.4\"/>\n", x,
+      y, s.mark);
 }
 
 std::string stroke(const Style& s) {
@@ -88,8 +90,10 @@ std::string legend(const std::vector<ReliabilityCurve>& curves) {
   }
   out += line(kLegendLeft, y, kLegendLeft + 50, y, "stroke=\"#777\" stroke-width=\"1\"");
   out += text(kLegendLeft + 62, y + 5, "start", "exact");
-  out += fmt::format("<rect x=\"{:.1f}\" y=\"{:.1f}\" width=\"50\" height=\"16\" fill=\"#e4e4e4\"/>\n", kLegendLeft, y + kLegendStep - 8);
-  out += text(kLegendLeft + 62, y + kLegendStep + 5, "start", fmt::format("chance, {} values, 19 of 20", curves.front().rows));
+  out += fmt::format("<rect x=\"{:.1f}\" y=\"{:.1f}\" width=\"50\" height=\"16\" fill=\"#e4e4e4\"/>\n", kLegendLeft,
+                     y + kLegendStep - 8);
+  out += text(kLegendLeft + 62, y + kLegendStep + 5, "start",
+              fmt::format("chance, {} values, 19 of 20", curves.front().rows));
   return out;
 }
 
@@ -98,7 +102,8 @@ std::string legend(const std::vector<ReliabilityCurve>& curves) {
 ReliabilityCurve reliability(std::string name, const std::vector<double>& z) {
   ReliabilityCurve c{std::move(name), z.size(), {}};
   for (std::size_t i = 0; i < kNominal.size(); ++i) {
-    const auto inside = std::count_if(z.begin(), z.end(), [&](double v) { return 100 * std::erf(std::abs(v) / std::sqrt(2.0)) <= kNominal[i]; });
+    const auto inside = std::count_if(
+        z.begin(), z.end(), [&](double v) { return 100 * std::erf(std::abs(v) / std::sqrt(2.0)) <= kNominal[i]; });
     if (!z.empty()) c.observed[i] = 100 * static_cast<double>(inside) / static_cast<double>(z.size());
   }
   return c;
@@ -108,7 +113,8 @@ std::string reliability_svg(const std::vector<ReliabilityCurve>& curves) {
   std::string out = fmt::format(
       "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 {0:.0f} {1:.0f}\" width=\"{0:.0f}\" height=\"{1:.0f}\" "
       "font-family=\"sans-serif\" font-size=\"15\">\n<title>Coverage of the intervals on molecules held out</title>\n"
-      "<rect width=\"100%\" height=\"100%\" fill=\"#fff\"/>\n", kWidth, kHeight);
+      "<rect width=\"100%\" height=\"100%\" fill=\"#fff\"/>\n",
+      kWidth, kHeight);
   out += text(kLeft, 34, "start", "Coverage of the intervals on molecules held out", " font-size=\"17\"");
   if (curves.empty() || curves.front().rows == 0) return out + "</svg>\n";
   out += band(curves.front().rows) + axes();

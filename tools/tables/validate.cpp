@@ -3,6 +3,7 @@
 #include <fmt/format.h>
 
 #include <fstream>
+#include <functional>
 #include <nlohmann/json.hpp>
 
 #include "tables/fit.hpp"
@@ -34,7 +35,8 @@ Validation sections() {
                 "Every measured mixture of two or more sites whose molecule is held out; what a row leaves unnamed is one more part, \"other\". "
                 "Br2 at a conversion of 0.5 with one per substrate; neat arenes with toluene 8 M as the medium, which complexes "
                 "chlorine as they do. Complexing solvents: the molarity left out of the solvent's fit, the substrate in (it is the only one). "
-                "Compositions that were not measured are listed below with the reason.", 3, {}, {}};
+                "Classes that say so: the molecule alone held out of every file, its kin in. Compositions that were not measured are "
+                "listed below with the reason.", 3, {}, {}};
   v.ratios = {"ratios", "Relative rates per H", "log10 ratio", "per H primary : secondary : tertiary 1:3.8:5 (Cl), 1:82:1600 (Br), 1:1.2:1.4 (F)",
               "Every measured ratio per H whose molecule is held out, in gas or an inert liquid; bromine at a conversion of 0.5. Sites that "
               "are their own reference, Hammett constants, scales not measured on the molecule and limits are not counted. The class \"order\": "
@@ -120,30 +122,42 @@ std::vector<ReliabilityCurve> curves_of(const Validation& v) {
           reliability("log k, Cl + C-H at 298 K", z(v.rates, "Cl + all")), reliability("shares of mixtures", v.share_z)};
 }
 
+std::function<bool(const std::string&)> starts(const char* with) {
+  return [with](const std::string& g) { return g.starts_with(with); };
+}
+
 nlohmann::json judged_json(const Validation& v) {
   const struct {
     const char* name;
     const Section& section;
-    const char* prefix;
-  } groups[] = {{"D of X-H", v.bonds, ""}, {"D(R-X)", v.halides, ""}, {"rates, Cl", v.rates, "Cl"}, {"rates, Br", v.rates, "Br"},
-                {"rates, F", v.rates, "F"}, {"activation energies of R + HX", v.reverse, ""}, {"relative rates", v.ratios, ""},
-                {"mixtures", v.mixtures, ""}, {"solvents", v.media, ""}};
+    std::function<bool(const std::string&)> wanted;
+  } groups[] = {{"D(C-H)", v.bonds, [](const std::string& g) { return g.find("-H") == std::string::npos; }},
+                {"D of O-H, N-H, S-H, Si-H", v.bonds, starts("O-H")},
+                {"D(R-X)", v.halides, starts("")},
+                {"rates, Cl", v.rates, starts("Cl")},
+                {"rates, Br", v.rates, starts("Br")},
+                {"rates, F", v.rates, starts("F")},
+                {"activation energies of R + HX", v.reverse, starts("")},
+                {"relative rates", v.ratios, starts("")},
+                {"mixtures", v.mixtures, starts("")},
+                {"solvents", v.media, starts("")}};
   auto out = nlohmann::json::array();
   for (const auto& g : groups) {
-    const auto n = count_judged(g.section, g.prefix);
-    out.push_back({{"group", g.name}, {"judged", n.judged}, {"excluded", n.excluded}, {"excluded_share", n.excluded_share()}, {"not_asked", n.not_asked}});
+    const auto n = count_judged(g.section, g.wanted);
+    out.push_back({{"group", g.name}, {"judged", n.judged}, {"excluded", n.excluded}, {"refused", n.refused}, {"excluded_share", n.excluded_share()}, {"left_out_share", n.left_out_share()}, {"not_asked", n.not_asked}});
   }
   return out;
 }
 
 std::string judged_markdown(const nlohmann::json& judged) {
   std::string out =
-      "## Rows that judge\n\nEvery row and the reason of each that is left out: tests/reference/judged_rows.csv. Excluded: could judge, but the "
-      "engine refuses, answers in part, or the row itself is doubtful; where the engine does answer, the classes that end in \"too\" have them in. "
-      "Not asked: no measurement of what is judged.\n\n| rows | judged | excluded | share | not asked |\n|---|---|---|---|---|\n";
+      "## Rows that judge\n\nEvery row and the reason of each that is left out: tests/reference/judged_rows.csv. Excluded: answered at least in "
+      "part, but the row itself is doubtful or speaks of sites that are refused; the classes that end in \"too\" have them in. Refused: outside the "
+      "domain, no answer to judge. Not asked: no measurement of what is judged.\n\n"
+      "| rows | judged | excluded | excluded, share | refused | excluded or refused, share | not asked |\n|---|---|---|---|---|---|---|\n";
   for (const auto& g : judged)
-    out += fmt::format("| {} | {} | {} | {:.1f} % | {} |\n", g["group"].get<std::string>(), g["judged"].get<int>(), g["excluded"].get<int>(),
-                       100 * g["excluded_share"].get<double>(), g["not_asked"].get<int>());
+    out += fmt::format("| {} | {} | {} | {:.1f} % | {} | {:.1f} % | {} |\n", g["group"].get<std::string>(), g["judged"].get<int>(), g["excluded"].get<int>(),
+                       100 * g["excluded_share"].get<double>(), g["refused"].get<int>(), 100 * g["left_out_share"].get<double>(), g["not_asked"].get<int>());
   return out + "\n";
 }
 
@@ -197,7 +211,7 @@ int validate(const Table& table, const ValidateFiles& files) {
     return 1;
   }
   judge_sources(table, v.sources);
-  if (files.thorough && !judge_alone_mixtures(table, v)) return 1;
+  if (!judge_alone_mixtures(table, v)) return 1;
   const auto curves = curves_of(v);
   const auto doc = document(v, curves);
   auto text = head(content_hash(table).substr(0, 16)) + summary_markdown(doc["summary"]) + judged_markdown(doc["judged"]) + reliability_markdown(curves);

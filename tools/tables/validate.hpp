@@ -52,6 +52,8 @@ std::optional<Error> judge_media(const Table& table, Validation& out);
 /// The carrier atom of a reagent, and the medium in which a row is judged.
 std::optional<Halogen> carrier_of(const std::string& reagent);
 OutcomeOptions judged_conditions(const Engine& engine, const Molecule& m, const std::string& medium, const std::string& reagent);
+/// Why a composition does not judge, or nullptr.
+const char* not_measured(const MixtureRow& r);
 /// Carbons and hydrogens only.
 bool is_hydrocarbon(const Molecule& m);
 /// Naive rate per H, relative: one factor per carbon class.
@@ -63,7 +65,6 @@ bool judge_alone_mixtures(const Table& table, Validation& out);
 /// Files to write; empty: not.
 struct ValidateFiles {
   std::string markdown, json, plot, rows;
-  bool thorough = false;  // what takes minutes too
 };
 
 /// Prints the report and writes the files. Exit code of the command.

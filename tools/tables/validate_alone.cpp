@@ -11,7 +11,9 @@ namespace halostep {
 bool judge_alone_mixtures(const Table& table, Validation& out) {
   std::set<std::string> molecules;
   for (const auto& r : table.mixtures) {
-    if (!r.superseded && carrier_of(r.reagent)) molecules.insert(r.molecule);
+    if (!r.superseded && carrier_of(r.reagent) && not_measured(r) == nullptr &&
+        r.medium.find(" M") == std::string::npos)
+      molecules.insert(r.molecule);
   }
   Folds folds(std::vector<std::string>(molecules.begin(), molecules.end()));
   Validation alone;
@@ -26,7 +28,8 @@ bool judge_alone_mixtures(const Table& table, Validation& out) {
     const auto engine = Engine::from_table(std::move(t));
     judge_mixtures({table, engine.value(), folds, f}, alone);
   }
-  for (auto& [name, score] : alone.mixtures.classes) out.mixtures.classes[name + "; the molecule alone held out"] = std::move(score);
+  for (auto& [name, score] : alone.mixtures.classes)
+    out.mixtures.classes[name + "; molecule alone out"] = std::move(score);
   return true;
 }
 

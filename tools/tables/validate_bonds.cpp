@@ -15,6 +15,8 @@
 namespace halostep {
 namespace {
 
+constexpr const char* kHetero = "O-H, N-H, S-H, Si-H";
+
 // Families of C-H bonds, from the engine's name of the type.
 std::string family_of(const std::string& type) {
   const auto has = [&](const char* word) { return type.find(word) != std::string::npos; };
@@ -26,7 +28,7 @@ std::string family_of(const std::string& type) {
   if (has("vinyl") || has("aryl") || has("alkynyl")) return "vinyl, aryl, alkynyl";
   if (has("bridgehead") || has("cyclo")) return "cycloalkyl";
   if (has("C-H")) return "alkyl";
-  return "O-H, N-H, S-H, Si-H";
+  return kHetero;
 }
 
 double median(std::vector<double> v) {
@@ -38,7 +40,12 @@ double median(std::vector<double> v) {
 
 bool halide_of_carbon(const BondEntry& b) {
   const bool halogen = b.leaving == "[F]" || b.leaving == "[Cl]" || b.leaving == "[Br]" || b.leaving == "[I]";
-  return halogen && b.radical != b.leaving && b.radical.find_first_of("Cc") != std::string::npos;
+  const auto r = parse_smiles(b.radical, ParseMode::species);
+  if (!halogen || !r.ok()) return false;
+  for (int i = 0; i < r.value().atom_count(); ++i) {
+    if (r.value().atom(i).unpaired > 0) return r.value().atom(i).element == element::C;
+  }
+  return false;
 }
 
 // The class a bond is judged in; empty when it is of the other kind.
@@ -47,7 +54,10 @@ std::string class_of(const BondEntry& b, bool hydrogen) {
   if (b.leaving != "[H]") return {};
   const auto m = parse_smiles(b.molecule, ParseMode::species), r = parse_smiles(b.radical, ParseMode::species);
   const int atom = m.ok() && r.ok() ? find_site(m.value(), symmetry_classes(m.value()), r.value()) : -1;
-  return atom < 0 ? std::string() : family_of(std::string(site_type(m.value(), environment(m.value()), atom)));
+  if (atom < 0) return {};
+  const auto family = family_of(std::string(site_type(m.value(), environment(m.value()), atom)));
+  const bool carbon = m.value().atom(atom).element == element::C;
+  return carbon && family == kHetero ? "vinyl, aryl, alkynyl" : family;  // H-CN has no type of its own
 }
 
 // The engine's answer about one bond of the table; nothing when it does not find the bond.
@@ -88,13 +98,15 @@ void judge(const FoldView& v, Section& s, const Question& q) {
       if (q.detailed) s.list(name, b.molecule + " > " + b.radical, state, why);
     };
     if (!answer) {
-      list(Judged::excluded, "the engine finds no such bond in the molecule");
+      list(Judged::refused, "outside the domain: the engine names no such bond, or has nothing on the molecule");
+      if (q.detailed) ++s.classes[name].refused;
+      s.classes[q.whole].refused += !q.hydrogen || name != kHetero;
       continue;
     }
     const bool carbon = !q.hydrogen || answer->bond == "C-H", judges = b.d298.u <= kJudgeLimit;
     const std::string whole = q.whole;
     if (!answer->d298) {
-      list(Judged::excluded, "refused: outside the domain of the typed model");
+      list(Judged::refused, "outside the domain of the typed model");
       if (q.detailed) ++s.classes[name].refused;
       s.classes[whole].refused += carbon;
       continue;

@@ -26,13 +26,6 @@ constexpr Reason kNotMeasured[] = {
     {"ionic", "an ionic reaction"},
     {"one allyl radical", "two ends of one radical"}};
 
-const char* left_out(const MixtureRow& r) {
-  for (const auto& [word, why] : kNotMeasured) {
-    if (r.note.find(word) != std::string::npos) return why;
-  }
-  return nullptr;
-}
-
 struct Shares {
   std::vector<std::string> name;
   std::vector<double> seen, engine, naive, low, high, z;  // z: error in deviations of the share
@@ -129,6 +122,13 @@ std::optional<Halogen> carrier_of(const std::string& reagent) {
   return std::nullopt;
 }
 
+const char* not_measured(const MixtureRow& r) {
+  for (const auto& [word, why] : kNotMeasured) {
+    if (r.note.find(word) != std::string::npos) return why;
+  }
+  return nullptr;
+}
+
 bool is_hydrocarbon(const Molecule& m) { return formula(m).find_first_not_of("CH0123456789") == std::string::npos; }
 
 double naive_per_h(Halogen x, const Molecule& m, int atom) {
@@ -163,7 +163,7 @@ void judge_mixtures(const FoldView& v, Validation& out) {
       out.mixtures.list(r.reagent, fmt::format("{} + {} at {:.0f} K, {}, {}", r.reagent, r.molecule, r.t, r.medium,
                                                v.full.sources[static_cast<std::size_t>(r.source)].id), state, why);
     };
-    if (const char* why = left_out(r)) {
+    if (const char* why = not_measured(r)) {
       list(Judged::not_asked, why);
       out.mixtures.tail += fmt::format("- not judged: {} + {} at {:.0f} K, {} ({}): {}\n", r.reagent, r.molecule, r.t,
                                        r.medium, v.full.sources[static_cast<std::size_t>(r.source)].id, why);
@@ -175,7 +175,7 @@ void judge_mixtures(const FoldView& v, Validation& out) {
     // Without the solvents' substrate in the fold there is no solvent to stand for a neat arene.
     const bool self_complexing = needs_complexing(m.value(), r.medium, r.reagent), complexing = conditions.medium.find(" M") != std::string::npos;
     if (self_complexing && !complexing) {
-      list(Judged::excluded, "an arene that complexes chlorine; the solvents' substrate is held out with it");
+      list(Judged::refused, "an arene that complexes chlorine; the solvents' substrate is held out with it");
       ++out.mixtures.classes[fmt::format("{}, complexing medium", r.reagent)].refused;
       continue;
     }
@@ -184,7 +184,7 @@ void judge_mixtures(const FoldView& v, Validation& out) {
     const auto o = v.engine.outcome(m.value(), one, r.t, conditions);
     Shares s;
     if (!o.ok() || !collect(rows, m.value(), *x, o.value()[0], s)) {
-      list(Judged::excluded, o.ok() ? "a product at a site outside the domain" : "refused: outside the domain");
+      list(Judged::refused, o.ok() ? "a product at a site outside the domain" : "outside the domain");
       ++c.refused;
       continue;
     }

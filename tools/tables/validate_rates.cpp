@@ -65,6 +65,19 @@ const char* set_aside(const RateRow& r) {
   return r.u_log10 >= kOrderOfMagnitude ? "order of magnitude only" : nullptr;
 }
 
+// The table's words for what tells nothing of a C-H bond, or was not measured.
+bool no_measurement(const RateRow& r) {
+  constexpr const char* kWords[] = {"not measured", "recalled", "S-H", "O-H"};
+  return !r.fitted && std::any_of(std::begin(kWords), std::end(kWords), [&](const char* w) { return r.note.find(w) != std::string::npos; });
+}
+
+bool has_carbon(const Molecule& m) {
+  for (int i = 0; i < m.atom_count(); ++i) {
+    if (m.atom(i).element == element::C) return true;
+  }
+  return false;
+}
+
 // As the table says it, or in our own words.
 std::string why_aside(const RateRow& r, const char* aside) { return r.note.empty() ? aside : fmt::format("{}: {}", aside, r.note); }
 
@@ -142,7 +155,7 @@ std::map<std::string, std::vector<double>> seen_by_class(const FoldView& v) {
   for (const auto& r : v.full.rates) {
     if (r.superseded || r.carrier.empty() || v.folds.of(r.molecule) == v.fold || temperature_of(r) == 0) continue;
     if (const auto m = parse_smiles(r.molecule); m.ok())
-      seen[name_of(r, m.value())].push_back(std::log10(rate_of(r, temperature_of(r))));
+      for (const auto& name : {name_of(r, m.value()), r.carrier}) seen[name].push_back(std::log10(rate_of(r, temperature_of(r))));
   }
   return seen;
 }
@@ -178,7 +191,11 @@ void judge_rates(const FoldView& v, Validation& out) {
     if (aside == nullptr) judge_range(v.engine, r, m.value(), out);
     judge_iodine(v.engine, r, m.value(), out);
     const auto name = name_of(r, m.value());
-    const auto list = [&](Judged state, const std::string& why) { out.rates.list(name, key_of(v, r), state, why); };
+    const bool asked_of = !no_measurement(r) && has_carbon(m.value());
+    const auto list = [&](Judged state, const std::string& why) {
+      const auto reason = asked_of || !why.empty() ? why : std::string("no C-H");
+      out.rates.list(name, key_of(v, r), asked_of ? state : Judged::not_asked, reason);
+    };
     if (t == 0) {
       list(Judged::not_asked, "no value at the temperature that is judged");
       continue;
@@ -186,12 +203,13 @@ void judge_rates(const FoldView& v, Validation& out) {
     auto& c = out.rates.classes[name];
     const auto a = asked(v.engine, r, m.value(), t);
     if (!a) {
-      list(Judged::excluded, "refused: outside the domain");
+      list(Judged::refused, has_carbon(m.value()) ? aside == nullptr ? "outside the domain" : why_aside(r, aside) : "no C-H");
       ++c.refused;
       continue;
     }
     const double seen = std::log10(rate_of(r, t)), e = a->log_k - seen, u = std::hypot(a->u, r.u_log10);
-    const auto same = others.find(name);
+    auto same = others.find(name);
+    if (same == others.end() || same->second.size() < 2) same = others.find(r.carrier);  // a class of its own: all of the carrier
     auto mean = mean_and_deviation(same == others.end() ? std::vector<double>{} : same->second);
     mean = {mean.first - seen, std::hypot(mean.second, r.u_log10)};
     const double naive = r.carrier == "Cl" ? naive_log_k(a->sites, m.value()) - seen : std::nan("");
@@ -237,40 +255,6 @@ bool judge_alone(const Table& table, Validation& out) {
     }
   }
   return true;
-}
-
-void finish_rates(const Table& table, Validation& out) {
-  for (const char* carrier : {"Cl", "F", "Br"}) {
-    std::vector<double> e, u;
-    int far = 0, far_marked = 0;
-    for (const auto& r : out.rows) {
-      if (r.carrier != carrier) continue;
-      e.push_back(r.error);
-      u.push_back(r.u);
-      if (std::abs(r.error) > 2) ++(r.marked ? far_marked : far);
-    }
-    out.rates.remarks.push_back(
-        fmt::format("{} + all, {} rows: 95 % within {:.2f}, median u(log10 k) {:.2f}; off by more than two decades: {} "
-                    "without a mark, {} marked extrapolated",
-                    carrier, e.size(), quantile_of(e, 0.95), quantile_of(u, 0.5), far, far_marked));
-  }
-  for (const auto& [reagent, right] : out.ranges) {
-    double sum = 0;
-    for (const double r : right) sum += r;
-    out.ratios.remarks.push_back(
-        fmt::format("{}: of {} pairs measured to differ by more than 1.5, {:.0f} % are ordered right", reagent,
-                    right.size(), 100 * sum / static_cast<double>(right.size())));
-  }
-  for (const char* x : {"F", "Cl", "Br", "I"}) {
-    for (const auto& m : table.models) {
-      if (m.name != std::string("line.") + x || m.values.size() != 2) continue;
-      double rows = 0;
-      for (const auto& [key, value] : m.settings) rows = key == "rows" ? value : rows;
-      out.forms.remarks.push_back(
-          fmt::format("straight line through the measured activation energies, {}: alpha {:.2f}, u {:.2f}, {:.0f} rows",
-                      x, m.values[1], std::sqrt(m.covariance[3]), rows));
-    }
-  }
 }
 
 }  // namespace halostep

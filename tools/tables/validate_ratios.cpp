@@ -56,7 +56,7 @@ void judge_ratios(const FoldView& v, Validation& out) {
     const auto key = fmt::format("{} at {:.0f} K, {}: {} of {} against {} of {}, {}", r.reagent, r.t, r.medium, r.radical, r.molecule,
                                  r.reference_radical, r.reference_molecule, v.full.sources[static_cast<std::size_t>(r.source)].id);
     if (!a || !b) {
-      out.ratios.list(r.reagent, key, Judged::excluded, "refused: outside the domain");
+      out.ratios.list(r.reagent, key, Judged::refused, "outside the domain");
       ++c.refused;
       continue;
     }

@@ -85,7 +85,7 @@ void judge_reverse(const FoldView& v, const Engine& whole, Validation& out) {
           out.reverse.classes[fmt::format("R + H{}{}", halogen_name(f->x), held ? "" : ", molecule not held out")];
       const auto s = site_of(held ? v.engine : whole, f->parent, f->radical, f->x, t);
       const auto key = fmt::format("{} at {:.0f} K, {}", r.reaction, t, v.full.sources[static_cast<std::size_t>(r.source)].id);
-      if (held) out.reverse.list(fmt::format("R + H{}", halogen_name(f->x)), key, s ? Judged::yes : Judged::excluded, s ? "" : "refused: outside the domain");
+      if (held) out.reverse.list(fmt::format("R + H{}", halogen_name(f->x)), key, s ? Judged::yes : Judged::refused, s ? "" : "outside the domain");
       if (!s) {
         ++c.refused;
         continue;
