@@ -75,7 +75,11 @@ void add_common(std::span<const double> p, const PolarParts& parts, const Slopes
   const double q = parts.sum / p[kp::saturation];
   if (q != 0) out.push_back({kp::saturation, d.polar * (1 - parts.left * (1 + q))});
   if (parts.bare != 0) out.push_back({kp::bare, d.polar * parts.bare});
-  if (parts.d_carbons != 0) out.push_back({kp::alkyl_repeat, d.polar * p[kp::alkyl] * parts.d_carbons});
+  if (parts.d_carbons != 0) {
+    out.push_back({parts.plain ? kp::plain_repeat : kp::alkyl_repeat, d.polar * p[kp::alkyl] * parts.d_carbons});
+  }
+  if (parts.branches != 0) out.push_back({kp::a_branch, parts.branches});
+  if (parts.d_branches != 0) out.push_back({kp::a_branch_repeat, p[kp::a_branch] * parts.d_branches});
   if (parts.alkyls == 0) return;
   const double per_alpha = parts.alkyls * parts.screen / p[kp::screen];
   const double per_beyond = (parts.alkyls - 1) * parts.screen_beyond / p[kp::screen];
@@ -95,7 +99,7 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
   RateGradient g;
   g.dh = slope;
   auto& out = g.parameters;
-  out.reserve(28);
+  out.reserve(32);
   out = {{kp::ln_a, 1.0},
          {kp::tightness, -at.position},
          {kp::exponent, std::log(temperature / 298.0)},
@@ -103,6 +107,7 @@ RateGradient rate_gradient(std::span<const double> p, const KineticForm& form, c
          {kp::width, par(kp::tightness) * 2 * x * w / root3 - 2 * w / (root * rt)},
          {kp::alkyl, polar * at.parts.carbons},
          {kp::a_alkyl, static_cast<double>(s.carbons)}};
+  if (s.quaternary > 0) out.push_back({kp::a_quaternary, static_cast<double>(s.quaternary)});
   const auto& parts = at.parts;
   const Slopes d{slope, polar};
   if (const int c = static_cast<int>(s.a_class); c > 0) {

@@ -48,6 +48,10 @@ std::vector<std::string> kinetic_parameter_names() {
   set(kp::fluoro_ether, "shift, F beside O on the centre");
   set(kp::acyl_halide, "shift, halogen on acyl");
   set(kp::alkyl_repeat, "polar, factor per further carbon on the centre");
+  set(kp::plain_repeat, "polar, factor per further carbon, plain alkane");
+  set(kp::a_branch, "ln A, second carbon on the centre");
+  set(kp::a_branch_repeat, "ln A, factor of the third carbon on the centre");
+  set(kp::a_quaternary, "ln A per quaternary carbon beside the centre");
   return n;
 }
 
@@ -103,7 +107,9 @@ PolarParts polar_parts(std::span<const double> p, const RateSite& s) {
   parts.alkyls = std::max(0, s.carbons - drawing_carbons - on_centre(PolarGroup::aryl) - on_centre(PolarGroup::unsaturated));
   for (int k = 0; k < parts.alkyls; ++k) parts.screen *= at(kp::screen);
   parts.screen_beyond = parts.alkyls > 0 ? parts.screen / at(kp::screen) : 1.0;
-  std::tie(parts.carbons, parts.d_carbons) = repeated(s.carbons, at(kp::alkyl_repeat));
+  parts.plain = !acted_on(s);
+  std::tie(parts.carbons, parts.d_carbons) = repeated(s.carbons, at(parts.plain ? kp::plain_repeat : kp::alkyl_repeat));
+  std::tie(parts.branches, parts.d_branches) = repeated(s.carbons - 1, at(kp::a_branch_repeat));
   for (std::size_t kind = 0; kind < 2; ++kind) {
     const int n = parts.halogen_count[kind];
     if (n == 0) continue;
@@ -163,7 +169,7 @@ SiteRate site_rate(std::span<const double> p, const KineticForm& form, const Rat
   r.barrier = 0.5 * (x + root) + (form.polar_outside ? r.polar : 0.0);
   r.position = 0.5 * (1 + x / root);
   r.ln_a = at(kp::ln_a) + (c > 0 ? r.parts.free * at(kp::a_class + c - 1) : 0.0) - at(kp::tightness) * r.position +
-           at(kp::a_alkyl) * s.carbons +
+           at(kp::a_alkyl) * s.carbons + at(kp::a_branch) * r.parts.branches + at(kp::a_quaternary) * s.quaternary +
            at(kp::exponent) * std::log(temperature / 298.0);
   r.ln_k = r.ln_a - r.barrier / (kGasConstant * temperature);
   return r;

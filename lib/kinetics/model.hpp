@@ -43,7 +43,11 @@ inline constexpr int acyl_field = oxygen_field + 1;       // the same, acyl and 
 inline constexpr int fluoro_ether = acyl_field + 1;       // kJ/mol shift per F beside an oxygen on the centre
 inline constexpr int acyl_halide = fluoro_ether + 1;      // kJ/mol shift per halogen on an acyl centre
 inline constexpr int alkyl_repeat = acyl_halide + 1;      // factor per further carbon on the centre
-inline constexpr int total = alkyl_repeat + 1;
+inline constexpr int plain_repeat = alkyl_repeat + 1;     // the same for plain alkane sites
+inline constexpr int a_branch = plain_repeat + 1;         // ln A, second carbon on the centre
+inline constexpr int a_branch_repeat = a_branch + 1;      // factor of the third
+inline constexpr int a_quaternary = a_branch_repeat + 1;   // ln A per quaternary carbon beside the centre
+inline constexpr int total = a_quaternary + 1;
 }  // namespace kp
 
 /// Names of the parameters, in order.
@@ -59,6 +63,8 @@ struct PolarParts {
   double field = 1;                      // factor on groups further away
   double bare = 0;                       // 1 where nothing on the centre gives electrons
   double carbons = 0, d_carbons = 0;     // carbons on the centre, repeated ones less; its derivative
+  double branches = 0, d_branches = 0;   // the same from the second carbon on, for ln A
+  bool plain = false;                    // alkane site that no group acts on
   double sum = 0;                        // screened alpha and beyond
   double left = 1;                       // exp(-sum/S): what a further group still counts
   int alkyls = 0;                        // carbons on the centre that do not conjugate

@@ -78,6 +78,13 @@ AClass class_of(const Molecule& m, const std::vector<AtomInfo>& info, int i) {
   return a.ring == 3 ? AClass::cyclopropyl : AClass::alkyl;
 }
 
+// Four carbons on a carbon.
+bool is_quaternary(const Molecule& m, int i) {
+  if (m.atom(i).element != element::C || m.degree(i) != 4) return false;
+  const auto near = m.neighbours(i);
+  return std::all_of(near.begin(), near.end(), [&](const auto& n) { return m.atom(n.atom).element == element::C; });
+}
+
 int halogens_on(const Molecule& m, int carbon) {
   int n = 0;
   for (const auto& b : m.neighbours(carbon)) n += is_halogen(m.atom(b.atom).element);
@@ -101,6 +108,15 @@ void see_behind_oxygens(const Molecule& m, const std::vector<AtomInfo>& info, in
 
 const char* a_class_name(AClass c) noexcept { return kClassNames[static_cast<std::size_t>(c)]; }
 const char* polar_group_name(PolarGroup g) noexcept { return kGroupNames[static_cast<std::size_t>(g)]; }
+
+bool acted_on(const RateSite& s) noexcept {
+  if (s.a_class != AClass::alkyl && s.a_class != AClass::cyclopropyl) return true;
+  for (auto left = s.present; left != 0; left &= left - 1) {
+    const auto& n = s.count[static_cast<std::size_t>(std::countr_zero(left))];
+    if (n[0] + n[1] > 0) return true;
+  }
+  return false;
+}
 
 double scatter_share(const RateSite& s) noexcept {
   int groups = 0;
@@ -137,6 +153,7 @@ RateSite rate_site(const Molecule& m, const std::vector<AtomInfo>& info, int ato
       if (d == 0) {
         s.carbons += m.atom(n.atom).element == element::C;
         s.covered = s.covered && info[v].kind != Substituent::unknown;
+        s.quaternary = static_cast<std::uint8_t>(s.quaternary + is_quaternary(m, n.atom));
       }
       queue[tail] = n.atom;
       depth[tail++] = static_cast<std::int8_t>(d + 1);

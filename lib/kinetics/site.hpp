@@ -32,6 +32,7 @@ struct RateSite {
   std::uint32_t present = 0;  // bit g set where group g has a count
   std::uint8_t oxygens = 0;       // oxygens on the centre whose lone pair is free
   std::uint8_t far_halogens = 0;  // halogens on the carbons behind those oxygens
+  std::uint8_t quaternary = 0;    // carbons beside the centre that carry four carbons
   // count[group][distance-1]
   std::array<std::array<std::uint8_t, kPolarReach>, kPolarGroups> count{};
   bool operator==(const RateSite&) const = default;
@@ -39,6 +40,9 @@ struct RateSite {
 
 /// Acyl and formate C-H: the centre is a carbonyl carbon.
 inline bool is_acyl(AClass c) noexcept { return c == AClass::acyl || c == AClass::formate; }
+
+/// Groups within two bonds, or a class of its own: not a plain alkane site.
+bool acted_on(const RateSite& s) noexcept;
 
 /// Share of the rate model's scatter that a site sees: alkane sites scatter little, others the more the more groups
 /// act on them.

@@ -29,6 +29,8 @@ Parameters random_parameters(std::mt19937& random) {
   p[kp::repeat] = between(0.3, 1);
   p[kp::repeat + 1] = between(0.3, 1);
   p[kp::alkyl_repeat] = between(0.3, 1);
+  p[kp::plain_repeat] = between(0.1, 1);
+  p[kp::a_branch_repeat] = between(0.1, 1);
   p[kp::tie] = between(0.2, 2);
   p[kp::oxygen_field] = between(0.2, 1);
   p[kp::acyl_field] = between(0.2, 1);
@@ -44,6 +46,7 @@ RateSite random_site(std::mt19937& random) {
   RateSite s;
   s.a_class = static_cast<AClass>(random() % static_cast<unsigned>(kAClasses));
   s.carbons = static_cast<int>(random() % 4);
+  s.quaternary = static_cast<std::uint8_t>(random() % 3);
   for (std::size_t g = 0; g < s.count.size(); ++g) {
     for (std::size_t d = 0; d < s.count[g].size(); ++d) {
       if (random() % 4 == 0) put(s, g, d, static_cast<int>(1 + random() % 3));
@@ -53,6 +56,11 @@ RateSite random_site(std::mt19937& random) {
     s.count.fill({});
     s.present = 0;
     put(s, random() % 4, 0, static_cast<int>(1 + random() % 3));
+  }
+  if (random() % 5 == 0) {  // a plain alkane site
+    s.a_class = AClass::alkyl;
+    s.count.fill({});
+    s.present = 0;
   }
   if (s.a_class == AClass::alpha_oxygen) {
     s.oxygens = static_cast<std::uint8_t>(1 + random() % 2);

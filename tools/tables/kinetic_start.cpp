@@ -34,6 +34,10 @@ void chlorine(Priors& q) {
   q.set(kp::alkyl, -2.0, 3.0);
   q.set(kp::alkyl_repeat, 0.2, 0.05);
   q.set(kp::bare, 2.0, 3.0);
+  q.set(kp::plain_repeat, 0.2, 0.05);
+  q.set(kp::a_branch, 0.0, 0.5);
+  q.set(kp::a_branch_repeat, 0.2, 0.1);
+  q.set(kp::a_quaternary, 0.0, 0.2);
   q.set(kp::saturation, 40.0, 20.0);
   q.set(kp::screen, 0.6, 0.2);
   q.set(kp::repeat, 1.0, 0.3);
@@ -115,6 +119,8 @@ KineticStart kinetic_start(int carrier, const std::vector<double>* cl) {
   q.k.form.polar_outside = true;
   q.set(kp::decay, 0.45, 0.03);
   q.set(kp::ln_limit, std::log(2e-10), 0.5);
+  q.fix(kp::a_branch_repeat, 1.0);
+  q.fix(kp::plain_repeat, 1.0);
   q.set(kp::limit_power, 0.45, 0.15);
   for (int c = 1; c < kAClasses; ++c) {
     q.set(kp::a_class + c - 1, 0.0, 0.7);

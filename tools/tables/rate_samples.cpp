@@ -161,6 +161,43 @@ void add_mixtures(const Table& t, const Sampler& sampler, std::vector<RateSample
   }
 }
 
+// Site rates of one source share the error of its reference reaction: their ratio is known better than they are.
+constexpr double kBranching = 0.06;  // of ln of a ratio, assigned
+
+std::optional<RateSample> branching(const RateRow& r, const RateRow& q, const Sampler& sampler) {
+  const auto p = prepare(r.molecule);
+  if (!p) return std::nullopt;
+  RateSample s;
+  s.carrier = carrier_index(r.carrier);
+  s.relative = true;
+  s.molecule = p->text;
+  s.sites = sampler.sites(*p, r.radical, s.carrier);
+  s.reference = sampler.sites(*p, q.radical, s.carrier);
+  return s.sites.empty() || s.reference.empty() ? std::nullopt : std::optional(s);
+}
+
+void add_branching(const Table& t, const Sampler& sampler, std::vector<RateSample>& out) {
+  const auto speaks = [](const RateRow& r) {
+    return !r.superseded && r.fitted && carrier_index(r.carrier) >= 0 && r.radical != "total" && (r.a || r.k298);
+  };
+  for (auto r = t.rates.begin(); r != t.rates.end(); ++r) {
+    for (auto q = r + 1; q != t.rates.end(); ++q) {
+      if (r->source != q->source || r->molecule != q->molecule || r->carrier != q->carrier || r->radical == q->radical) continue;
+      if (!speaks(*r) || !speaks(*q)) continue;
+      auto s = branching(*r, *q, sampler);
+      if (!s) continue;
+      const auto temperatures = row_temperatures(*r);
+      s->u = kBranching * std::sqrt(static_cast<double>(temperatures.size()));
+      for (const double temperature : temperatures) {
+        s->temperature = temperature;
+        s->ln_value = row_ln_k(*r, temperature) - row_ln_k(*q, temperature) -
+                      std::log(static_cast<double>(s->sites[0].h_count) / s->reference[0].h_count);
+        out.push_back(*s);
+      }
+    }
+  }
+}
+
 }  // namespace
 
 std::vector<RateSample> rate_samples(const Table& t, const BondModel& bonds) {
@@ -197,6 +234,7 @@ std::vector<RateSample> rate_samples(const Table& t, const BondModel& bonds) {
       out.push_back(s);
     }
   }
+  add_branching(t, sampler, out);
   for (std::size_t i = 0; i < t.relative_rates.size(); ++i) {
     const auto& r = t.relative_rates[i];
     const int x = carrier_index(r.reagent);

@@ -82,6 +82,10 @@ KineticStart form_of(int level) {
     off(kp::alkyl, 1);
     off(kp::alkyl_repeat, 1, 1);
     off(kp::bare, 1);
+    off(kp::plain_repeat, 1, 1);
+    off(kp::a_branch, 1);
+    off(kp::a_branch_repeat, 1, 1);
+    off(kp::a_quaternary, 1);
   }
   if (level < 6) off(kp::unfelt, kWithdrawing);
   if (level < 7) {
@@ -121,7 +125,7 @@ void judge_forms(const FoldView& v, Validation& out) {
   const auto rows = of_carrier(samples, kCl);
   std::vector<const RateSample*> wanted;
   for (const auto& s : held) {
-    if (std::abs(s.temperature - kReferenceTemperature) < kNear && !s.ea_only) wanted.push_back(&s);
+    if (std::abs(s.temperature - kReferenceTemperature) < kNear && !s.ea_only && !s.relative) wanted.push_back(&s);
   }
   std::vector<double> limit = kinetic_start(kCl, nullptr).start;
   for (int level = 1; level < static_cast<int>(kForms.size()); ++level) {
