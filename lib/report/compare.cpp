@@ -61,6 +61,8 @@ std::string verdict_of(const CompareRow& row) {
   std::vector<std::string> parts{chain_text(row)};
   if (row.only_site) {
     parts.push_back("only C-H site");
+  } else if (row.only_rated) {
+    parts.push_back("only C-H site with a rate");
   } else if (row.share_low >= kSelectiveShare) {
     parts.push_back("selective");
   } else if (row.share < 0.5) {
@@ -78,6 +80,7 @@ CompareRow make_row(const HalogenOutcome& outcome, const SiteOutcome& site, std:
   row.share_low = site.share_low;
   row.share_high = site.share_high;
   row.only_site = outcome.sites.size() == 1 && outcome.refused.empty();
+  row.only_rated = outcome.sites.size() == 1 && !outcome.refused.empty();
   row.k_cm3_s = site.k_cm3_s;
   row.dh_abstraction = site.dh;
   row.extrapolated = site.extrapolated;
@@ -104,6 +107,7 @@ std::string name_of(const CompareRow& row) {
 
 std::string share_text(const CompareRow& row) {
   if (row.only_site) return "the wanted site is the only C-H site";
+  if (row.only_rated) return "the wanted site is the only C-H site with a rate (the others are outside the domain)";
   return fmt::format("{} % of the attack goes to the wanted site (95 % range {} to {} %)", percent(row.share),
                      percent(row.share_low), percent(row.share_high));
 }

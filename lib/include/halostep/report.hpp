@@ -43,6 +43,7 @@ struct CompareRow {
   double temperature = kReferenceTemperature;        // K
   double share = 0, share_low = 0, share_high = 0;   // of the wanted site, over C-H sites
   double k_cm3_s = 0;                                // of the wanted site, all its H
+  bool only_rated = false;  // the other C-H sites have no rate and are left out of the share
   bool only_site = false;                            // no other C-H site was rated: the share says nothing
   std::optional<Quantity> dh_abstraction;            // kJ/mol, 298.15 K
   std::optional<Quantity> dh_net;                    // kJ/mol, 298.15 K
