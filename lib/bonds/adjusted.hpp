@@ -35,6 +35,8 @@ class AdjustedBook {
 
   /// Index into Table::adjusted of a species_key(), or -1.
   [[nodiscard]] int find(std::string_view key) const;
+  /// The same of an atom, as "[H]" or "[Cl]".
+  [[nodiscard]] int atom(const char* smiles) const { return find(std::string("1 unpaired: ") + smiles); }
   /// False when no closed-shell species has this heavy_signature(): find() need not be asked, nor its text made.
   [[nodiscard]] bool possible(std::uint64_t signature) const { return signatures_.contains(signature); }
   /// Value with u from the covariance, kJ/mol; empty when the sum hangs on a molecule whose enthalpy is not known.

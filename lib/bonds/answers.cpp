@@ -13,8 +13,8 @@
 namespace halostep {
 namespace {
 
-// A shift of the joint adjustment smaller than this is not worth a line, kJ/mol.
-constexpr double kNoMove = 0.005;
+// Rounding of a bond that nothing else in the table is tied to, kJ/mol.
+constexpr double kNoMove = 1e-9;
 constexpr const char* kHalogenAtoms[] = {"[F]", "[Cl]", "[Br]", "[I]"};
 constexpr int kHalogenNumbers[] = {9, 17, 35, 53};
 
@@ -22,8 +22,6 @@ int halogen_index(int z) {
   const auto* p = std::find(std::begin(kHalogenNumbers), std::end(kHalogenNumbers), z);
   return p == std::end(kHalogenNumbers) ? -1 : static_cast<int>(p - std::begin(kHalogenNumbers));
 }
-
-std::string species_key_of_atom(int x) { return std::string("1 unpaired: ") + kHalogenAtoms[x]; }
 
 Error domain(std::string message) { return {ErrorClass::domain, std::move(message), {}}; }
 
@@ -56,6 +54,18 @@ EnthalpySum BondBook::entry_sum(int entry) const {
   return sum;
 }
 
+BondValue BondBook::entry_value(int entry) const {
+  BondValue v;
+  v.entry = entry;
+  v.route = Route::measured;
+  v.d = table_.bonds[static_cast<std::size_t>(entry)].d298;
+  v.sum = entry_sum(entry);
+  if (!v.sum.empty()) {
+    if (const auto q = adjusted_.value(v.sum); q && q->u > 0) v.d->u = q->u;
+  }
+  return v;
+}
+
 int BondBook::adjusted_index(const Analysis& a) const {
   return adjusted_.possible(a.signature()) ? adjusted_.find(a.key()) : -1;
 }
@@ -78,13 +88,7 @@ BondValue BondBook::known(const Analysis& a, int atom) const {
   const int molecule = adjusted_index(a);
   if (molecule < 0 && (!model_.possible(a.signature()) || !model_.known(a.key()))) return v;
   const auto radical = a.plain().without_hydrogen(atom);
-  v.entry = model_.measured(a.key(), canonical_smiles(radical, false), "[H]");
-  if (v.entry >= 0) {
-    v.route = Route::measured;
-    v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
-    v.sum = entry_sum(v.entry);
-    return v;
-  }
+  if (const int e = model_.measured(a.key(), canonical_smiles(radical, false), "[H]"); e >= 0) return entry_value(e);
   const int r = molecule < 0 ? -1 : adjusted_.find(species_key(radical));
   if (r < 0) return v;
   EnthalpySum sum{{r, 1}, {hydrogen_, 1}, {molecule, -1}};
@@ -139,14 +143,9 @@ BondValue BondBook::halide(const Analysis& a, const HydrogenSite& s, int x, cons
     const int atom = a.to_plain(s.atom);
     const auto key = canonical_smiles(a.plain().with_substituent(atom, kHalogenNumbers[x]), false);
     const auto radical = a.plain().without_hydrogen(atom);
-    if (model_.known(key)) v.entry = model_.measured(key, canonical_smiles(radical, false), kHalogenAtoms[x]);
-    if (v.entry >= 0) {
-      v.route = Route::measured;
-      v.d = table_.bonds[static_cast<std::size_t>(v.entry)].d298;
-      v.sum = entry_sum(v.entry);
-      return v;
-    }
-    const int parent_index = adjusted_index(a), halide = adjusted_.find(key), free = adjusted_.find(species_key_of_atom(x));
+    const int e = model_.known(key) ? model_.measured(key, canonical_smiles(radical, false), kHalogenAtoms[x]) : -1;
+    if (e >= 0) return entry_value(e);
+    const int parent_index = adjusted_index(a), halide = adjusted_.find(key), free = adjusted_.atom(kHalogenAtoms[x]);
     if (halide >= 0 && free >= 0 && parent_index >= 0 && parent.d && adjusted_.firm(halide)) {
       EnthalpySum exchange{{parent_index, 1}, {free, 1}, {halide, -1}, {hydrogen_, -1}};
       const auto known_delta = adjusted_.value(exchange);
@@ -198,7 +197,7 @@ void BondBook::explain_entry(int entry, BondAnswer& out) const {
                                  combine_weight({r->d298, r->u}, all), {r->d298, r->u}, 1});
   }
   const double moved = e.d298.value - all.value.value;
-  if (std::abs(moved) > kNoMove || e.d298.u < all.value.u) {
+  if (std::abs(moved) > kNoMove) {
     out.contributions.push_back({"other rows of the table, by the joint adjustment", 1, {moved, e.d298.u}, 1});
   }
 }
@@ -276,7 +275,7 @@ BondAnswer BondBook::heavy_answer(const Analysis& a, const HeavyBond& h, const B
     const int e = model_.known(a.key()) ? model_.measured(a.key(), canonical_smiles(own, false), canonical_smiles(other, false)) : -1;
     if (e >= 0) {
       b.route = Route::measured;
-      b.d298 = table_.bonds[static_cast<std::size_t>(e)].d298;
+      b.d298 = entry_value(e).d;
       explain_entry(e, b);
       return b;
     }

@@ -33,11 +33,12 @@ struct SiteBond {
 class BondBook {
  public:
   BondBook(const Table& table, const BondModel& model)
-      : table_(table), model_(model), adjusted_(table), evidence_(table), hydrogen_(adjusted_.find("1 unpaired: [H]")) {}
+      : table_(table), model_(model), adjusted_(table), evidence_(table), hydrogen_(adjusted_.atom("[H]")) {}
 
   [[nodiscard]] const AdjustedBook& adjusted() const { return adjusted_; }
-  /// D of an entry of the table as a sum of adjusted enthalpies; empty where a part is not in the adjustment.
-  [[nodiscard]] EnthalpySum entry_sum(int entry) const;
+  /// Value of an entry of the table; its u as the stored covariance gives it, so that every way to a sum ends at the same
+  /// digits.
+  [[nodiscard]] BondValue entry_value(int entry) const;
   /// Index of the molecule in the joint adjustment, or -1.
   [[nodiscard]] int adjusted_index(const Analysis& a) const;
 
@@ -57,6 +58,8 @@ class BondBook {
   [[nodiscard]] std::vector<int> entry_sources(int entry) const;
 
  private:
+  /// D of an entry of the table as a sum of adjusted enthalpies; empty where a part is not in the adjustment.
+  [[nodiscard]] EnthalpySum entry_sum(int entry) const;
   /// Measured or adjusted value of X-H at an atom of plain(); without value where the table has neither.
   [[nodiscard]] BondValue known(const Analysis& a, int atom) const;
   [[nodiscard]] BondAnswer hydrogen_answer(const Analysis& a, const HydrogenSite& s, const SiteBond& b, const BondOptions& o) const;

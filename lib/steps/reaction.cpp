@@ -115,9 +115,7 @@ class StepBook::Hess {
   };
 
   void add_atom(const char* smiles, double nu) {
-    const auto m = parse_smiles(smiles, ParseMode::species);
-    const int i = m.ok() ? book_.find(species_key(m.value())) : -1;
-    if (i >= 0) add_term(sum_, i, nu);
+    if (const int i = book_.atom(smiles); i >= 0) add_term(sum_, i, nu);
     else open_[smiles] += nu;
   }
 

@@ -79,13 +79,20 @@ StepBook::StepBook(const Table& table, const BondModel& model, const BondBook& b
     const auto hx = canonical_of(kHydride[x]), xx = canonical_of(kMolecule[x]);
     h.entry_hx = model_.measured(hx, kAtom[x], "[H]");
     h.entry_xx = model_.measured(xx, kAtom[x], kAtom[x]);
-    if (h.entry_hx >= 0) {
-      h.d_hx = table.bonds[static_cast<std::size_t>(h.entry_hx)].d298;
-      h.sum_hx = bonds.entry_sum(h.entry_hx);
-    }
-    if (h.entry_xx >= 0) {
-      h.d_xx = table.bonds[static_cast<std::size_t>(h.entry_xx)].d298;
-      h.sum_xx = bonds.entry_sum(h.entry_xx);
+    const auto take = [&](int entry, std::optional<Quantity>& d, EnthalpySum& sum) {
+      if (entry < 0) return;
+      auto v = bonds.entry_value(entry);
+      d = v.d;
+      sum = std::move(v.sum);
+    };
+    take(h.entry_hx, h.d_hx, h.sum_hx);
+    take(h.entry_xx, h.d_xx, h.sum_xx);
+    if (!h.sum_hx.empty() && !h.sum_xx.empty()) {
+      auto pair = h.sum_xx;
+      add_terms(pair, h.sum_hx, -1);
+      h.u2_pair = bonds.adjusted().covariance(pair, pair);
+    } else if (h.d_hx && h.d_xx) {
+      h.u2_pair = h.d_hx->u * h.d_hx->u + h.d_xx->u * h.d_xx->u;
     }
     h.atom = thermo.find(kAtom[x]);
     h.molecule = thermo.find(xx);
@@ -127,8 +134,17 @@ void StepBook::enthalpies(const BondValue& rh, const BondValue& rx, const Quanti
   if (!rh.sum.empty() && !h.sum_hx.empty()) abstraction.dh = difference(rh.sum, h.sum_hx);
   else if (rh.d && h.d_hx) abstraction.dh = minus(*rh.d, *h.d_hx);
   transfer.route = !rx.sum.empty() ? kJoint : !rx.exchange.empty() || rh.route != Route::typed ? kMixed : kTyped;
-  if (!rx.sum.empty() && !h.sum_xx.empty()) transfer.dh = difference(h.sum_xx, rx.sum);
-  else if (rx.d && h.d_xx) transfer.dh = minus(*h.d_xx, *rx.d);
+  if (!rx.sum.empty() && !h.sum_xx.empty()) {
+    transfer.dh = difference(h.sum_xx, rx.sum);
+  } else if (rx.d && !rx.exchange.empty()) {
+    transfer.dh = difference(h.sum_xx, rx.exchange);
+    if (transfer.dh) transfer.dh = minus(*transfer.dh, *rh.d);
+  } else if (rx.d && !rh.sum.empty() && rx.route == Route::typed) {
+    transfer.dh = difference(h.sum_xx, rh.sum);
+    if (transfer.dh) transfer.dh = minus(*transfer.dh, delta);
+  } else if (rx.d && h.d_xx) {
+    transfer.dh = minus(*h.d_xx, *rx.d);
+  }
   if (!abstraction.dh || !transfer.dh) return;
   // The two bonds share the radical: D(R-X) made from D(R-H) leaves only the exchange.
   EnthalpySum pair;
@@ -147,8 +163,7 @@ void StepBook::enthalpies(const BondValue& rh, const BondValue& rx, const Quanti
   if (net.dh) return;
   net.route = rh.route == Route::typed || rx.route == Route::typed ? kTyped : kJoint;
   const double both2 = rx.route == Route::typed ? delta.u * delta.u : rh.d->u * rh.d->u + rx.d->u * rx.d->u;
-  net.dh = Quantity{abstraction.dh->value + transfer.dh->value,
-                    std::sqrt(both2 + h.d_hx->u * h.d_hx->u + h.d_xx->u * h.d_xx->u)};
+  net.dh = Quantity{abstraction.dh->value + transfer.dh->value, std::sqrt(both2 + h.u2_pair)};
 }
 
 void StepBook::site_steps(const Analysis& a, SiteData& d, int x, double t, const BondOptions& o,
@@ -288,7 +303,7 @@ std::optional<Molecule> dimer_of(const Molecule& r) {
 // R-R = 2 R - RR with R = RH + D - H.
 std::optional<Quantity> StepBook::dimer_bond(const Analysis& a, const BondValue& d, const std::string& dimer) const {
   const auto& book = bonds_.adjusted();
-  const int rr = book.find(dimer), rh = bonds_.adjusted_index(a), h = book.find("1 unpaired: [H]");
+  const int rr = book.find(dimer), rh = bonds_.adjusted_index(a), h = book.atom("[H]");
   if (rr < 0 || rh < 0 || h < 0 || !d.d) return std::nullopt;
   EnthalpySum sum{{rh, 2}, {h, -2}};
   add_term(sum, rr, -1);

@@ -12,6 +12,7 @@ namespace halostep {
 /// Constants of one halogen, from the table.
 struct HalogenData {
   std::optional<Quantity> d_xx, d_hx;        // D(X-X), D(H-X)
+  double u2_pair = 0;                        // variance of D(X-X) - D(H-X): both hold X
   int entry_xx = -1, entry_hx = -1;          // rows of Table::bonds
   EnthalpySum sum_xx, sum_hx;                // the same as sums of adjusted enthalpies; empty where not in the adjustment
   const SpeciesEntry *atom = nullptr, *molecule = nullptr, *hydride = nullptr;

@@ -215,28 +215,25 @@ Molecule meaningful_stereo(const Molecule& m, const Partition& p, const std::vec
     return classes[at(x.centre)] < classes[at(y.centre)];
   };
   std::stable_sort(centres.begin(), centres.end(), by_class);
-  for (std::size_t i = 0; i < centres.size();) {
-    bool same = false;
-    if (equal_pair({std::begin(centres[i].neighbours), std::end(centres[i].neighbours)}, classes)) {
-      const auto before = text();
-      centres[i].clockwise = !centres[i].clockwise;
-      same = text() == before;
-      centres[i].clockwise = !centres[i].clockwise;
+  // A mark whose inverse gives the same text says nothing; only marks between equal branches can be such.
+  const auto drop_idle = [&](auto& marks, auto may_be_idle, auto side) {
+    for (std::size_t i = 0; i < marks.size();) {
+      bool same = false;
+      if (may_be_idle(marks[i])) {
+        const auto before = text();
+        bool& is = marks[i].*side;
+        is = !is;
+        same = text() == before;
+        is = !is;
+      }
+      if (same) marks.erase(marks.begin() + static_cast<std::ptrdiff_t>(i));
+      else ++i;
     }
-    if (same) centres.erase(centres.begin() + static_cast<std::ptrdiff_t>(i));
-    else ++i;
-  }
-  for (std::size_t i = 0; i < doubles.size();) {
-    bool same = false;
-    if (equal_substituents(m, doubles[i], classes)) {
-      const auto before = text();
-      doubles[i].cis = !doubles[i].cis;
-      same = text() == before;
-      doubles[i].cis = !doubles[i].cis;
-    }
-    if (same) doubles.erase(doubles.begin() + static_cast<std::ptrdiff_t>(i));
-    else ++i;
-  }
+  };
+  drop_idle(centres, [&](const TetrahedralStereo& s) {
+    return equal_pair({std::begin(s.neighbours), std::end(s.neighbours)}, classes);
+  }, &TetrahedralStereo::clockwise);
+  drop_idle(doubles, [&](const DoubleBondStereo& s) { return equal_substituents(m, s, classes); }, &DoubleBondStereo::cis);
   return m.with_stereo(std::move(centres), std::move(doubles));
 }
 

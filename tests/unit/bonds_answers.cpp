@@ -145,14 +145,14 @@ TEST(Contributions, OfAMeasuredValueAreItsRows) {
       }
       EXPECT_NEAR(weights, 1, 1e-9) << smiles << " " << b.radical;
       const auto again = combine(rows);
-      EXPECT_NEAR(again.value.value + moved, b.d298->value, 0.01) << smiles;
+      EXPECT_NEAR(again.value.value + moved, b.d298->value, 1e-9) << smiles;
       EXPECT_GE(again.value.u * (1 + 1e-12), 1 / std::sqrt(precision));
       EXPECT_LT(std::abs(moved), 3 * std::hypot(again.value.u, b.d298->u) + 0.01)
           << smiles << " " << b.radical << ": the rest of the table disagrees with the bond's own rows";
       // The weights shown are those of the combination.
       double mean = 0;
       for (const auto& c : b.contributions) mean += c.count * c.value.value;
-      EXPECT_NEAR(mean, b.d298->value, 0.01)
+      EXPECT_NEAR(mean, b.d298->value, 1e-6)
           << smiles << " " << b.radical << ": the weights shown do not give the value shown";
       ++compared;
     }

@@ -55,6 +55,17 @@ inline const BondAnswer& find(const std::vector<BondAnswer>& all, std::string_vi
   return none;
 }
 
+/// Rates and shares of one halogen; a failure and an empty answer when refused.
+inline HalogenOutcome outcome_of(std::string_view smiles, Halogen x, double temperature, const OutcomeOptions& o) {
+  const Halogen one[] = {x};
+  auto r = engine().outcome(read(smiles), one, temperature, o);
+  if (!r.ok()) {
+    ADD_FAILURE() << smiles << ": " << r.error().message;
+    return {};
+  }
+  return std::move(r.value()[0]);
+}
+
 /// Substrates of every kind the typed model covers.
 inline constexpr std::string_view kSubstrates[] = {
     "C",         "CC",         "CCC",           "CCCC",     "CC(C)C",       "CC(C)(C)C",   "CC(C)C(C)C",

@@ -12,13 +12,10 @@ namespace {
 
 HalogenOutcome asked(const char* smiles, Halogen x, const std::string& medium, double t = 298.15,
                      double conversion = 0) {
-  const Halogen one[] = {x};
   OutcomeOptions o;
   o.medium = medium;
   o.conversion = conversion;
-  auto r = engine().outcome(parse_smiles(smiles).value(), one, t, o);
-  EXPECT_TRUE(r.ok()) << (r.ok() ? "" : r.error().message);
-  return r.ok() ? std::move(r.value()[0]) : HalogenOutcome{};
+  return outcome_of(smiles, x, t, o);
 }
 
 double per_h(const HalogenOutcome& h, int h_count) {

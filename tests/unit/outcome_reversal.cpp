@@ -13,13 +13,10 @@ namespace {
 constexpr double kT = 400.15;
 
 HalogenOutcome asked(const char* smiles, Halogen x, double conversion, double ratio = 1) {
-  const Halogen one[] = {x};
   OutcomeOptions o;
   o.conversion = conversion;
   o.halogen_ratio = ratio;
-  auto r = engine().outcome(parse_smiles(smiles).value(), one, kT, o);
-  EXPECT_TRUE(r.ok()) << (r.ok() ? "" : r.error().message);
-  return r.ok() ? std::move(r.value()[0]) : HalogenOutcome{};
+  return outcome_of(smiles, x, kT, o);
 }
 
 const SiteOutcome& site(const HalogenOutcome& h, const char* radical) {

@@ -128,7 +128,7 @@ TEST(Chain, TheFreeQueryGivesTheSameNumber) {
           continue;
         }
         EXPECT_NEAR(r.value().dh->value, s.dh->value, 1e-9) << step_kind_name(s.kind) << " " << s.reaction;
-        EXPECT_NEAR(r.value().dh->u, s.dh->u, 1e-3) << step_kind_name(s.kind) << " " << s.reaction;
+        EXPECT_NEAR(r.value().dh->u, s.dh->u, 1e-9) << step_kind_name(s.kind) << " " << s.reaction;
         EXPECT_EQ(r.value().ds.has_value(), s.ds.has_value()) << step_kind_name(s.kind) << " " << s.reaction;
         if (r.value().ds && s.ds) {
           EXPECT_NEAR(r.value().ds->value, s.ds->value, 1e-9) << s.reaction;

@@ -66,42 +66,19 @@ bool write(const std::string& path, const std::string& text) {
 
 // Bond models are quick to fit: their molecules are held out in smaller parts, and no rates are fitted meanwhile.
 bool validate_bonds(const Table& table, Validation& v) {
-  Folds folds(kBondFolds);
-  for (int f = 0; f < kBondFolds; ++f) {
-    Table t = without_fold(table, folds, f);
-    auto models = fit_bond_models(t);
-    if (!models.ok()) {
-      fmt::print(stderr, "fold {}: {}\n", f, models.error().message);
-      return false;
-    }
-    t.models = std::move(models).value();
-    const auto engine = Engine::from_table(std::move(t));
-    judge_bonds({table, engine.value(), folds, f}, v);
-  }
-  return true;
+  return each_fold(table, Folds(kBondFolds), fit_bond_models, [&](const FoldView& view) { judge_bonds(view, v); });
 }
 
 // `fitted`: the same rows with models of all of them.
 bool judge_folds(const Table& table, const Table& fitted, Validation& v) {
-  Folds folds(kFolds);
   const auto whole = Engine::from_table(fitted);
-  for (int f = 0; f < kFolds; ++f) {
-    Table t = without_fold(table, folds, f);
-    auto models = fit_models(t);
-    if (!models.ok()) {
-      fmt::print(stderr, "fold {}: {}\n", f, models.error().message);
-      return false;
-    }
-    t.models = std::move(models).value();
-    const auto engine = Engine::from_table(std::move(t));
-    const FoldView view{table, engine.value(), folds, f};
+  return each_fold(table, Folds(kFolds), fit_models, [&](const FoldView& view) {
     judge_rates(view, v);
     judge_mixtures(view, v);
     judge_ratios(view, v);
     judge_reverse(view, whole.value(), v);
     judge_forms(view, v);
-  }
-  return true;
+  });
 }
 
 std::vector<const Section*> reported(const Validation& v) {
@@ -194,6 +171,21 @@ nlohmann::json document(const Validation& v, const std::vector<ReliabilityCurve>
 }
 
 }  // namespace
+
+bool each_fold(const Table& table, Folds folds, const FitFunction& fit, const std::function<void(const FoldView&)>& judge) {
+  for (int f = 0; f < folds.count(); ++f) {
+    Table t = without_fold(table, folds, f);
+    auto models = fit(t);
+    if (!models.ok()) {
+      fmt::print(stderr, "fold {}: {}\n", f, models.error().message);
+      return false;
+    }
+    t.models = std::move(models).value();
+    const auto engine = Engine::from_table(std::move(t));
+    judge({table, engine.value(), folds, f});
+  }
+  return true;
+}
 
 int validate(const Table& table, const ValidateFiles& files) {
   auto v = sections();

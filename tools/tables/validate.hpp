@@ -1,5 +1,6 @@
 // How well the engine meets molecules it has not seen.
 #pragma once
+#include <functional>
 #include <map>
 #include <optional>
 #include <string>
@@ -33,6 +34,12 @@ struct FoldView {
   Folds& folds;
   int fold = 0;
 };
+
+using FitFunction = std::function<Result<std::vector<FittedModel>>(const Table&)>;
+
+/// For each fold: the table without it, its models fitted anew, an engine over them, and `judge` asked. False (said on
+/// stderr) when a fit fails.
+bool each_fold(const Table& table, Folds folds, const FitFunction& fit, const std::function<void(const FoldView&)>& judge);
 
 void judge_bonds(const FoldView& v, Validation& out);
 /// Measured bonds with several sources: each source against what the others combine to.
