@@ -5,15 +5,12 @@
 #include <map>
 
 #include "signature.hpp"
+#include "sources.hpp"
 
 namespace halostep {
 namespace {
 
 std::size_t at(int i) { return static_cast<std::size_t>(i); }
-
-void merge(std::vector<int>& into, int source) {
-  if (std::find(into.begin(), into.end(), source) == into.end()) into.push_back(source);
-}
 
 // "[H]", "[Cl]": behind every bond, so not worth naming as a source of one. Elements neither.
 bool elementary(const std::string& smiles) {
@@ -46,14 +43,14 @@ AdjustedBook::AdjustedBook(const Table& table) : table_(table), sources_(table.a
     if (s.at < 0) continue;
     for (const int row : s.rows) {
       const auto& r = table.species_rows[at(row)];
-      if (!r.superseded && r.dfh298) merge(sources_[at(s.at)], r.source);
+      if (!r.superseded && r.dfh298) add_source(sources_[at(s.at)], r.source);
     }
   }
   for (const auto& b : table.bonds) {
     if (b.at_radical < 0) continue;
     for (const int row : b.rows) {
       const auto& r = table.bond_rows[at(row)];
-      if (!r.superseded) merge(sources_[at(b.at_radical)], r.source);
+      if (!r.superseded) add_source(sources_[at(b.at_radical)], r.source);
     }
   }
 }
@@ -102,7 +99,7 @@ std::vector<int> AdjustedBook::sources(const EnthalpySum& sum) const {
   std::vector<int> out;
   for (const auto& t : sum) {
     if (elementary(species(t.species).smiles)) continue;
-    for (const int s : sources(t.species)) merge(out, s);
+    add_sources(out, sources(t.species));
   }
   return out;
 }

@@ -9,6 +9,7 @@
 #include "halostep/structure.hpp"
 #include "heavy_type.hpp"
 #include "signature.hpp"
+#include "sources.hpp"
 
 namespace halostep {
 namespace {
@@ -39,7 +40,7 @@ std::vector<int> BondBook::entry_sources(int entry) const {
   std::vector<int> s;
   for (const int row : table_.bonds[static_cast<std::size_t>(entry)].rows) {
     const auto& r = table_.bond_rows[static_cast<std::size_t>(row)];
-    if (!r.superseded && std::find(s.begin(), s.end(), r.source) == s.end()) s.push_back(r.source);
+    if (!r.superseded) add_source(s, r.source);
   }
   return s;
 }
@@ -203,7 +204,7 @@ void BondBook::explain_entry(int entry, BondAnswer& out) const {
 }
 
 void BondBook::explain_sum(const EnthalpySum& sum, BondAnswer& out) const {
-  out.sources = adjusted_.sources(sum);
+  add_sources(out.sources, adjusted_.sources(sum));
   for (const auto& t : sum) {
     const auto& s = adjusted_.species(t.species);
     const double u = std::sqrt(std::max(0.0, adjusted_.covariance({{t.species, 1}}, {{t.species, 1}})));
@@ -322,17 +323,11 @@ void BondBook::typed_halide(const Analysis& a, const HeavyBond& h, int x, const 
   b.contributions.push_back({fmt::format("C-H of the parent, {}", route_name(value.route)), 1.0, *value.d, 1});
   b.sources = sources(pa, site, value);
   if (!rx.exchange.empty()) {
-    const auto own = b.sources;
     explain_sum(rx.exchange, b);
-    b.sources.insert(b.sources.end(), own.begin(), own.end());
-    std::sort(b.sources.begin(), b.sources.end());
-    b.sources.erase(std::unique(b.sources.begin(), b.sources.end()), b.sources.end());
     return;
   }
   explain_typed(model_.exchange_model(x), exchange_feature_names(), f, b);
-  for (const int q : evidence_.exchange(x, f)) {
-    if (std::find(b.sources.begin(), b.sources.end(), q) == b.sources.end()) b.sources.push_back(q);
-  }
+  add_sources(b.sources, evidence_.exchange(x, f));
 }
 
 void BondBook::deuterium(const Analysis& a, std::vector<BondAnswer>& out) const {

@@ -5,6 +5,7 @@
 
 #include "halostep/structure.hpp"
 #include "locate.hpp"
+#include "sources.hpp"
 
 namespace halostep {
 namespace {
@@ -33,7 +34,7 @@ std::vector<int> current_sources(const std::vector<int>& members, const Rows& ro
   std::vector<int> out;
   for (const int row : members) {
     const auto& r = rows[static_cast<std::size_t>(row)];
-    if (!r.superseded && std::find(out.begin(), out.end(), r.source) == out.end()) out.push_back(r.source);
+    if (!r.superseded) add_source(out, r.source);
   }
   return out;
 }
@@ -48,9 +49,7 @@ std::vector<int> Evidence::nearest(const std::vector<Known>& known, const std::v
   std::sort(order.begin(), order.end());
   std::vector<int> out;
   for (std::size_t i = 0; i < std::min(kShown, order.size()); ++i) {
-    for (const int s : known[order[i].second].sources) {
-      if (std::find(out.begin(), out.end(), s) == out.end()) out.push_back(s);
-    }
+    add_sources(out, known[order[i].second].sources);
   }
   return out;
 }

@@ -2,9 +2,11 @@
 
 #include <algorithm>
 #include <array>
+#include <map>
 
 #include "halostep/structure.hpp"
 #include "outcome/engine_impl.hpp"
+#include "bonds/sources.hpp"
 
 namespace halostep {
 namespace {
@@ -90,6 +92,7 @@ std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const std:
   auto list = steps.chain(a, sites, halogens, temperature, o);
   // chain() gives the abstractions of one halogen after the other, each in the order of the sites.
   std::size_t n = 0, site = 0;
+  std::map<std::pair<int, std::size_t>, std::vector<int>> behind;  // sources of rates by halogen and kind of C-H
   for (auto& s : list) {
     if (s.kind != StepKind::abstraction) continue;
     const auto& r = rated[n / sites.size()];
@@ -110,6 +113,10 @@ std::vector<StepAnswer> Engine::Impl::step_answers(const Analysis& a, const std:
       if (!o.details) continue;
       s.ea->u = barrier_errors(c, rates, x, *steps.halogen(x).d_hx, site - 1, temperature).u_ea;
       s.u_log10_k_cm3_s = u_log10_k(*r.rates, c, site - 1);
+      const auto kind = static_cast<std::size_t>(c.sites[site - 1].kind);
+      const auto [known, fresh] = behind.try_emplace({x, kind});
+      if (fresh) known->second = rate_evidence.sources(x, a.key(), {c.kinds[kind].rate.a_class});
+      add_sources(s.sources, known->second);
     }
   }
   return list;

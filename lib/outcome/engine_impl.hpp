@@ -42,6 +42,8 @@ struct Engine::Impl {
   /// The rates that shares are made of: those of the free atom with medium and reversal in. Adds notes.
   [[nodiscard]] KindRates share_rates(const Analysis& a, const CarbonSites& c, const KindRates& free, int x, double temperature,
                                       const Conditions& conditions, std::vector<std::string>& notes, std::string& why_forward) const;
+  /// Sources behind the D of all kinds of C-H.
+  [[nodiscard]] std::vector<int> bond_sources(const Analysis& a, const CarbonSites& c) const;
   /// Rates of all kinds for each halogen; `with_errors` where shares are wanted.
   [[nodiscard]] std::vector<HalogenRates> halogen_rates(const Analysis& a, const CarbonSites& c, std::span<const Halogen> halogens,
                                                         double temperature, bool with_errors) const;

@@ -6,6 +6,7 @@
 #include "halostep/structure.hpp"
 #include "outcome/engine_impl.hpp"
 #include "outcome/notes.hpp"
+#include "bonds/sources.hpp"
 
 namespace halostep {
 namespace {
@@ -49,6 +50,19 @@ void compare_sites(const CarbonSites& c, const KindRates& r, const CarrierModel&
 
 }  // namespace
 
+std::vector<int> Engine::Impl::bond_sources(const Analysis& a, const CarbonSites& c) const {
+  std::vector<int> out;
+  std::vector<bool> asked(c.kinds.size(), false);
+  for (const auto& s : c.sites) {
+    if (s.kind < 0 || asked[static_cast<std::size_t>(s.kind)]) continue;
+    asked[static_cast<std::size_t>(s.kind)] = true;
+    BondValue d;
+    d.sum = c.kinds[static_cast<std::size_t>(s.kind)].sum;
+    add_sources(out, bonds.sources(a, *s.site, d));
+  }
+  return out;
+}
+
 Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis& a, const CarbonSites& c,
                                                                   std::span<const HalogenRates> rated, double temperature,
                                                                   bool details, const Conditions& conditions) const {
@@ -61,6 +75,7 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
     for (const auto& k : c.kinds) classes.push_back(k.rate.a_class);
   }
   const auto refused = details ? refused_sites(a, c) : std::vector<RefusedSite>{};
+  const auto of_bonds = details ? bond_sources(a, c) : std::vector<int>{};
   std::vector<std::string> radicals(details ? c.sites.size() : 0);  // the same for all halogens
   for (std::size_t i = 0; i < radicals.size(); ++i) {
     if (c.sites[i].kind >= 0) radicals[i] = canonical_smiles(a.original().without_hydrogen(c.sites[i].site->atom));
@@ -134,9 +149,8 @@ Result<std::vector<HalogenOutcome>> Engine::Impl::outcome_answers(const Analysis
       }
       h.notes.insert(h.notes.begin(), left_out.begin(), left_out.end());
       h.sources = rate_evidence.sources(x, a.key(), classes);
-      for (const int s : bonds.entry_sources(steps.halogen(x).entry_hx)) {
-        if (std::find(h.sources.begin(), h.sources.end(), s) == h.sources.end()) h.sources.push_back(s);
-      }
+      add_sources(h.sources, bonds.entry_sources(steps.halogen(x).entry_hx));
+      add_sources(h.sources, of_bonds);
     }
     out.push_back(std::move(h));
   }

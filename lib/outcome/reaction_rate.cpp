@@ -4,6 +4,7 @@
 
 #include "halostep/structure.hpp"
 #include "outcome/engine_impl.hpp"
+#include "bonds/sources.hpp"
 
 namespace halostep {
 namespace {
@@ -73,9 +74,7 @@ void Engine::Impl::add_rate(StepAnswer& s, std::string_view text) const {
   s.ea = ea;
   s.k_cm3_s = k;
   s.u_log10_k_cm3_s = u_log10;
-  for (const int q : rate_evidence.sources(f.x, a.key(), {c.kinds[static_cast<std::size_t>(site->kind)].rate.a_class})) {
-    if (std::find(s.sources.begin(), s.sources.end(), q) == s.sources.end()) s.sources.push_back(q);
-  }
+  add_sources(s.sources, rate_evidence.sources(f.x, a.key(), {c.kinds[static_cast<std::size_t>(site->kind)].rate.a_class}));
 }
 
 }  // namespace halostep

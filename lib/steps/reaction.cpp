@@ -8,6 +8,7 @@
 #include "halostep/structure.hpp"
 #include "reaction_check.hpp"
 #include "steps.hpp"
+#include "../bonds/sources.hpp"
 
 namespace halostep {
 namespace {
@@ -91,9 +92,7 @@ class StepBook::Hess {
       if (t.coefficient == 0) continue;
       q.value += t.coefficient * t.d.value;
       u2 += t.coefficient * t.coefficient * t.d.u * t.d.u;
-      for (const int x : t.sources) {
-        if (std::find(sources.begin(), sources.end(), x) == sources.end()) sources.push_back(x);
-      }
+      add_sources(sources, t.sources);
     }
     q.u = std::sqrt(u2);
     return q;

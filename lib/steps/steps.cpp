@@ -7,6 +7,7 @@
 #include <cmath>
 
 #include "halostep/structure.hpp"
+#include "../bonds/sources.hpp"
 
 namespace halostep {
 namespace {
@@ -19,12 +20,6 @@ constexpr int kNumber[] = {9, 17, 35, 53};
 std::string canonical_of(const char* smiles) {
   const auto m = parse_smiles(smiles, ParseMode::species);
   return m.ok() ? canonical_smiles(m.value(), false) : std::string(smiles);
-}
-
-void merge(std::vector<int>& into, const std::vector<int>& more) {
-  for (const int s : more) {
-    if (std::find(into.begin(), into.end(), s) == into.end()) into.push_back(s);
-  }
 }
 
 constexpr double kUnknownCp = 10.0;  // J mol-1 K-1
@@ -49,6 +44,7 @@ void finish(StepAnswer& s, const ThermoSum& sum, double temperature) {
   const double dcp = sum.cp_known ? sum.cp : 0.0, u_cp = sum.cp_known ? u_of_cp(sum) : kUnknownCp,
                u_s = u_of_s(sum);
   const double by_cp = std::log(temperature / kReferenceTemperature);
+  add_sources(s.sources, sum.sources);
   s.ds = Quantity{sum.s + dcp * by_cp, std::hypot(u_s, by_cp * u_cp)};
   if (!s.dh) return;
   const double warmed = temperature - kReferenceTemperature;
@@ -201,11 +197,11 @@ void StepBook::site_steps(const Analysis& a, SiteData& d, int x, double t, const
     net.why_ea = "not an elementary step";
     abstraction.sources = d.sources;
     transfer.sources = bonds_.halide_sources(a, *d.site, x, rx);
-    if (rx.entry < 0) merge(transfer.sources, d.sources);
-    if (h.entry_hx >= 0) merge(abstraction.sources, bonds_.entry_sources(h.entry_hx));
-    if (h.entry_xx >= 0) merge(transfer.sources, bonds_.entry_sources(h.entry_xx));
+    if (rx.entry < 0) add_sources(transfer.sources, d.sources);
+    if (h.entry_hx >= 0) add_sources(abstraction.sources, bonds_.entry_sources(h.entry_hx));
+    if (h.entry_xx >= 0) add_sources(transfer.sources, bonds_.entry_sources(h.entry_xx));
     net.sources = abstraction.sources;
-    merge(net.sources, transfer.sources);
+    add_sources(net.sources, transfer.sources);
   }
   if (!o.details) return;
   ThermoSum sa, st, sn;
@@ -257,7 +253,7 @@ void StepBook::terminations(const Analysis& a, const SiteData& d, std::size_t tr
   if (!rr.dh) rr.why_dh = "the table has no formation enthalpy of the dimer or of the radical";
   rx.why_ea = rr.why_ea = "recombination, no barrier";
   if (d.rr_entry != nullptr) rr.sources = thermo_.sources(*d.rr_entry);
-  if (d.r_entry != nullptr) merge(rr.sources, thermo_.sources(*d.r_entry));
+  if (d.r_entry != nullptr) add_sources(rr.sources, thermo_.sources(*d.r_entry));
   ThermoSum sx, sr;
   thermo_.add(sx, d.r_entry, -1, d.radical);
   thermo_.add(sx, h.atom, -1, kAtom[x]);

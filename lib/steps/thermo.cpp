@@ -5,6 +5,7 @@
 
 #include "../bonds/locate.hpp"
 #include "halostep/structure.hpp"
+#include "../bonds/sources.hpp"
 
 namespace halostep {
 
@@ -45,6 +46,11 @@ void ThermoBook::add(ThermoSum& sum, const SpeciesEntry* e, double nu, std::stri
     return;
   }
   sum.s += nu * *e->s298;
+  // Of several rows the table takes S and Cp from one each: those that give the value used.
+  for (const int row : e->rows) {
+    const auto& r = table_.species_rows[static_cast<std::size_t>(row)];
+    if (!r.superseded && ((r.s298 && r.s298 == e->s298) || (r.cp298 && r.cp298 == e->cp298))) add_source(sum.sources, r.source);
+  }
   const auto same = std::find_if(sum.parts.begin(), sum.parts.end(), [&](const auto& p) { return p.first == e; });
   if (same != sum.parts.end()) same->second += nu;
   else sum.parts.emplace_back(e, nu);
@@ -72,7 +78,7 @@ std::vector<int> ThermoBook::sources(const SpeciesEntry& e) const {
   std::vector<int> out;
   for (const int row : e.rows) {
     const auto& r = table_.species_rows[static_cast<std::size_t>(row)];
-    if (!r.superseded && std::find(out.begin(), out.end(), r.source) == out.end()) out.push_back(r.source);
+    if (!r.superseded) add_source(out, r.source);
   }
   return out;
 }

@@ -17,6 +17,7 @@ struct ThermoSum {
   double s = 0, cp = 0;             // J mol-1 K-1, sums with stoichiometric signs
   std::vector<std::pair<const SpeciesEntry*, double>> parts;  // what was added, with its sign
   bool s_known = true, cp_known = true;
+  std::vector<int> sources;         // of the entropies and heat capacities
   std::string missing;              // first species without entropy
 };
 

@@ -213,6 +213,29 @@ TEST(Chain, ASiteOutsideSaysWhy) {
   EXPECT_TRUE(inside.dh);
 }
 
+// Each figure of a step has its rows among the sources: D, k and entropies.
+TEST(Chain, EveryFigureHasItsSource) {
+  const auto& t = engine().table();
+  const auto all = steps("CC(C)C", Halogen::Cl);
+  const auto& s = find(all, StepKind::abstraction, "C[C](C)C");
+  const auto cited = [&](int source) { return std::find(s.sources.begin(), s.sources.end(), source) != s.sources.end(); };
+  ASSERT_TRUE(s.k_cm3_s && s.ds);
+  EXPECT_TRUE(std::any_of(t.rates.begin(), t.rates.end(), [&](const RateRow& r) {
+    return !r.superseded && r.fitted && r.carrier == "Cl" && r.molecule == "CC(C)C" && cited(r.source);
+  })) << "k";
+  EXPECT_TRUE(std::any_of(t.species_rows.begin(), t.species_rows.end(), [&](const SpeciesRow& r) {
+    return !r.superseded && r.s298 && r.smiles == "CC(C)C" && cited(r.source);
+  })) << "S";
+  const auto d = find(bonds("CC(C)C"), "C-H", "C[C](C)C").sources;
+  EXPECT_TRUE(std::all_of(d.begin(), d.end(), cited)) << "D";
+  const Halogen one[] = {Halogen::Cl};
+  const auto rates = engine().outcome(read("CC(C)C"), one, 298.15);
+  const auto& of_outcome = rates.value()[0].sources;
+  EXPECT_TRUE(std::any_of(d.begin(), d.end(), [&](int q) {
+    return std::find(of_outcome.begin(), of_outcome.end(), q) != of_outcome.end();
+  })) << "D behind the shares";
+}
+
 TEST(Chain, NoHydrogenIsARefusal) {
   for (const auto* smiles : {"ClC(Cl)(Cl)Cl", "FC(F)(F)F"}) {
     const auto r = engine().steps(read(smiles), kAllHalogens, 298.15);

@@ -133,7 +133,7 @@ struct HalogenOutcome {
   double conversion = 0;             // of the substrate, 0 to 1
   double hx_per_x2 = 0;              // at that conversion
   std::vector<std::string> notes;    // competing channels and cautions
-  std::vector<int> sources;          // rows behind the kinetic model's class
+  std::vector<int> sources;          // behind the rates, the bonds and D(H-X)
 };
 
 /// Where the atom attacks. Complexing solvents make chlorine atoms slower and more selective.
